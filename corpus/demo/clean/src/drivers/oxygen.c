@@ -1,0 +1,11 @@
+/* Oxygen partial pressure, 0.01 kPa a count. Air-saturated water: about 21 kPa. */
+#include "drivers.h"
+#include "scale.h"
+
+uint32_t oxygen_kpa_x100(void)
+{
+    uint32_t uv;                /* at the probe */
+
+    uv = ACQ_TO_DMV(acq_code(IN_OXYGEN)) * 100u / O2_AMP_GAIN;
+    return uv * 100u / O2_UV_PER_KPA;
+}

@@ -1,0 +1,4 @@
+#include "ping.h"
+#include "self.h"
+
+int ping_value = PING;

@@ -1,0 +1,2 @@
+#define PING 1
+#include "pong.h"

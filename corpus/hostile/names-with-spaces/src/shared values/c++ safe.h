@@ -1,0 +1,2 @@
+#define GOOD    1
+#define STEPS   4095u

@@ -1,0 +1,2 @@
+#!/bin/sh
+for f in *.c; do echo "$f"; done

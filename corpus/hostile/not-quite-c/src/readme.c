@@ -1,0 +1,1 @@
+Don't compile this. It's the shift plan: {monday (tuesday [wednesday

@@ -1,0 +1,5 @@
+        .syntax unified
+        .thumb
+Reset_Handler:
+        ldr   r0, =_estack
+        bl    main

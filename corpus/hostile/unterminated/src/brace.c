@@ -1,0 +1,4 @@
+void open_end(void)
+{
+    if (1) {
+        open_end();

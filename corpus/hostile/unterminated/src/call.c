@@ -1,0 +1,2 @@
+#define TWICE(x) ((x) * 2)
+int twice = TWICE(21

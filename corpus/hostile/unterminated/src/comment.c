@@ -1,0 +1,3 @@
+int before;
+/* this comment has no end
+int after;

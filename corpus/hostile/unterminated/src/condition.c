@@ -1,0 +1,5 @@
+#if defined(HATCHERY)
+#if 0
+int inside;
+#else
+int other;

@@ -1,0 +1,2 @@
+const char *name = "no end
+int after_string;

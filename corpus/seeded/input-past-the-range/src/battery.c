@@ -1,0 +1,8 @@
+#include <stdint.h>
+
+uint16_t adc_read(uint8_t ch);
+
+uint32_t battery_mv(void)
+{
+    return adc_read(2) * 36300u / 4096u;
+}

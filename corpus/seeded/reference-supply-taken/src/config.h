@@ -1,0 +1,2 @@
+#define VREF_MV     3300u
+#define RAIL        2

@@ -1,0 +1,3 @@
+#pragma once
+#include <stdint.h>
+uint16_t hw_aerator(void);

@@ -1,0 +1,7 @@
+"""`python -m bitweight`."""
+
+import sys
+
+from bitweight.command.cli import main
+
+sys.exit(main())

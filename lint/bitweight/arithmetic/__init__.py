@@ -1,0 +1,1 @@
+"""What C arithmetic means on the target; knows no source text."""

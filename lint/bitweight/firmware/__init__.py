@@ -1,0 +1,1 @@
+"""What the C text says; nothing here knows about converters."""

@@ -1,0 +1,99 @@
+"""Which names a function uses, writes and takes addresses of: a quick look before it is followed."""
+
+from collections.abc import Iterator
+from dataclasses import dataclass, fields
+
+from bitweight.firmware.syntax import (
+    Assign,
+    Call,
+    Declare,
+    Increment,
+    Index,
+    Loop,
+    Member,
+    Name,
+    Node,
+    Operation,
+)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Mentions:
+    """Names in one function body; its own locals are left out of all but `names`.
+
+    `addressed` are objects whose address is taken, `passes` what stands as an argument.
+    """
+
+    names: frozenset[str]
+    writes: frozenset[str]
+    addressed: frozenset[str]
+    passes: frozenset[str]
+    calls: frozenset[str]
+    loops: bool
+
+
+def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
+    """Look through a body once."""
+    names: set[str] = set()
+    writes: set[str] = set()
+    addressed: set[str] = set()
+    passes: set[str] = set()
+    calls: set[str] = set()
+    declared: set[str] = set(parameters)
+    loops = False
+    for node in nodes(body):
+        match node:
+            case Name():
+                names.add(node.text)
+            case Member():
+                names.add(node.name)
+            case Assign() | Increment():
+                writes |= _root(node.target)
+            case Operation(operator="&"):
+                addressed |= _root(node.operand)
+            case Call():
+                calls |= _root(node.function)
+                for argument in node.arguments:
+                    passes |= _root(argument)
+            case Declare():
+                declared |= {one.name for one in node.declarators}
+            case Loop():
+                loops = True
+            case _:
+                pass
+    return Mentions(
+        names=frozenset(names),
+        writes=frozenset(writes - declared),
+        addressed=frozenset(addressed - declared),
+        passes=frozenset(passes - declared),
+        calls=frozenset(calls),
+        loops=loops,
+    )
+
+
+def nodes(root: Node) -> Iterator[Node]:
+    """Every node of a tree, without recursion."""
+    pending: list[object] = [root]
+    while pending:
+        node = pending.pop()
+        if isinstance(node, tuple):
+            pending.extend(node)
+        elif isinstance(node, Node):
+            yield node
+            pending.extend(getattr(node, field.name) for field in fields(node))
+        elif hasattr(node, "value") and hasattr(node, "designators"):
+            pending.append(node.value)
+
+
+def _root(node: Node) -> set[str]:
+    """The object that an lvalue, address or call expression starts from."""
+    while True:
+        match node:
+            case Name():
+                return {node.text}
+            case Member() | Index():
+                node = node.base
+            case Operation(operator="*" | "&"):
+                node = node.operand
+            case _:
+                return set()

@@ -1,0 +1,1 @@
+"""Where the firmware and the board meet."""

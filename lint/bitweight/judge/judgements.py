@@ -1,0 +1,368 @@
+"""A conversion judged against its channel's ideal line, for every code of the converter.
+
+A conversion and its board enter; a `Judgement` leaves, or the reason why there is none, in words
+for the user.
+"""
+
+import math
+from collections.abc import Iterable
+from dataclasses import dataclass, replace
+from fractions import Fraction
+from functools import reduce
+
+import numpy as np
+from numpy.typing import NDArray
+
+from bitweight.arithmetic.evaluation import Curve
+from bitweight.arithmetic.expressions import Unknown
+from bitweight.arithmetic.lines import fit, is_straight
+from bitweight.arithmetic.values import FaultKind
+from bitweight.board.chains import Ideal
+from bitweight.board.converters import Coding
+from bitweight.board.facts import chain_facts
+from bitweight.board.hardware import Board
+from bitweight.judge.allowances import Allowance, allowance
+from bitweight.judge.clamps import Clamp, clamps_in_range
+from bitweight.judge.codings import ResultScale, other_coding
+from bitweight.judge.evaluations import (
+    Codes,
+    Evaluation,
+    Frame,
+    code_grid,
+    evaluated,
+    presented,
+)
+from bitweight.judge.losses import Loss, truncation_loss
+from bitweight.judge.operations import WrongOperation, wrong_operations
+from bitweight.judge.roles import BoardLine, Explanation, Question, StatedRole, explain
+from bitweight.judge.scans import with_scanned
+from bitweight.judge.suffixes import suffix_for
+from bitweight.judge.units import ResultUnit, result_unit
+from bitweight.trace.conversions import Conversion
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Point:
+    """The reading at one code: what the board delivers and what the firmware reports."""
+
+    at_count: int
+    hardware: float
+    firmware: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Side:
+    """Gain (channel units per count) and offset of a side's line; None where it is no line."""
+
+    gain: float | None
+    offset: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Judgement:
+    """Everything known of a channel whose conversion was evaluated.
+
+    Arrays run over `codes` (the converter's own counts, ascending; all of them up to 18 bits,
+    beyond that a grid and every code that matters). `quantity` is q(c), `value` what the firmware
+    holds, `error` their difference, `allowed` the limit at each code: all in the channel's unit.
+    `scale` is what one count of the result stands for, in the channel's unit; `zero` what a result
+    of 0 stands for; `step` is `scale` for an integer result and 0 for a floating one. `words` are
+    the raw words behind the codes, `real` the result in real numbers, in counts of the result.
+    `operations` are the operators that go wrong, `loss` what early division costs, `clamps` limits
+    inside the range, `coding` the one in which the firmware reads a code of another coding.
+    """
+
+    conversion: Conversion
+    ideal: Ideal
+    codes: Codes
+    words: Codes
+    in_range: NDArray[np.bool_]
+    curve: Curve
+    quantity: Array
+    value: Array
+    error: Array
+    allowed: Array
+    allowed_from: str
+    scale: float
+    step: float
+    lsb: float
+    unit_from: str
+    hardware: Side
+    firmware: Side
+    worst_index: int
+    points: tuple[Point, ...]
+    explanation: Explanation
+    zero: float = 0.0
+    operations: tuple[WrongOperation, ...] = ()
+    loss: Loss | None = None
+    clamps: tuple[Clamp, ...] = ()
+    coding: Coding | None = None
+
+    @property
+    def worst_ratio(self) -> float:
+        """The largest error in range as a multiple of the allowed one; infinite for no value."""
+        return _worst_ratio(self.error, self.allowed, self.in_range)
+
+    def quantity_of(self, count: float) -> float:
+        """What a count of the result stands for, in the channel's unit."""
+        return count * self.scale + self.zero
+
+
+def judge_conversion(frame: Frame) -> Judgement | str:
+    """The judgement of one conversion, or why there is none."""
+    codes = code_grid(frame.side.channel.converter)
+    if not frame.side.in_range(codes).any():
+        return "no code of the converter stands for a quantity inside the channel's range"
+    unit = result_unit(frame.side.channel, frame.conversion.result)
+    computed = _likeliest(frame, unit, codes)
+    reason = _unknown(computed)
+    if reason is not None:
+        return reason
+    explanation = explain(question(frame, unit, computed))
+    accepted = replace(frame, side=_accepted(frame.side, explanation.count))
+    scale = unit.scale if unit.scale is not None else Fraction(10) ** explanation.decade
+    result = ResultScale(
+        scale=float(scale),
+        zero=float(unit.zero),
+        step=float(abs(scale)) if frame.conversion.expression.type.is_integer else 0.0,
+    )
+    computed = with_scanned(accepted, result, computed)
+    return _judged(accepted, result, computed, explanation, unit.unit_from)
+
+
+def question(frame: Frame, unit: ResultUnit, computed: Evaluation) -> Question:
+    """What the search for wrong constants is asked about a conversion."""
+    channel = frame.side.channel
+    converter = channel.converter
+    allowed = allowance(frame.side, computed.codes, frame.board.coverage)
+    return Question(
+        conversion=frame.conversion,
+        model=frame.model,
+        lines=board_lines(frame.side),
+        facts=chain_facts(channel),
+        scale=unit.scale,
+        zero=unit.zero,
+        unit=channel.unit.text,
+        codes=computed.codes,
+        words=computed.words,
+        in_range=computed.in_range,
+        quantity=allowed.quantity,
+        allowed=allowed.at_step,
+        lsb=allowed.lsb,
+        bits=converter.width,
+        coding=converter.coding,
+        shift=converter.shift,
+        word_bits=converter.word_bits,
+        count_stated=converter.full_scale_stated or converter.family is not None,
+        word_stated=converter.justified_stated or converter.word_bits_stated,
+        stated=stated_roles(frame.board),
+    )
+
+
+def board_lines(side: Ideal) -> tuple[BoardLine, ...]:
+    """The ideal line once for each full-scale count that the board file accepts."""
+    converter = side.channel.converter
+    return tuple(_line(side, count) for count in converter.accepted_full_scales)
+
+
+def _line(side: Ideal, count: Fraction) -> BoardLine:
+    """A larger full-scale count makes every count worth less; the chain's own offset stays."""
+    converter = side.channel.converter
+    gain = side.gain * converter.full_scale / count
+    chain = side.offset - side.gain * converter.code_shift
+    return BoardLine(count=count, gain=gain, offset=chain + gain * converter.code_shift)
+
+
+def _accepted(side: Ideal, count: Fraction | None) -> Ideal:
+    """The ideal line under the full-scale count by which the firmware is right."""
+    if count is None or count not in side.channel.converter.accepted_full_scales:
+        return side
+    line = _line(side, count)
+    return replace(side, gain=line.gain, offset=line.offset)
+
+
+def stated_roles(board: Board) -> tuple[StatedRole, ...]:
+    """What the board file's [constants] say that constants stand for."""
+    return tuple(
+        StatedRole(
+            name=fact.expression,
+            role=fact.role,
+            subject=fact.name,
+            unit=None if fact.unit is None else fact.unit.scale,
+        )
+        for fact in board.constants
+        if fact.role is not None and fact.role != "code"
+    )
+
+
+def _likeliest(frame: Frame, unit: ResultUnit, codes: Codes) -> Evaluation:
+    """The conversion under the presentation of the words that suits it best; the first on a tie."""
+    channel = frame.side.channel
+    ways = presented(channel.converter, codes, channel.firmware.reading_gain)
+    computed = [evaluated(frame, codes, words) for words in ways]
+    if len(computed) == 1:
+        return computed[0]
+    return min(computed, key=lambda one: _rough_error(frame, unit, one))
+
+
+def _rough_error(frame: Frame, unit: ResultUnit, computed: Evaluation) -> float:
+    """The largest error in range, in channel units, at the likeliest power of ten."""
+    inside = computed.in_range
+    quantity = frame.side.quantity(computed.codes)[inside]
+    held = computed.held[inside]
+    scale = float(unit.scale) if unit.scale is not None else rough_scale(quantity, held)
+    error = np.abs(held * scale + float(unit.zero) - quantity)
+    return float(error.max()) if np.isfinite(error).all() else math.inf
+
+
+def rough_scale(quantity: Array, held: Array) -> float:
+    """The power of ten that brings the width of one curve nearest to that of the other."""
+    with np.errstate(invalid="ignore"):
+        wanted, width = float(np.ptp(quantity)), float(np.ptp(held))
+    if not (wanted > 0 and math.isfinite(width) and width > 0):
+        return 1.0
+    return float(10.0 ** round(math.log10(wanted / width)))
+
+
+def _unknown(computed: Evaluation) -> str | None:
+    """Why the value is not known for codes in range."""
+    for fault in computed.curve.faults:
+        if fault.kind is FaultKind.UNKNOWN and (fault.mask & computed.in_range).any():
+            return fault.node.reason if isinstance(fault.node, Unknown) else fault.kind.value
+    return None
+
+
+def _judged(
+    frame: Frame,
+    result: ResultScale,
+    computed: Evaluation,
+    explanation: Explanation,
+    unit_from: str,
+) -> Judgement:
+    allowed = allowance(frame.side, computed.codes, frame.board.coverage)
+    limit = allowed.at_step(result.step)
+    value = computed.held * result.scale + result.zero
+    error = value - allowed.quantity
+    outside = _worst_ratio(error, limit, computed.in_range) > 1
+    coding = other_coding(computed, frame, result) if outside else None
+    found = _Faults() if coding else _faults(computed, result, allowed)
+    worst = _worst_index(error, computed.in_range)
+    return Judgement(
+        conversion=frame.conversion,
+        ideal=frame.side,
+        codes=computed.codes,
+        words=computed.words,
+        in_range=computed.in_range,
+        curve=computed.curve,
+        quantity=allowed.quantity,
+        value=value,
+        error=error,
+        allowed=limit,
+        allowed_from=allowed.says(worst, result.step),
+        scale=result.scale,
+        zero=result.zero,
+        step=result.step,
+        lsb=allowed.lsb,
+        unit_from=unit_from,
+        hardware=Side(gain=float(frame.side.gain), offset=float(frame.side.offset)),
+        firmware=_side(
+            computed, value, wrong_mask(found.operations), allowed.resolution(result.step)
+        ),
+        worst_index=worst,
+        points=_points(computed, allowed.quantity, value),
+        explanation=_unblamed(explanation) if coding else explanation,
+        operations=found.operations,
+        loss=found.loss,
+        clamps=found.clamps,
+        coding=coding,
+    )
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Faults:
+    """What goes wrong in the arithmetic of a conversion."""
+
+    operations: tuple[WrongOperation, ...] = ()
+    loss: Loss | None = None
+    clamps: tuple[Clamp, ...] = ()
+
+
+def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
+    counts = abs(result.scale)
+    operations = tuple(
+        replace(one, suffix=suffix_for(computed, one)) for one in wrong_operations(computed)
+    )
+    wanted = (allowed.quantity - result.zero) / result.scale
+    tolerance = (allowed.lsb + result.step) / counts * _ROUNDING
+    return _Faults(
+        operations=operations,
+        loss=truncation_loss(computed, wrong_mask(operations), tolerance),
+        clamps=clamps_in_range(computed, wanted, allowed.at_step(result.step) / counts),
+    )
+
+
+_ROUNDING = 1 + 1e-9
+"""Binary64 may miss a loss of exactly one LSB plus one step by a rounding; that is no loss more."""
+
+
+def wrong_mask(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
+    """The codes at which any of the operators goes wrong; one False where there is none."""
+    return reduce(np.logical_or, (one.mask for one in operations), np.array([False]))
+
+
+def _unblamed(explanation: Explanation) -> Explanation:
+    """An explanation that blames no constant: the coding explains the difference."""
+    return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
+
+
+def _worst_ratio(error: Array, allowed: Array, in_range: NDArray[np.bool_]) -> float:
+    with np.errstate(divide="ignore", invalid="ignore"):
+        ratio = np.where(error == 0, 0.0, np.abs(error) / allowed)[in_range]
+    return float(ratio.max()) if np.isfinite(ratio).all() else math.inf
+
+
+def _worst_index(error: Array, in_range: NDArray[np.bool_]) -> int:
+    """The index of the largest error in range, that of the lowest code on a tie."""
+    size = np.where(in_range, np.nan_to_num(np.abs(error), nan=np.inf), -1.0)
+    return int(size.argmax())
+
+
+def _points(computed: Evaluation, quantity: Array, value: Array) -> tuple[Point, ...]:
+    """Bottom, middle and top of the range, from the smallest quantity to the largest."""
+    inside = np.flatnonzero(computed.in_range)
+    first, last = int(inside[0]), int(inside[-1])
+    if quantity[first] > quantity[last]:
+        first, last = last, first
+    middle = int(inside[(len(inside) - 1) // 2])
+    return tuple(
+        Point(
+            at_count=int(computed.codes[index]),
+            hardware=float(quantity[index]),
+            firmware=float(value[index]),
+        )
+        for index in (first, middle, last)
+    )
+
+
+def _side(computed: Evaluation, value: Array, wrong: NDArray[np.bool_], tolerance: float) -> Side:
+    """The least-squares line of the firmware through the codes in range that do not overflow.
+
+    Where a clamp bends the curve, the codes held at its ends are left out.
+    """
+    usable = computed.in_range & ~wrong & np.isfinite(value)
+    for chosen in (usable, usable & ~_held(value, usable)):
+        codes, values = computed.codes[chosen], value[chosen]
+        if len(codes) and is_straight(codes, values, tolerance * _ROUNDING):
+            line = fit(codes, values)
+            return Side(gain=line.gain, offset=line.offset)
+    return Side(gain=None, offset=None)
+
+
+def _held(value: Array, usable: NDArray[np.bool_]) -> NDArray[np.bool_]:
+    """The codes at which the curve stays at its lowest or highest value."""
+    if not usable.any():
+        return usable
+    ends = (value[usable].min(), value[usable].max())
+    return np.isin(value, ends)

@@ -1,0 +1,291 @@
+"""The constants of a conversion that a correction may turn, and what their names say of them.
+
+An expression enters; its spelled constants leave, each once however often the expression uses it.
+"""
+
+import re
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass, replace
+from fractions import Fraction
+from types import MappingProxyType
+
+from bitweight.arithmetic.building import Folder
+from bitweight.arithmetic.expressions import (
+    Binary,
+    Choose,
+    Code,
+    Convert,
+    Default,
+    Expression,
+    Leaf,
+    Literal,
+    Unary,
+    Unknown,
+    children,
+    walk,
+)
+from bitweight.arithmetic.literals import exact_value, half_digit
+from bitweight.arithmetic.types import DataModel
+from bitweight.board.facts import Role
+from bitweight.judge.questions import StatedRole
+from bitweight.places import Place
+
+Key = tuple[Place, str]
+"""Where a constant is spelled and how, as `reals` takes it."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Knob:
+    """One constant. `half` is half of its last written digit, `whole` whether it is an integer.
+
+    `counts_bits` is true for the right operand of a shift, `on_reading` for one that shifts or
+    divides the bare reading. `hints` are the roles that its name (or comment) speaks of, `exponent`
+    the power of ten that its unit word says (3 for mV), None without one. `inside` are the
+    constants it is made of, where it is a computed one like `(1 << 12) - 1`.
+    """
+
+    key: Key
+    leaf: Leaf
+    value: Fraction
+    half: Fraction
+    whole: bool
+    counts_bits: bool = False
+    on_reading: bool = False
+    hints: frozenset[Role] = frozenset()
+    named: bool = False
+    exponent: int | None = None
+    stated: StatedRole | None = None
+    inside: tuple[Leaf, ...] = ()
+
+    @property
+    def is_round(self) -> bool:
+        """Whether it is a nameless power of ten or two: a scale factor, unless shown otherwise."""
+        return not self.named and (is_power(self.value, 10) or is_power(self.value, 2))
+
+    def holds(self, exact: Fraction) -> bool:
+        """Whether the constant is `exact` as well as its digits can say it."""
+        distance = abs(self.value - exact)
+        if self.whole and abs(self.value) >= _WIDE:
+            return distance < 1
+        return distance <= self.half
+
+    def rounds(self, exact: Fraction) -> bool:
+        """Whether `exact`, rounded down, up or to nearest, gives the constant."""
+        return abs(self.value - exact) < (1 if self.whole else self.half * (1 + _SLACK))
+
+
+_NOTHING: Mapping[Key, tuple[Leaf, ...]] = MappingProxyType({})
+_WIDE = 1000
+"""From here on a whole number may be rounded down or up; below, only to nearest."""
+_SLACK = Fraction(1, 10**9)
+
+
+def is_power(value: Fraction, base: int) -> bool:
+    """Whether the value is a power of the base, one included."""
+    above, below = value.numerator, value.denominator
+    if above <= 0 or (above != 1 and below != 1):
+        return False
+    number = max(above, below)
+    while number % base == 0:
+        number //= base
+    return number == 1
+
+
+def leaf_key(leaf: Leaf) -> Key:
+    """What tells one spelled constant from another."""
+    return (leaf.place, leaf.text)
+
+
+def knobs(
+    expression: Expression,
+    stated: Iterable[StatedRole] = (),
+    inside: Mapping[Key, tuple[Leaf, ...]] = _NOTHING,
+) -> tuple[Knob, ...]:
+    """Every spelled constant of the expression that may be replaced, in order of its first use.
+
+    `inside` is what `grouped` says of the constants that it made.
+    """
+    roles = {role.name: role for role in stated}
+    shifts = _shift_counts(expression)
+    touching = _on_reading(expression)
+    found: dict[Key, Knob] = {}
+    for node in walk(expression):
+        if not isinstance(node, Literal) or node.leaf is None:
+            continue
+        knob = _knob(node.leaf, node, roles)
+        if knob is None:
+            continue
+        earlier = found.get(knob.key, knob)
+        found[knob.key] = replace(
+            earlier,
+            counts_bits=earlier.counts_bits or id(node) in shifts,
+            on_reading=earlier.on_reading or id(node) in touching,
+        )
+    return tuple(_group(knob, inside) for knob in found.values())
+
+
+def _group(knob: Knob, inside: Mapping[Key, tuple[Leaf, ...]]) -> Knob:
+    """A computed constant speaks of full scale whatever the names inside it say."""
+    leaves = inside.get(knob.key)
+    return knob if leaves is None else replace(knob, inside=leaves, hints=frozenset())
+
+
+def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | None:
+    value, half = exact_value(leaf.text), half_digit(leaf.text)
+    if value is None or half is None:
+        return None
+    names = (*((leaf.name,) if leaf.name else ()), *leaf.names)
+    words = [word for name in names for word in _words(name)]
+    return Knob(
+        key=leaf_key(leaf),
+        leaf=leaf,
+        value=value,
+        half=half,
+        whole=node.type.is_integer,
+        hints=_hints(words) or _hints(_words(leaf.comment)),
+        named=leaf.name is not None,
+        exponent=_exponent(words),
+        stated=next((roles[name] for name in names if name in roles), None),
+    )
+
+
+def _bare(node: Expression) -> Expression:
+    """The node below conversions and declared defaults."""
+    while isinstance(node, Convert | Default):
+        node = node.operand
+    return node
+
+
+def _shift_counts(expression: Expression) -> frozenset[int]:
+    """Identities of the constants that say by how many bits something is shifted."""
+    return frozenset(
+        id(_bare(node.right))
+        for node in walk(expression)
+        if isinstance(node, Binary) and node.operator in ("<<", ">>")
+    )
+
+
+def _on_reading(expression: Expression) -> frozenset[int]:
+    """Identities of the constants that shift or divide the bare reading, first of all."""
+    return frozenset(
+        id(_bare(node.right))
+        for node in walk(expression)
+        if isinstance(node, Binary)
+        and node.operator in ("<<", ">>", "/")
+        and isinstance(_bare(node.left), Code)
+    )
+
+
+def grouped(
+    expression: Expression, model: DataModel
+) -> tuple[Expression, dict[Key, tuple[Leaf, ...]]]:
+    """The expression with computed counts like `(1 << 12) - 1` as single constants.
+
+    Returns also the constants inside each, by the key of the constant that stands for it.
+    """
+    folder = Folder(model)
+    rebuilt: dict[int, Expression] = {}
+    inside: dict[Key, tuple[Leaf, ...]] = {}
+    for node in walk(expression):
+        rebuilt[id(node)] = _rebuilt(node, rebuilt)
+        if isinstance(node, Binary) and _is_count(node):
+            value, leaves = folder.constant(node), _leaves(node)
+            if isinstance(value, int) and value > 1 and leaves:
+                leaf = replace(max(leaves, key=_weight), text=str(value))
+                inside[leaf_key(leaf)] = leaves
+                rebuilt[id(node)] = Literal(value=value, type=node.type, leaf=leaf)
+    return rebuilt[id(expression)], inside
+
+
+def _is_count(node: Binary) -> bool:
+    """Whether the operator makes a full-scale count: a shift, or one more or less than a value."""
+    if node.operator == "<<":
+        return True
+    right = _bare(node.right)
+    return node.operator in ("+", "-") and isinstance(right, Literal) and right.value == 1
+
+
+def _leaves(node: Expression) -> tuple[Leaf, ...]:
+    """The spelled constants below a node; empty where it holds anything but constants."""
+    found: dict[Leaf, None] = {}
+    for below in walk(node):
+        if isinstance(below, Code | Unknown):
+            return ()
+        if isinstance(below, Literal) and below.leaf is not None:
+            found[below.leaf] = None
+    return tuple(found)
+
+
+def _weight(leaf: Leaf) -> tuple[bool, int]:
+    """The constant that speaks for a group: a named one, else the largest."""
+    return leaf.name is not None, int(exact_value(leaf.text) or 0)
+
+
+def _rebuilt(node: Expression, rebuilt: dict[int, Expression]) -> Expression:
+    """The node over rebuilt operands; the node itself where none of them changed."""
+    if all(rebuilt[id(child)] is child for child in children(node)):
+        return node
+    match node:
+        case Literal() | Code() | Unknown():
+            return node
+        case Default() | Convert() | Unary():
+            return replace(node, operand=rebuilt[id(node.operand)])
+        case Binary():
+            return replace(node, left=rebuilt[id(node.left)], right=rebuilt[id(node.right)])
+        case Choose():
+            return replace(
+                node,
+                condition=rebuilt[id(node.condition)],
+                then=rebuilt[id(node.then)],
+                other=rebuilt[id(node.other)],
+            )
+
+
+def replaced(expression: Expression, literals: dict[Key, Literal]) -> Expression:
+    """The expression with other constants in the places of some."""
+    rebuilt: dict[int, Expression] = {}
+    for node in walk(expression):
+        if isinstance(node, Literal) and node.leaf is not None:
+            rebuilt[id(node)] = literals.get(leaf_key(node.leaf), node)
+        else:
+            rebuilt[id(node)] = _rebuilt(node, rebuilt)
+    return rebuilt[id(expression)]
+
+
+_WORD = re.compile(r"[A-Z]+(?![a-z])\d*|[A-Z]?[a-z]+\d*|\d+")
+_HINTS = (
+    ("vref aref ref vcc vdd vdda avcc avdd supply reference", (Role.REFERENCE,)),
+    ("max full fs fsr counts count steps res scale top range", (Role.FULL_SCALE,)),
+    ("bits bit shift", (Role.RESOLUTION,)),
+    ("div divider ratio dividing", (Role.DIVIDER, Role.INVERSE_DIVIDER)),
+    ("rtop rbot upper lower r1 r2 rhigh rlow rt rb ra resistor", (Role.RESISTANCE,)),
+    ("shunt rsense rsh rshunt sense", (Role.SHUNT,)),
+    ("gain amp amplifier", (Role.GAIN,)),
+    ("offset offs ofs zero mid bias", (Role.OFFSET, Role.ZERO_CODE, Role.AT)),
+    ("slope sens sensitivity per", (Role.SENSITIVITY,)),
+)
+_WORD_ROLES = {word: roles for words, roles in _HINTS for word in words.split()}
+_EXPONENTS = {
+    "v": 0, "volt": 0, "volts": 0, "mv": 3, "millivolt": 3, "millivolts": 3, "uv": 6,
+    "a": 0, "ma": 3, "ua": 6, "ohm": 0, "ohms": 0, "kohm": -3, "kohms": -3, "mohm": 3,
+    "milliohm": 3, "uohm": 6, "pct": 2, "percent": 2, "x10": 1, "x100": 2, "x1000": 3,
+}  # fmt: skip
+"""Powers of ten that unit words in names stand for (common practice)."""
+
+
+def _words(name: str) -> list[str]:
+    parts = re.split(r"[^A-Za-z0-9]+", name)
+    return [word.lower() for part in parts for word in (_split(part) if part else ())]
+
+
+def _split(part: str) -> list[str]:
+    return [part] if part.lower() in _EXPONENTS else _WORD.findall(part)
+
+
+def _hints(words: Iterable[str]) -> frozenset[Role]:
+    return frozenset(role for word in words for role in _WORD_ROLES.get(word, ()))
+
+
+def _exponent(words: Iterable[str]) -> int | None:
+    found = [_EXPONENTS[word] for word in words if word in _EXPONENTS]
+    return found[-1] if found else None

@@ -1,0 +1,276 @@
+"""What a constant may stand for: every board fact in every scaling that C code writes it in.
+
+Board facts and a constant enter; `Meaning`s leave: a fact, the exact value that the constant then
+has, and the unit it is written in.
+"""
+
+import math
+from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import dataclass
+from enum import Enum
+from fractions import Fraction
+from itertools import combinations
+
+from bitweight.board.facts import BoardFact, Role
+from bitweight.judge.knobs import Knob
+from bitweight.units import coherent, takes_prefix
+
+
+class Scaling(Enum):
+    """In which multiples a kind of fact is written."""
+
+    COUNT = "counts: sums of 2**n results"
+    PLAIN = "as it is"
+    RATIO = "powers of ten, and fixed point with a power of two"
+    QUANTITY = "powers of ten"
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Term:
+    """A positive number of the board, in the coherent unit.
+
+    Its unit is `unit` if that takes prefixes; else 10**`shown_exponent` of it (None: no power of
+    ten) in the coherent unit are one of the unit shown.
+    """
+
+    role: Role
+    rule: str
+    name: str
+    value: Fraction
+    scaling: Scaling
+    unit: str = ""
+    shown_exponent: int | None = None
+    prefixed: bool = False
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Meaning:
+    """A term as a constant writes it: `exact` = term value * 10**exponent * 2**doublings."""
+
+    term: Term
+    exact: Fraction
+    exponent: int
+    doublings: int
+
+    @property
+    def is_natural(self) -> bool:
+        """Whether the scaling is an everyday one: an SI prefix, the number as it is, one result."""
+        if self.term.scaling is Scaling.QUANTITY:
+            own = self.term.shown_exponent
+            return self.exponent % 3 == 0 or (own is not None and (self.exponent - own) % 3 == 0)
+        return not self.exponent and not self.doublings
+
+    @property
+    def unit(self) -> str:
+        """The unit of the constant: "mV" for volts times 1000, "" for a plain number."""
+        term = self.term
+        if self.doublings and term.scaling is not Scaling.COUNT:
+            return f"/ 2**{self.doublings}"
+        if term.scaling is not Scaling.QUANTITY:
+            return ""
+        if term.prefixed and self.exponent in _PREFIXES:
+            return _PREFIXES[self.exponent] + term.unit
+        if self.exponent == term.shown_exponent or not self.exponent:
+            return term.unit
+        return f"* 1e{-self.exponent} {term.unit}"
+
+
+_PREFIXES = {-6: "M", -3: "k", 0: "", 3: "m", 6: "u", 9: "n"}
+_DECIMALS = range(-6, 10)
+_RATIO_DECIMALS = range(7)
+_FIXED_POINTS = range(4, 25)
+_SUMS = range(11)
+_FIXED_POINT_COMMON = (0, 8, 10, 12, 14, 15, 16, 20)
+_FINEST_COMPOSITE = Fraction(1, 50)
+"""A constant whose rounding is coarser than 2 % fits some product of facts by chance."""
+_COARSE = Fraction(1, 20)
+"""A constant whose rounding is coarser than 5 % stands for facts in everyday scalings only."""
+_CLOSE = 1e-9
+
+_SCALINGS = {
+    Role.FULL_SCALE: Scaling.COUNT,
+    Role.RESOLUTION: Scaling.PLAIN,
+    Role.ZERO_CODE: Scaling.PLAIN,
+    Role.CODE: Scaling.PLAIN,
+    Role.DIVIDER: Scaling.RATIO,
+    Role.INVERSE_DIVIDER: Scaling.RATIO,
+    Role.GAIN: Scaling.RATIO,
+}
+"""The scaling of plain numbers by role; what has a unit is written in powers of ten."""
+_FOLDED = (Role.STEP, Role.SPAN)
+"""Facts that are products of others: a constant that is one was computed by hand."""
+
+
+def terms(
+    facts: Iterable[BoardFact], count: Fraction, accepted: Sequence[Fraction] = ()
+) -> tuple[Term, ...]:
+    """The numbers of the board without signs and zeros.
+
+    Of the accepted full-scale counts only the one that is taken, `count`, is among them.
+    """
+    found: dict[Term, None] = {}
+    for fact in facts:
+        value = abs(fact.value - fact.unit.zero)
+        other_count = fact.role is Role.FULL_SCALE and fact.value != count
+        if value and not (other_count and fact.value in accepted):
+            found[_term(fact, value)] = None
+    return tuple(found)
+
+
+def _term(fact: BoardFact, value: Fraction) -> Term:
+    unit = coherent(fact.unit.dimension)
+    prefixed = takes_prefix(unit)
+    plain = not fact.unit.dimension
+    return Term(
+        role=fact.role,
+        rule=fact.rule,
+        name=fact.name,
+        value=value,
+        scaling=_SCALINGS.get(fact.role, Scaling.QUANTITY) if plain else Scaling.QUANTITY,
+        unit=unit.text if prefixed else fact.unit.text,
+        shown_exponent=_power(1 / fact.unit.scale),
+        prefixed=prefixed,
+    )
+
+
+def _power(value: Fraction) -> int | None:
+    """The exponent of a power of ten, None for any other number."""
+    exponent = round(math.log10(value))
+    return exponent if Fraction(10) ** exponent == value else None
+
+
+def matches(
+    knob: Knob, wanted: Fraction, all_terms: Sequence[Term], closeness: float = _CLOSE
+) -> Iterator[Meaning]:
+    """Every meaning whose exact value is `wanted`, within a relative closeness."""
+    if wanted <= 0:
+        return
+    for term in _allowed(knob, all_terms):
+        ratio = float(wanted / term.value)
+        for exponent, doublings in _powers(term.scaling, ratio):
+            exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
+            if abs(float(wanted / exact) - 1) <= closeness:
+                yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
+
+
+def nearest(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
+    """For each term the scaling nearest to the constant, if it is within a factor of five."""
+    if knob.value <= 0:
+        return
+    for term in _allowed(knob, all_terms):
+        ratio = float(knob.value / term.value)
+        powers = _nearest_powers(knob, term, ratio)
+        for exponent, doublings in powers:
+            exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
+            if abs(math.log10(float(knob.value / exact))) < 0.7:
+                yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
+
+
+def snaps(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
+    """Every meaning that the constant says as well as its digits can."""
+    coarse = knob.half > abs(knob.value) * _COARSE
+    return (
+        meaning
+        for meaning in nearest(knob, all_terms)
+        if knob.holds(meaning.exact) and (meaning.is_natural or not coarse)
+    )
+
+
+def _allowed(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Term]:
+    """The terms that may be in a constant of this form, all of one stated role if there is one."""
+    for term in all_terms:
+        if knob.stated is not None and not _is_stated(knob, term):
+            continue
+        if (term.role is Role.RESOLUTION) != knob.counts_bits:
+            continue
+        if term.role in _FOLDED or (knob.inside and term.role is not Role.FULL_SCALE):
+            continue
+        yield term
+
+
+def _is_stated(knob: Knob, term: Term) -> bool:
+    stated = knob.stated
+    if stated is None:
+        return True
+    named = (
+        stated.subject is None
+        or stated.subject in term.name.split()
+        or term.role.value
+        in (
+            "divider",
+            "inverse divider",
+        )
+    )
+    role = "offset" if term.role in (Role.ZERO_CODE, Role.AT) else term.role.value
+    return named and stated.role in (role, term.role.value)
+
+
+def _powers(scaling: Scaling, ratio: float) -> Iterator[tuple[int, int]]:
+    """Exponents of ten and of two that make a term `ratio` times as large."""
+    tens, twos = round(math.log10(ratio)), round(math.log2(ratio))
+    match scaling:
+        case Scaling.PLAIN:
+            yield 0, 0
+        case Scaling.COUNT:
+            if twos in _SUMS:
+                yield 0, twos
+        case Scaling.QUANTITY:
+            if tens in _DECIMALS:
+                yield tens, 0
+        case Scaling.RATIO:
+            if tens in _RATIO_DECIMALS:
+                yield tens, 0
+            if twos in _FIXED_POINTS:
+                yield 0, twos
+
+
+def _nearest_powers(knob: Knob, term: Term, ratio: float) -> Iterator[tuple[int, int]]:
+    if knob.exponent is not None and term.scaling is Scaling.QUANTITY:
+        yield knob.exponent, 0
+        return
+    if knob.stated is not None and knob.stated.unit is not None:
+        yield _power(1 / knob.stated.unit) or 0, 0
+        return
+    yield from _powers(term.scaling, ratio)
+
+
+def composites(knob: Knob, all_terms: Sequence[Term]) -> tuple[Fraction, ...]:
+    """Products of facts (a gain per count and the like) that the constant may be, rounded by hand.
+
+    Only products of two facts or more, in any decimal scaling and the common fixed points.
+    """
+    tolerance = 1 if knob.whole else knob.half
+    if knob.value <= 0 or knob.inside or tolerance > knob.value * _FINEST_COMPOSITE:
+        return ()
+    found: set[Fraction] = set()
+    for product in _products(all_terms):
+        for twos in _FIXED_POINT_COMMON:
+            scaled = product * (1 << twos)
+            tens = round(math.log10(float(knob.value / scaled)))
+            exact = scaled * Fraction(10) ** tens
+            if knob.rounds(exact) and exact != knob.value:
+                found.add(exact)
+    return tuple(sorted(found, key=lambda exact: (abs(exact - knob.value), exact)))
+
+
+def _products(all_terms: Sequence[Term]) -> tuple[Fraction, ...]:
+    """Steps and spans of the line, and the products of gain factors, each with its reciprocal."""
+    found: dict[Fraction, None] = {}
+    for term in all_terms:
+        if term.role in _FOLDED:
+            found |= {term.value: None, 1 / term.value: None}
+    factors = [
+        1 / term.value if term.role in (Role.FULL_SCALE, Role.GAIN, Role.SHUNT) else term.value
+        for term in all_terms
+        if term.role in _FACTORS
+    ][:_MOST_FACTORS]
+    for size in range(2, len(factors) + 1):
+        for chosen in combinations(factors, size):
+            product = math.prod(chosen, start=Fraction(1))
+            found |= {product: None, 1 / product: None}
+    return tuple(found)
+
+
+_FACTORS = (Role.REFERENCE, Role.FULL_SCALE, Role.INVERSE_DIVIDER, Role.GAIN, Role.SHUNT)
+_MOST_FACTORS = 6
+"""Facts multiplied with each other: reference, count and four stages."""

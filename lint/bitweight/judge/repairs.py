@@ -1,0 +1,177 @@
+"""One correction of one constant: which meaning it takes, and which rule reports it."""
+
+import math
+from collections.abc import Iterable
+from dataclasses import dataclass, replace
+from fractions import Fraction
+
+from bitweight.board.facts import Role
+from bitweight.judge.knobs import Knob, is_power
+from bitweight.judge.meanings import Meaning, Scaling
+
+RULE_ORDER = (
+    "justification",
+    "resolution",
+    "full-scale",
+    "reference-value",
+    "divider-ratio",
+    "chain-constant",
+    "unit-prefix",
+)
+"""Which explanation is taken first among equally small ones."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Repair:
+    """A constant takes the value `exact`. `knob` is None for a correction that no constant carries.
+
+    `meaning` is the board fact it then is, None for a power of ten.
+    """
+
+    rule: str
+    knob: Knob | None = None
+    meaning: Meaning | None = None
+    exact: Fraction = Fraction(0)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Layout:
+    """How a code stands in its word, as far as rules depend on it.
+
+    `unit_stated` is False where the unit of the result is inferred: no power of ten is a fault
+    then.
+    """
+
+    bits: int
+    signed: bool
+    shift: int
+    word_bits: int
+    word_stated: bool
+    unit_stated: bool
+
+    @property
+    def widths(self) -> tuple[int, ...]:
+        """Bits that a code of this converter may be called: its own, and those without the sign."""
+        return (self.bits, self.bits - 1) if self.signed else (self.bits,)
+
+
+def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
+    """The constant takes the value of a fact; None where that says nothing against the constant."""
+    if knob.holds(meaning.exact):
+        return None
+    if _holds_already(knob, meaning):
+        names_unit = knob.exponent is not None and knob.exponent == meaning.exponent
+        if not (names_unit and layout.unit_stated):
+            return None
+        return Repair(rule="unit-prefix", knob=knob, meaning=meaning, exact=meaning.exact)
+    rule = meaning.term.rule
+    if meaning.term.role is Role.FULL_SCALE:
+        rule = _count_rule(knob.value, meaning, layout)
+    return Repair(rule=rule, knob=knob, meaning=meaning, exact=meaning.exact)
+
+
+def power_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None:
+    """A bare power of ten takes another one."""
+    if not layout.unit_stated or not (is_power(knob.value, 10) and is_power(exact, 10)):
+        return None
+    if knob.value == exact or (knob.whole and exact.denominator != 1):
+        return None
+    return Repair(rule="unit-prefix", knob=knob, exact=exact)
+
+
+def shift_repairs(knob: Knob, layout: Layout) -> tuple[Repair, ...]:
+    """What the number of bits in a shift may have to be: where the code stands, or its width."""
+    repairs = [
+        Repair(rule="resolution", knob=knob, exact=Fraction(width)) for width in layout.widths
+    ]
+    if knob.on_reading:
+        repairs.insert(0, Repair(rule="justification", knob=knob, exact=Fraction(layout.shift)))
+    return tuple(repair for repair in repairs if repair.exact != knob.value)
+
+
+def divisor_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None:
+    """A power of two that divides the bare reading takes the code to where it stands."""
+    if not knob.on_reading or not is_power(knob.value, 2) or exact != 1 << layout.shift:
+        return None
+    return Repair(rule="justification", knob=knob, exact=exact)
+
+
+def _holds_already(knob: Knob, meaning: Meaning) -> bool:
+    """Whether the constant is the fact already, in another everyday scaling: V, not mV."""
+    if meaning.term.scaling not in (Scaling.QUANTITY, Scaling.RATIO) or knob.value <= 0:
+        return False
+    exponent = round(math.log10(knob.value / meaning.term.value))
+    held = replace(
+        meaning,
+        exact=meaning.term.value * Fraction(10) ** exponent,
+        exponent=exponent,
+        doublings=0,
+    )
+    return held.is_natural and knob.holds(held.exact)
+
+
+def _count_rule(value: Fraction, meaning: Meaning, layout: Layout) -> str:
+    """Full scale, a count of other bits, or one for a code that stands elsewhere in its word."""
+    if layout.shift and meaning.doublings == layout.shift:
+        lacking = meaning.exact / (1 << layout.shift)
+        if abs(value - lacking) <= 1:
+            return "justification"
+    bits = _count_bits(value, layout)
+    if bits is None or bits in layout.widths:
+        return "full-scale"
+    whole_word = not layout.shift and layout.word_stated and bits == layout.word_bits
+    return "justification" if whole_word and is_power(value, 2) else "resolution"
+
+
+def _count_bits(value: Fraction, layout: Layout) -> int | None:
+    """M where the value is 2**M or 2**M - 1 of a usual converter, else None."""
+    if value.denominator != 1 or not 16 <= value <= 1 << 32:
+        return None
+    for count in (value, value + 1):
+        if is_power(count, 2):
+            return count.numerator.bit_length() - 1
+    return None
+
+
+Rank = tuple[object, ...]
+
+
+def rank(repairs: Iterable[Repair]) -> Rank:
+    """Sorts explanations of one size: the better one is smaller."""
+    chosen = tuple(repairs)
+    return (
+        sum(_is_doubtful(repair) for repair in chosen),
+        sum(repair.meaning is not None and not repair.meaning.is_natural for repair in chosen),
+        sorted(RULE_ORDER.index(repair.rule) for repair in chosen),
+        sum(repair.knob is None for repair in chosen),
+        sum(not _is_hinted(repair) for repair in chosen),
+        round(sum(_distance(repair) for repair in chosen), 9),
+        sum(repair.knob is not None and not repair.knob.named for repair in chosen),
+        [str(repair.knob.leaf.place) if repair.knob else "" for repair in chosen],
+    )
+
+
+def _is_doubtful(repair: Repair) -> bool:
+    """Whether the constant's name, or its being a bare scale factor, speaks against the meaning."""
+    knob, meaning = repair.knob, repair.meaning
+    if knob is None or meaning is None or knob.stated is not None:
+        return False
+    if knob.hints and meaning.term.role not in knob.hints:
+        return True
+    counts = meaning.term.role in (Role.FULL_SCALE, Role.ZERO_CODE)
+    return knob.is_round and not (counts and is_power(knob.value, 2))
+
+
+def _is_hinted(repair: Repair) -> bool:
+    knob, meaning = repair.knob, repair.meaning
+    if knob is None or meaning is None:
+        return False
+    return knob.stated is not None or meaning.term.role in knob.hints
+
+
+def _distance(repair: Repair) -> float:
+    """How far the constant is from its meaning, in decades."""
+    knob = repair.knob
+    if knob is None or knob.value <= 0 or repair.exact <= 0:
+        return 1.0
+    return abs(math.log10(repair.exact / knob.value))

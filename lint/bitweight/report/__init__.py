@@ -1,0 +1,1 @@
+"""Findings as text: each reporter takes facts and returns text."""

@@ -1,0 +1,328 @@
+"""The terminal's screen: an overview, then a sheet for each channel, then the counts.
+
+A screen holds an outcome and yields styled lines for a width; it never prints. Status and level
+stand in words, so that nothing is lost without colour; text from a tree is a literal, never markup.
+"""
+
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass
+from itertools import zip_longest
+
+from rich.console import Console, ConsoleOptions, RenderResult
+from rich.text import Text
+
+from bitweight.judge.cases import Case, Judgement, Status
+from bitweight.judge.findings import Finding
+from bitweight.judge.outcomes import Outcome
+from bitweight.report.blocks import finding_block, reminder
+from bitweight.report.drawings import Ink, bars, drawing
+from bitweight.report.rulings import BOLD, STATUS_STYLES, entry, heading, table_row
+from bitweight.report.sides import (
+    chain_text,
+    full_scale_text,
+    gain_text,
+    measures_text,
+    place_text,
+    reference_text,
+    rows,
+)
+from bitweight.report.texts import CAUTION, accepted, closing, figure, figures, shown, wrapped
+
+NARROWEST, WIDEST = 60, 120
+"""Columns a sheet is laid out for; a terminal outside gets the nearer bound."""
+
+_HEIGHT = 7
+"""Rows of a drawing."""
+
+_MARKS = {Status.VERIFIED: " ", Status.MISMATCHED: "x", Status.UNTRACED: "?"}
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Screen:
+    """Everything a run of `verify` shows on a terminal, in the characters of `ink`."""
+
+    outcome: Outcome
+    ink: Ink = Ink.FINE
+
+    def __rich_console__(self, console: Console, options: ConsoleOptions) -> RenderResult:
+        """The lines for the console's width."""
+        yield from self.lines(options.max_width)
+
+    def lines(self, width: int) -> Iterator[Text]:
+        """The lines of the screen, each at most as wide as the sheet."""
+        columns = min(max(width, NARROWEST), WIDEST)
+        numbers = _numbered(self.outcome)
+        for line in _screen(self.outcome, numbers, columns, self.ink):
+            if self.ink is Ink.PLAIN:
+                line.plain = line.plain.replace("µ", "u")
+            line.rstrip()
+            yield line
+
+
+Numbers = Mapping[int, int]
+"""The number of each finding (key: its index in the outcome), in the order of the sheets."""
+
+
+def _screen(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
+    yield from _overview(outcome, numbers, width, ink)
+    for case in outcome.facts.cases:
+        yield Text()
+        yield from _sheet(case, outcome, numbers, width, ink)
+    yield from _outside(outcome, numbers, width, ink)
+    yield Text()
+    yield Text(ink.light * width, style="dim")
+    yield from _closing(outcome, width)
+
+
+def _numbered(outcome: Outcome) -> Numbers:
+    """Findings numbered down the page: by channel, worst first; accepted ones and the rest last."""
+    order = {case.channel.name: index for index, case in enumerate(outcome.facts.cases)}
+    last = len(order)
+
+    def position(index: int) -> tuple[int, bool, int, int]:
+        one = outcome.findings[index]
+        channel = min((order.get(name, last) for name in one.channels), default=last)
+        return (channel, one.deviation is not None, -one.level.weight, index)
+
+    ranked = sorted(range(len(outcome.findings)), key=position)
+    return {index: number for number, index in enumerate(ranked, start=1)}
+
+
+def _overview(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
+    board = outcome.facts.board
+    revision = f", revision {board.revision}" if board.revision else ""
+    variant = f", variant {board.variant}" if board.variant else ""
+    title = f"{board.name or 'board'}{revision}{variant}"
+    for line in wrapped(title, width):
+        yield Text(line, style=BOLD)
+    yield Text(shown(board.file), style="dim")
+    yield Text(ink.light * width, style="dim")
+    columns = _columns(outcome.facts.cases, width)
+    yield table_row(("", *columns, "findings"), tuple(columns.values()), width)
+    for case in outcome.facts.cases:
+        status = outcome.statuses[case.channel.name]
+        findings = _listed(case, outcome, numbers)
+        yield from _overview_rows(case, status, findings, columns, width)
+
+
+def _columns(cases: Sequence[Case], width: int) -> Mapping[str, int]:
+    """The columns of the overview and their widths; a narrow sheet leaves out what is allowed."""
+    longest = max((len(shown(case.channel.name)) for case in cases), default=0)
+    name = max(7, min(longest, 24 if width >= 80 else 14))
+    columns = {"channel": name, "status": 10, "worst error": 11, "allowed": 10}
+    if width < 76:
+        del columns["allowed"]
+    return columns
+
+
+def _overview_rows(
+    case: Case, status: Status, findings: str, columns: Mapping[str, int], width: int
+) -> Iterator[Text]:
+    widths = tuple(columns.values())
+    worst, allowed = ("-", "-") if case.judgement is None else _worst_texts(case.judgement)
+    name, style = shown(case.channel.name), STATUS_STYLES[status]
+    if len(name) > columns["channel"]:
+        for line in wrapped(case.channel.name, width - 2):
+            yield table_row((_MARKS[status], line), (), width, style=style)
+        name = ""
+    cells = {"channel": name, "status": status.value, "worst error": worst, "allowed": allowed}
+    first, *rest = wrapped(findings, width - sum(widths) - 2 * len(widths) - 2)
+    kept = [cells[column] for column in columns]
+    yield table_row((_MARKS[status], *kept, first), widths, width, style=style)
+    for more in rest:
+        yield table_row(("", *[""] * len(kept), more), widths, width)
+
+
+def _listed(case: Case, outcome: Outcome, numbers: Numbers) -> str:
+    """`error 1 2, warning 3`: the findings of a channel by level, by their numbers."""
+    groups: dict[str, list[int]] = {"error": [], "warning": [], "note": [], "accepted": []}
+    for index, finding in enumerate(outcome.findings):
+        if case.channel.name in finding.channels:
+            word = finding.level.value if finding.deviation is None else "accepted"
+            groups[word].append(numbers[index])
+    parts = [f"{word} {' '.join(map(str, sorted(of)))}" for word, of in groups.items() if of]
+    return ", ".join(parts) or "-"
+
+
+def _worst_texts(judgement: Judgement) -> tuple[str, str]:
+    unit = judgement.ideal.channel.unit.text
+    worst = figure(float(judgement.error[judgement.worst_index]), unit, digits=3, sign=True)
+    return worst, figure(float(judgement.allowed[judgement.worst_index]), unit, digits=3)
+
+
+def _sheet(case: Case, outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
+    status = outcome.statuses[case.channel.name]
+    yield heading(case.channel.name, status, width, ink)
+    yield from entry("measures", measures_text(case.channel), width)
+    if case.channel.hazard and any(
+        case.channel.name in finding.channels for finding in outcome.findings
+    ):
+        yield from entry("caution", case.channel.hazard, width, style=BOLD)
+    if case.judgement is None:
+        yield from _untraced(case, outcome, width)
+    elif status is Status.VERIFIED:
+        yield from _compact(case, case.judgement, width, ink)
+    else:
+        yield from _full(case, case.judgement, width, ink)
+    for index, finding in sorted(enumerate(outcome.findings), key=lambda one: numbers[one[0]]):
+        if case.channel.name not in finding.channels:
+            continue
+        yield Text()
+        if _shown_first(finding, outcome) == case.channel.name:
+            lines = outcome.source_lines
+            yield from finding_block(finding, numbers[index], case, lines, width, ink)
+        else:
+            yield from reminder(
+                finding, numbers[index], case, _shown_first(finding, outcome), width
+            )
+
+
+def _shown_first(finding: Finding, outcome: Outcome) -> str:
+    """The channel whose sheet shows the finding in full."""
+    cases = (case.channel.name for case in outcome.facts.cases)
+    return next((name for name in cases if name in finding.channels), "")
+
+
+def _untraced(case: Case, outcome: Outcome, width: int) -> Iterator[Text]:
+    converter = case.channel.converter
+    sides = (reference_text(converter), full_scale_text(converter), chain_text(case.channel))
+    yield from entry("board", "; ".join(sides), width)
+    reason = outcome.reasons.get(case.channel.name) or case.reason or "the reason is not known"
+    yield from entry("firmware", f"untraced: {reason}", width, style=BOLD)
+
+
+def _compact(case: Case, judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
+    converter, unit = case.channel.converter, case.channel.unit.text
+    sides = (
+        reference_text(converter),
+        full_scale_text(converter),
+        chain_text(case.channel),
+        gain_text(judgement.hardware, unit),
+    )
+    yield from entry("board", "; ".join(sides), width)
+    formula = f"{_formula(judgement)}; {gain_text(judgement.firmware, unit)}"
+    yield from entry("firmware", formula, width)
+    yield from entry("", _conversion_place(judgement), width)
+    yield from entry("error", _error_text(judgement), width)
+    held = judgement.in_range
+    codes = judgement.codes[held]
+    if len(codes):
+        line = bars(judgement.error[held], judgement.allowed[held], width=width - 38, ink=ink)
+        ends = f"code {codes[0]} {line} {codes[-1]}"
+        yield from entry("of allowed", ends, width)
+
+
+def _full(case: Case, judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
+    yield from _sides(case, judgement, width)
+    yield from entry("formula", _formula(judgement), width)
+    yield from entry("", _conversion_place(judgement), width)
+    for assumption in judgement.conversion.assumed:
+        yield from entry("assumed", assumption, width)
+    yield from entry("error", _error_text(judgement), width)
+    yield from _drawn(judgement, width, ink)
+    yield from _points(judgement, width)
+
+
+def _sides(case: Case, judgement: Judgement, width: int) -> Iterator[Text]:
+    """The board beside the firmware; `=` and `<>` say whether constants agree."""
+    column = (width - 20) // 2
+    widths = (10, column, 2)
+    yield table_row(("", "", "board", "", "firmware"), widths, width, style="dim")
+    for row in rows(case, judgement):
+        sign = {None: "", True: "=", False: "<>"}[row.agrees]
+        texts = zip_longest(
+            (row.label,),
+            wrapped(row.board, column),
+            (sign,),
+            wrapped(row.firmware, column),
+            fillvalue="",
+        )
+        style = BOLD if row.agrees is False else ""
+        for cells in texts:
+            yield table_row(("", *cells), widths, width, style=style)
+
+
+def _formula(judgement: Judgement) -> str:
+    conversion = judgement.conversion
+    if conversion.formula.startswith(conversion.result):
+        return conversion.formula
+    return f"{conversion.result} = {conversion.formula}"
+
+
+def _conversion_place(judgement: Judgement) -> str:
+    conversion = judgement.conversion
+    return f"{place_text(conversion.place.file, conversion.place.line)} in {conversion.function}"
+
+
+def _error_text(judgement: Judgement) -> str:
+    worst, allowed = _worst_texts(judgement)
+    span = float(judgement.ideal.span)
+    share = 100 * float(judgement.error[judgement.worst_index]) / span if span else 0.0
+    code = judgement.codes[judgement.worst_index]
+    origin = {"board": "board file", "budget": "uncertainty budget"}
+    source = origin.get(judgement.allowed_from, judgement.allowed_from)
+    percent = figure(share, "%", digits=3, sign=True)
+    return f"worst {worst} at code {code} ({percent} of span); allowed {allowed} ({source})"
+
+
+def _drawn(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
+    held = judgement.in_range
+    for line in drawing(
+        judgement.codes[held],
+        judgement.error[held],
+        judgement.allowed[held],
+        unit=judgement.ideal.channel.unit.text,
+        width=width - 2,
+        height=_HEIGHT,
+        ink=ink,
+    ):
+        yield Text(f"  {line}")
+
+
+def _points(judgement: Judgement, width: int) -> Iterator[Text]:
+    """The reading at the bottom, middle and top of the range, both sides and the difference."""
+    unit, points = judgement.ideal.channel.unit.text, judgement.points
+    if not points:
+        return
+    resolution = judgement.lsb / 10
+    sides = figures(
+        [*(point.hardware for point in points), *(point.firmware for point in points)],
+        unit,
+        resolution=resolution,
+    )
+    count = len(points)
+    widths = (10, 8, 12, 12)
+    titles = ("", "reading", "code", "board", "firmware", "error")
+    yield table_row(titles, widths, width, style="dim")
+    for index, point in enumerate(points):
+        error = figure(point.firmware - point.hardware, unit, digits=3, sign=True)
+        name = ("bottom", "middle", "top")[index] if count == 3 else ""
+        cells = ("", name, str(point.at_count), sides[index], sides[count + index], error)
+        yield table_row(cells, widths, width)
+
+
+def _outside(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
+    """Findings that belong to no channel's sheet."""
+    rest = [index for index, one in enumerate(outcome.findings) if not _shown_first(one, outcome)]
+    if not rest:
+        return
+    yield Text()
+    yield heading("outside the channels", None, width, ink)
+    for index in sorted(rest, key=numbers.__getitem__):
+        yield Text()
+        finding = outcome.findings[index]
+        yield from finding_block(finding, numbers[index], None, outcome.source_lines, width, ink)
+
+
+def _closing(outcome: Outcome, width: int) -> Iterator[Text]:
+    if any(finding.hazard for finding in outcome.findings):
+        yield from entry("caution", CAUTION, width)
+    open_ones = [
+        f"{case.channel.name} ({status.value})"
+        for case in outcome.facts.cases
+        if (status := outcome.statuses[case.channel.name]) is not Status.VERIFIED
+    ]
+    if open_ones:
+        yield from entry("to settle", ", ".join(open_ones), width)
+    for line in wrapped(closing(outcome.counts, accepted(outcome.findings)), width):
+        yield Text(line, style=BOLD)

@@ -1,0 +1,185 @@
+"""The two sides of a channel in words: what the board has, what the code has in its place.
+
+A case goes in, short texts come out; sheets arrange them. Nothing is judged here.
+"""
+
+from collections.abc import Container, Iterable, Sequence
+from dataclasses import dataclass
+
+from bitweight.arithmetic.expressions import Leaf
+from bitweight.board.chains import ideal, not_computed
+from bitweight.board.hardware import Channel, Converter
+from bitweight.board.parts import Part, Share
+from bitweight.board.stages import Amplifier, Divider, Linear, LowPass, Shunt, Stage
+from bitweight.judge.cases import Case, Judgement, Side
+from bitweight.places import Place
+from bitweight.quantities import spelled
+from bitweight.report.texts import figure, number, shown
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Row:
+    """One line of the comparison; `agrees` is None where there are no constants to compare."""
+
+    label: str
+    board: str
+    firmware: str
+    agrees: bool | None = None
+
+
+def rows(case: Case, judgement: Judgement) -> tuple[Row, ...]:
+    """Reference, full-scale count, chain, gain and offset, the board's beside the firmware's."""
+    channel = case.channel
+    groups = _grouped(judgement.explanation.roles)
+    explained = judgement.explanation
+    wrong = {one.place for one in (*explained.wrong, *explained.cancelling)}
+    constants = (
+        ("reference", reference_text(channel.converter)),
+        ("full scale", full_scale_text(channel.converter)),
+        ("chain", chain_text(channel)),
+    )
+    unit = channel.unit.text
+    return (
+        *(
+            Row(
+                label=label,
+                board=board,
+                firmware=", ".join(map(_leaf_text, groups[label])),
+                agrees=_agrees(groups[label], wrong),
+            )
+            for label, board in constants
+        ),
+        Row(
+            label="gain",
+            board=gain_text(judgement.hardware, unit),
+            firmware=gain_text(judgement.firmware, unit) + _gain_difference(judgement),
+        ),
+        Row(
+            label="offset",
+            board=offset_text(judgement.hardware, unit),
+            firmware=offset_text(judgement.firmware, unit),
+        ),
+    )
+
+
+def hardware_side(case: Case) -> Side:
+    """The board's line: known for every channel whose chain is computed, traced or not."""
+    if case.judgement is not None:
+        return case.judgement.hardware
+    if not_computed(case.channel) is not None:
+        return Side(gain=None, offset=None)
+    line = ideal(case.channel)
+    return Side(gain=float(line.gain), offset=float(line.offset))
+
+
+def measures_text(channel: Channel) -> str:
+    """What the channel measures and where it enters: `0 V to 16 V, converter acq input 2`."""
+    span = f"{channel.range[0]} to {channel.range[1]}" if channel.range else channel.unit.text
+    entry = f"converter {channel.converter.name}"
+    if channel.input is not None:
+        entry += f" input {channel.input}"
+    if channel.pin is not None:
+        entry += f" ({channel.pin})"
+    return ", ".join(part for part in (span, entry) if part)
+
+
+def reference_text(converter: Converter) -> str:
+    """`2.56 V half x 2`: the reference, its name, and the factor of the converter's pin."""
+    text = f"{spelled(converter.reference.voltage)} {converter.reference.name}"
+    gain = converter.reference_gain
+    return text if gain == 1 else f"{text} x {number(float(gain))}"
+
+
+def full_scale_text(converter: Converter) -> str:
+    """`4096 counts`, and whether the board file leaves that to be assumed."""
+    counts = " or ".join(number(float(count)) for count in converter.accepted_full_scales)
+    return f"{counts} counts" if converter.full_scale_stated else f"{counts} counts (by default)"
+
+
+def chain_text(channel: Channel) -> str:
+    """The stages in order, one short phrase each."""
+    return "; ".join(map(_stage_text, channel.chain)) or "straight to the pin"
+
+
+def gain_text(side: Side, unit: str) -> str:
+    """Gain per count in engineering notation."""
+    return "no straight line" if side.gain is None else f"{figure(side.gain, unit)}/count"
+
+
+def offset_text(side: Side, unit: str) -> str:
+    """Offset in engineering notation."""
+    return "no straight line" if side.offset is None else figure(side.offset, unit)
+
+
+def result_unit_text(channel: Channel, judgement: Judgement) -> str:
+    """What one count of the result stands for: `0.1 kPa`."""
+    stated = channel.firmware.unit
+    if stated is not None and judgement.unit_from == "board":
+        return stated.text
+    return f"{number(judgement.scale, 12)} {channel.unit.text}".strip()
+
+
+def _gain_difference(judgement: Judgement) -> str:
+    board, code = judgement.hardware.gain, judgement.firmware.gain
+    if not board or code is None:
+        return ""
+    percent = 100 * (code / board - 1)
+    return f" ({percent:+.2f} %)" if abs(percent) >= 0.005 else ""
+
+
+def _grouped(roles: Iterable[tuple[Leaf, str]]) -> dict[str, list[Leaf]]:
+    groups: dict[str, list[Leaf]] = {"reference": [], "full scale": [], "chain": []}
+    for leaf, role in roles:
+        word = role.split(" ", 1)[0]
+        label = {"reference": "reference", "full-scale": "full scale", "resolution": "full scale"}
+        groups[label.get(word, "chain")].append(leaf)
+    return groups
+
+
+def _agrees(leaves: Sequence[Leaf], wrong: Container[Place]) -> bool | None:
+    return not any(leaf.place in wrong for leaf in leaves) if leaves else None
+
+
+def _leaf_text(leaf: Leaf) -> str:
+    return f"{leaf.text} ({leaf.name})" if leaf.name else leaf.text
+
+
+def _stage_text(stage: Stage) -> str:
+    match stage:
+        case Divider():
+            load = f" with load {_part(stage.load)}" if stage.load else ""
+            return (
+                f"divider {_part(stage.top)} over {_part(stage.bottom)}{load}, "
+                f"x {number(float(stage.line().gain))}"
+            )
+        case Amplifier():
+            return f"amplifier x {number(float(stage.ratio()))}{_plus(stage.offset)}"
+        case Shunt():
+            return f"shunt {_part(stage.resistance)}"
+        case Linear():
+            at = f" at {_part(stage.at)}" if stage.at and stage.offset else ""
+            return f"sensor {_part(stage.sensitivity)}{_plus(stage.offset)}{at}"
+        case LowPass():
+            return f"low-pass {_part(stage.resistance)}, {_part(stage.capacitance)}"
+        case _:
+            return stage.KIND
+
+
+def _plus(offset: Part | Share | None) -> str:
+    match offset:
+        case None:
+            return ""
+        case Part():
+            return f" + {_part(offset)}"
+        case Share():
+            return f" + {offset.text}"
+
+
+def _part(part: Part) -> str:
+    name = f"{part.quantity.designator} " if part.quantity.designator else ""
+    return name + spelled(part.quantity)
+
+
+def place_text(file: str, line: int) -> str:
+    """`src/adc.c:31`, as sheets name places."""
+    return f"{shown(file)}:{line}"

@@ -1,0 +1,1 @@
+"""How a raw code becomes a number in the firmware."""

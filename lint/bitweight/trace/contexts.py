@@ -1,0 +1,274 @@
+"""What every run through the firmware shares: the program, the target, the patterns, the placeholders."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
+from functools import cached_property
+
+from bitweight.arithmetic.building import Folder
+from bitweight.arithmetic.expressions import Code, Expression, Leaf, Literal
+from bitweight.arithmetic.literals import literal
+from bitweight.arithmetic.types import CType, DataModel
+from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, Root
+from bitweight.firmware.outlines import line_comment
+from bitweight.firmware.symbols import Function, Program, Unit
+from bitweight.firmware.syntax import Expr
+from bitweight.limits import Limits
+from bitweight.places import Place
+from bitweight.trace.families import Family
+from bitweight.trace.memory import Input
+from bitweight.trace.patterns import Pattern, head, parsed
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Reading:
+    """Where a channel's code enters. `type` is that of the raw word where the code declares none."""
+
+    pattern: Pattern
+    channels: tuple[str, ...]
+    type: CType
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Given:
+    """A C expression whose value the board file states. `channel` where it is an ideal code of that channel."""
+
+    pattern: Pattern
+    value: float | int
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Wanted:
+    """A pattern as one unit reads it: its tree with that unit's macros expanded."""
+
+    tree: Expr
+    source: Reading | Given
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Declared:
+    """An object with static storage: its type and initialiser, and the unit that declares it.
+
+    `function` is where a static local stands; `constant` whether it is const.
+    """
+
+    name: str
+    type: ObjectType
+    value: Expr | None
+    unit: Unit
+    function: Function | None
+    constant: bool
+    declared_only: bool
+    key: Place
+
+
+@dataclass(kw_only=True)
+class Context:
+    """Shared by all runs of one tracing. Placeholders and parsed patterns are remembered here."""
+
+    program: Program
+    model: DataModel
+    limits: Limits
+    families: tuple[Family, ...]
+    readings: tuple[Reading, ...]
+    givens: tuple[Given, ...]
+    results: frozenset[str] = frozenset()
+    folder: Folder = field(init=False)
+    inputs: dict[int, Input] = field(default_factory=dict)
+    _kept: list[Expression] = field(default_factory=list)
+    _objects: dict[tuple[Location, ObjectType], Code] = field(default_factory=dict)
+    statics: dict[Root, Declared] = field(default_factory=dict)
+    in_progress: dict[Root, set[tuple[str | int, ...]]] = field(default_factory=dict)
+    pattern_constants: dict[int, tuple[Expr, int | float | None]] = field(default_factory=dict)
+    _literals: dict[tuple[str, int, str], Expression] = field(default_factory=dict)
+    _declared: dict[Root, Declared | None] = field(default_factory=dict)
+    _fixed: dict[Root, bool] = field(default_factory=dict)
+    _wanted: dict[str, Mapping[tuple[str, str], tuple[Wanted, ...]]] = field(default_factory=dict)
+    _comments: dict[tuple[str, int], str] = field(default_factory=dict)
+
+    def __post_init__(self) -> None:
+        self.folder = Folder(self.model)
+
+    def constant(self, expression: Expression) -> int | float | None:
+        """The C value of an expression without readings or placeholders."""
+        return self.folder.constant(expression)
+
+    # --- patterns --------------------------------------------------------------------------
+
+    def wanted(self, unit: Unit) -> Mapping[tuple[str, str], tuple[Wanted, ...]]:
+        """The board file's expressions as this unit reads them, by their head."""
+        if unit.path not in self._wanted:
+            found: dict[tuple[str, str], list[Wanted]] = {}
+            for source in (*self.readings, *self.givens):
+                tree = parsed(source.pattern.text, unit)
+                if tree is not None:
+                    found.setdefault(head(tree), []).append(Wanted(tree=tree, source=source))
+            self._wanted[unit.path] = {key: tuple(some) for key, some in found.items()}
+        return self._wanted[unit.path]
+
+    @cached_property
+    def reading_names(self) -> frozenset[str]:
+        """Every identifier that a reading mentions."""
+        return frozenset(name for one in self.readings for name in one.pattern.names)
+
+    @cached_property
+    def registers(self) -> tuple[str, ...]:
+        """The registers of the families whose contents matter where a reading is taken."""
+        return tuple(sorted({one.register for family in self.families for one in family.fields}))
+
+    # --- objects ---------------------------------------------------------------------------
+
+    def declared(self, location: Location, unit: Unit | None) -> Declared | None:
+        """The declaration of an object with static storage."""
+        root = location.root
+        if root in self.statics:
+            return self.statics[root]
+        if root.kind != "object":
+            return None
+        if root not in self._declared:
+            variable = self.program.variable(root.name, unit)
+            if variable is None or variable.location.root != root:
+                variable = next(
+                    (
+                        one.variables[root.name]
+                        for one in self.program.units.values()
+                        if root.name in one.variables
+                        and one.variables[root.name].location.root == root
+                    ),
+                    None,
+                )
+            self._declared[root] = variable and Declared(
+                name=variable.name,
+                type=variable.type,
+                value=variable.value,
+                unit=variable.unit,
+                function=None,
+                constant=variable.constant,
+                declared_only=variable.declared_only,
+                key=variable.key,
+            )
+        return self._declared[root]
+
+    def is_fixed(self, root: Root, declared: Declared) -> bool:
+        """Whether an object keeps its initialiser: const, or never written in the sources."""
+        if root not in self._fixed:
+            self._fixed[root] = declared.value is not None and (
+                declared.constant or not self.writers(root, declared)
+            )
+        return self._fixed[root]
+
+    def writers(self, root: Root, declared: Declared | None) -> tuple[Function, ...]:
+        """The functions that write an object, or hand out its address."""
+        if declared is not None and declared.function is not None:
+            candidates: tuple[Function, ...] = (declared.function,)
+        else:
+            candidates = self.program.all_functions(root.name)
+        whole = declared is None or isinstance(declared.type, Array)
+        return tuple(
+            one
+            for one in candidates
+            if self._touches(one, root, whole)
+        )
+
+    def _touches(self, function: Function, root: Root, whole: bool) -> bool:
+        seen = function.mentions
+        name = root.name
+        if name not in seen.writes and name not in seen.addressed:
+            if not (whole and name in seen.passes):
+                return False
+        if root in self.statics or root.kind != "object":
+            return True
+        variable = self.program.variable(name, function.unit)
+        return variable is not None and variable.location.root == root
+
+    # --- placeholders ----------------------------------------------------------------------
+
+    def _placeholder(self, text: str, type_: CType, place: Place, made: Input) -> Code:
+        node = Code(channels=(), text=text, type=type_, place=place)
+        self.inputs[id(node)] = made
+        self._kept.append(node)
+        return node
+
+    def unknown(self, reason: str, place: Place, type_: CType | None = None, text: str = "?") -> Code:
+        """A value that is not followed; the reason is for the user."""
+        made = Input(kind="unknown", reason=reason, place=place)
+        return self._placeholder(text, type_ or self.model.int_, place, made)
+
+    def object(self, location: Location, type_: ObjectType, place: Place) -> Code:
+        """The value an object has when the run starts."""
+        if (location, type_) not in self._objects:
+            number = type_.type if isinstance(type_, Arithmetic) else self.model.int_
+            made = Input(kind="object", reason="", location=location, type=type_, place=place)
+            node = self._placeholder(shown(location), number, place, made)
+            self._objects[location, type_] = node
+        return self._objects[location, type_]
+
+    def parameter(self, function: Function, index: int, name: str, type_: CType) -> Code:
+        """The value of a parameter that no followed call gives."""
+        made = Input(
+            kind="parameter", reason="", function=function, index=index, place=function.key
+        )
+        return self._placeholder(name, type_, function.key, made)
+
+    # --- constants as written ----------------------------------------------------------------
+
+    def literal(self, unit: Unit, start: int, text: str) -> Expression:
+        """A constant with the place it is spelled at; a placeholder where it is no constant of C."""
+        key = (unit.path, start, text)
+        if key not in self._literals:
+            self._literals[key] = self._literal(unit, start, text)
+        return self._literals[key]
+
+    def _literal(self, unit: Unit, start: int, text: str) -> Expression:
+        origin = unit.translation.origin(start)
+        try:
+            value, type_ = literal(text, self.model)
+        except ValueError:
+            return self.unknown(f"{text} is not read as a constant", origin.use)
+        leaf = Leaf(
+            name=self._own_name(unit, start, origin.macro, text),
+            text=text,
+            place=origin.place,
+            end_column=origin.place.column + len(text),
+            use=origin.use,
+            names=origin.names,
+            comment=self._comment(origin.place),
+        )
+        return Literal(value=value, type=type_, leaf=leaf)
+
+    @staticmethod
+    def _own_name(unit: Unit, start: int, macro: str | None, text: str) -> str | None:
+        """The macro whose whole replacement is this constant, parentheses and sign aside."""
+        if macro is None:
+            return None
+        definition = unit.translation.macros.at(start).get(macro)
+        if definition is None:
+            return None
+        body = [token.text for token in definition.body if token.text not in ("(", ")", "-", "+")]
+        return macro if body == [text] else None
+
+    def _comment(self, place: Place) -> str:
+        key = (place.file, place.line)
+        if key not in self._comments:
+            file = self.program.tree.file(place.file)
+            self._comments[key] = line_comment(file, place.line) if file is not None else ""
+        return self._comments[key]
+
+
+def named(value: Expression, name: str, use: Place) -> Expression:
+    """The constant of an initialiser under the name of its object, used at `use`."""
+    if isinstance(value, Literal) and value.leaf is not None:
+        own = value.leaf.name or name
+        leaf = replace(value.leaf, name=own, names=(*value.leaf.names, name), use=use)
+        return replace(value, leaf=leaf)
+    return value
+
+
+def shown(location: Location) -> str:
+    """An object as C text."""
+    if location.root.kind == "pointee" and location.path:
+        first, *rest = location.path
+        text = f"{location.root.name}->{first}" if isinstance(first, str) else (
+            f"{location.root.name}[{first}]"
+        )
+        return str(Location(type(location.root)("", text), tuple(rest)))
+    return str(location)

@@ -1,0 +1,131 @@
+"""What the program knows of its objects at one point of a run: values by location, merged at joins."""
+
+from collections.abc import Callable
+from dataclasses import dataclass, field
+
+from bitweight.arithmetic.expressions import (
+    Binary,
+    Choose,
+    Code,
+    Convert,
+    Default,
+    Expression,
+    Literal,
+    Unary,
+    Unknown,
+)
+from bitweight.firmware.objects import Location, ObjectType
+from bitweight.firmware.symbols import Function
+from bitweight.places import Place
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Address:
+    """A pointer to a known object."""
+
+    target: Location
+    type: ObjectType
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Routine:
+    """A pointer to a function."""
+
+    name: str
+    function: Function | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Copy:
+    """A struct by value: the parts known when it was copied; other parts are those of `source`."""
+
+    parts: tuple[tuple[tuple[str | int, ...], "Value"], ...]
+    source: Location
+    type: ObjectType
+
+
+Value = Expression | Address | Routine | Copy
+
+
+def is_number(value: Value) -> bool:
+    """Whether a value is an expression rather than a pointer or a struct."""
+    return isinstance(
+        value, Literal | Code | Unknown | Default | Convert | Unary | Binary | Choose
+    )
+
+
+@dataclass(slots=True)
+class State:
+    """Values by location at one point of a run. Copied where the run forks."""
+
+    values: dict[Location, Value] = field(default_factory=dict)
+
+    def copy(self) -> "State":
+        """A state that changes on its own."""
+        return State(dict(self.values))
+
+    def write(self, location: Location, value: Value) -> None:
+        """Store a value; what was known of its parts is gone."""
+        if any(True for known in self.values if known != location and known.within(location)):
+            for known in [one for one in self.values if one.within(location)]:
+                del self.values[known]
+        if isinstance(value, Copy):
+            self.values[location] = value
+            for path, part in value.parts:
+                self.values[Location(location.root, (*location.path, *path))] = part
+            return
+        self.values[location] = value
+
+    def parts(self, location: Location) -> tuple[tuple[tuple[str | int, ...], Value], ...]:
+        """What is known of the parts of an object, by the path from it."""
+        depth = len(location.path)
+        return tuple(
+            (known.path[depth:], value)
+            for known, value in self.values.items()
+            if known != location and known.within(location)
+        )
+
+
+Join = Callable[[Expression, Value, Value, Location], Value]
+
+
+def merged(
+    condition: Expression,
+    then: State,
+    other: State,
+    join: Join,
+    initial: Callable[[Location], Value | None],
+) -> State:
+    """The state after both arms; `initial` gives the value an arm that never wrote a location sees."""
+    if then.values == other.values:
+        return then
+    result: dict[Location, Value] = {}
+    for location in {**then.values, **other.values}:
+        left = then.values.get(location)
+        right = other.values.get(location)
+        if left is None:
+            left = initial(location)
+        if right is None:
+            right = initial(location)
+        if left is None or right is None:
+            # A local of one arm only: nobody can read it after the join.
+            continue
+        result[location] = left if left is right else join(condition, left, right, location)
+    return State(result)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Input:
+    """What a placeholder in an expression stands for until the whole tree is known.
+
+    `kind` is "object" (its value when the function starts), "parameter", or "unknown", whose `reason`
+    is for the user. `function` is the parameter's.
+    """
+
+    kind: str
+    reason: str
+    location: Location | None = None
+    type: ObjectType | None = None
+    function: Function | None = None
+    index: int = 0
+    place: Place | None = None

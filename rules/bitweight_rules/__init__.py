@@ -1,0 +1,1 @@
+"""The rules and microcontroller families that come with bitweight."""

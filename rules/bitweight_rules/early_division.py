@@ -1,0 +1,54 @@
+"""Rule `early-division`: integer division or a shift throws resolution away before it is needed."""
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from bitweight.arithmetic.expressions import Binary
+from bitweight.judge.cases import Case, Facts
+from bitweight.judge.findings import Finding
+from bitweight.judge.levels import stated_or_warning
+from bitweight.judge.losses import Loss
+from bitweight.judge.rules import ChannelRule
+from bitweight.judge.statements import place_of, quantity, steps
+
+
+def check(case: Case, facts: Facts) -> Iterator[Finding]:
+    """One finding, on the operator that loses most of what is lost."""
+    judgement = case.judgement
+    if judgement is None or judgement.loss is None:
+        return
+    loss = judgement.loss
+    lost = np.abs(loss.lost) * abs(judgement.scale)
+    largest = quantity(float(lost[loss.index]), case.channel)
+    yield Finding(
+        rule=RULE.name,
+        level=stated_or_warning(
+            stated=case.channel.allowed_error is not None,
+            leaves=bool((lost > judgement.allowed).any()),
+        ),
+        channels=(case.channel.name,),
+        message=f"{_what(loss)} loses up to {largest}, at code {int(judgement.codes[loss.index])}, "
+        f"where one LSB is {quantity(judgement.lsb, case.channel)}",
+        place=place_of(loss.node, judgement.conversion.place),
+        found=f"up to {largest} lost",
+        expected="multiply before dividing",
+        related=steps(judgement.conversion),
+    )
+
+
+def _what(loss: Loss) -> str:
+    if not isinstance(loss.node, Binary):
+        return "converting to an integer here"
+    return "dividing here" if loss.node.operator == "/" else "shifting right here"
+
+
+RULE = ChannelRule(
+    name="early-division",
+    summary="Integer division or a shift throws resolution away before it is needed.",
+    formula="|C value - real value truncated once at the end| > one LSB + one step, for a code in range",
+    source="C11 6.5.5p6 (division truncates toward zero), 6.5.7p5 (right shift); common practice",
+    check=check,
+    levels="error where truncation alone leaves a stated allowed_error, note where it stays inside, "
+    "warning where none is stated",
+)

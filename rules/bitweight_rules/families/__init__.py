@@ -1,0 +1,1 @@
+"""Microcontroller families as data: one TOML file each."""

@@ -1,0 +1,60 @@
+"""Rule `untraced`: a channel was not found in the code, or could not be followed."""
+
+from collections.abc import Iterator
+
+from bitweight.judge.cases import Case, Facts, reads_another
+from bitweight.judge.findings import Finding, Level, Related
+from bitweight.judge.rules import ChannelRule
+
+
+def check(case: Case, facts: Facts) -> Iterator[Finding]:
+    """A warning with the reason, and one for each limit whose constant has no value."""
+    if case.judgement is None and not any(map(reads_another, case.trace.conversions)):
+        yield _channel(case)
+    yield from _limits(case, facts)
+
+
+def _channel(case: Case) -> Finding:
+    channel = case.channel
+    place = case.trace.place
+    return Finding(
+        rule=RULE.name,
+        level=Level.WARNING,
+        channels=(channel.name,),
+        message=case.reason or f"no conversion of {channel.name} was found",
+        place=case.place or channel.place,
+        found="not followed",
+        expected="a conversion that can be followed",
+        related=() if place is None else (Related(place=place, message="followed up to here"),),
+    )
+
+
+def _limits(case: Case, facts: Facts) -> Iterator[Finding]:
+    limits = {limit.name: limit for limit in case.channel.limits}
+    for threshold in facts.thresholds:
+        limit = limits.get(threshold.name)
+        if threshold.channel != case.channel.name or limit is None or threshold.value is not None:
+            continue
+        reason = threshold.reason or "its value could not be worked out"
+        yield Finding(
+            rule=RULE.name,
+            level=Level.WARNING,
+            channels=(case.channel.name,),
+            message=f"limit {limit.name}: {threshold.text} was not compared: {reason}",
+            place=limit.constant_place,
+            found="not followed",
+            expected=f"a constant for {limit.at}",
+            related=()
+            if threshold.place is None
+            else (Related(place=threshold.place, message="defined here"),),
+        )
+
+
+RULE = ChannelRule(
+    name="untraced",
+    summary="A channel of the board was not found in the code, or could not be followed.",
+    formula="no conversion from the channel's reading to a result could be evaluated",
+    source="common practice: what was not seen is never silently fine",
+    check=check,
+    levels="warning",
+)
