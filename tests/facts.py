@@ -74,7 +74,7 @@ def reference(voltage: str = "5 V", **changes: Any) -> Reference:
 
 
 def converter(bits: int = 10, **changes: Any) -> Converter:
-    """An unsigned, right-justified converter at 5 V; 2**bits (half of that if signed) is full scale."""
+    """An unsigned, right-justified converter at 5 V; full scale is 2**bits, half if signed."""
     coding = changes.get("coding", Coding.UNSIGNED)
     given: dict[str, Any] = {
         "name": "adc",
@@ -154,9 +154,9 @@ def firmware(count: str | None = "mV", **changes: Any) -> Firmware:
 
 
 def allowed_error(text: str, unit: str) -> AllowedError:
-    """"50 mV", "1 %" of the span, or "0.5 % of reading"."""
+    """ "50 mV", "1 %" of the span, or "0.5 % of reading"."""
     quantity = parse_quantity(text.removesuffix(" of reading"))
-    share = quantity.value if text.endswith("%") or text.endswith("reading") else Fraction(0)
+    share = quantity.value if text.endswith(("%", "reading")) else Fraction(0)
     of_reading = text.endswith("reading")
     return AllowedError(
         absolute=Fraction(0) if share else quantity.within(parse_unit(unit)),
@@ -242,9 +242,7 @@ def finding(rule: str = "full-scale", **changes: Any) -> Finding:
 
 def divider(top: str = "30k", bottom: str = "10k") -> Divider:
     """A divider to ground."""
-    return Divider(
-        top=part("R1", top), bottom=part("R2", bottom), load=None, to=None, place=at(18)
-    )
+    return Divider(top=part("R1", top), bottom=part("R2", bottom), load=None, to=None, place=at(18))
 
 
 def amplifier(gain: str = "1", offset: str | None = None) -> Amplifier:

@@ -77,7 +77,9 @@ def const(text: str, name: str | None = None, *, comment: str = "", line: int = 
     """A constant as spelled, behind a macro `name` if there is one."""
     value, type_ = literal(text, HOST)
     where = line or (sum(map(ord, name)) if name else 41)
-    place = Place("board.h" if name else "level.c", where, 1 + len(text) + (0 if name else hash_of(text)))
+    place = Place(
+        "board.h" if name else "level.c", where, 1 + len(text) + (0 if name else hash_of(text))
+    )
     leaf = Leaf(
         name=name, text=text, place=place, end_column=place.column + len(text), use=_USE,
         names=(name,) if name else (), comment=comment,
@@ -163,7 +165,9 @@ def question(
         return np.full(codes.shape, 1.5 * (lsb + step) if allowed is None else allowed)
 
     mask = (1 << board.bits) - 1 if board.coding is not Coding.TWOS_COMPLEMENT else 0xFFFF
-    words = ((codes & mask) if board.coding is not Coding.OFFSET_BINARY else codes - low) << board.shift
+    words = (
+        (codes & mask) if board.coding is not Coding.OFFSET_BINARY else codes - low
+    ) << board.shift
     return Question(
         conversion=conversion(node), model=HOST,
         lines=tuple(board.line(count) for count in board.counts),

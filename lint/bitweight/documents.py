@@ -231,6 +231,11 @@ class _Places:
             first[given] = mention.key
         return None
 
+    def key_before(self, place: Place) -> Place:
+        """The key that gives what ends at a place; the place itself where there is none."""
+        keys = [mention.key for mention in self._mentions() if mention.key <= place]
+        return max(keys, default=place)
+
     def at(self, line: int, column: int) -> Place:
         """A place by line and column."""
         return Place(self._file, line, column)
@@ -387,7 +392,7 @@ def _not_toml(error: tomli.TOMLDecodeError, places: _Places) -> Mistake:
         if twice is not None:
             message = f"given twice; first on line {twice[1].line}"
             return Mistake(place=twice[0], message=message)
-        message = "already given above as something else"
-        return Mistake(place=places.at(error.lineno, error.colno), message=message)
+        place = places.key_before(places.at(error.lineno, error.colno))
+        return Mistake(place=place, message="already given above as something else")
     text = _EXPECTED.get(error.msg, error.msg[:1].lower() + error.msg[1:])
     return Mistake(place=places.at(error.lineno, error.colno), message=f"not TOML: {text}")

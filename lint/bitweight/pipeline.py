@@ -130,14 +130,20 @@ def _defines(board: Board, request: Request) -> Mapping[str, str | None]:
 
 
 def _families(board: Board) -> tuple[Family, ...]:
+    """The families the board names; without a name those made for its architecture."""
     known = load_families()
+    by_name = {alias: one for one in known.values() for alias in (one.name, *one.aliases)}
     wanted = {board.target.family, *(one.family for one in board.converters)} - {None}
     for name in sorted(str(one) for one in wanted):
-        if name not in known:
-            raise UsageError(
-                f"{board.file}: there is no family {name!r}; known: {', '.join(known)}"
-            )
-    return tuple(known[str(name)] for name in sorted(str(one) for one in wanted))
+        if name not in by_name:
+            near = get_close_matches(name, by_name, 1)
+            hint = f", did you mean {near[0]!r}?" if near else f"; known: {', '.join(known)}"
+            raise UsageError(f"{board.file} names a family {name!r} that does not exist{hint}")
+    if not wanted:
+        architecture = board.target.architecture
+        return tuple(one for one in known.values() if one.architecture == architecture)
+    found = {by_name[str(name)].name for name in wanted}
+    return tuple(known[name] for name in sorted(found))
 
 
 def _trace(board: Board, tree: SourceTree, request: Request, progress: Progress) -> _Traced:
@@ -209,9 +215,7 @@ def _remarks(tree: SourceTree, board: Board) -> tuple[Remark, ...]:
     return tuple(found)
 
 
-def _source_lines(
-    tree: SourceTree, findings: tuple[Finding, ...]
-) -> Mapping[tuple[str, int], str]:
+def _source_lines(tree: SourceTree, findings: tuple[Finding, ...]) -> Mapping[tuple[str, int], str]:
     found: dict[tuple[str, int], str] = {}
     for finding in findings:
         for place in (finding.place, *(one.place for one in finding.related)):

@@ -15,7 +15,7 @@ from bitweight.units import PREFIXES, Unit, UnitError, known, named, parse_unit,
 _LONGEST = 200
 """Characters of one quantity text; far above what anybody writes by hand."""
 
-_NUMBER = r"[+\-\u2212]?(?:\d{1,40}\.?\d{0,40}|\.\d{1,40})(?:[eE][+\-]?\d{1,2}(?!\d))?"
+_NUMBER = r"[+\-\u2212]?(?:\d{1,40}(?:\.\d{0,40})?|\.\d{1,40})(?:[eE][+\-]?\d{1,2}(?!\d))?"
 _FRACTION = rf"{_NUMBER}(?:\s*/\s*\d{{1,40}}(?:\.\d{{1,40}})?)?"
 _VALUE = re.compile(rf"({_FRACTION})(\s*)(.*)", re.DOTALL)
 _DESIGNATOR = re.compile(r"([A-Za-z][\w.\-]*)\s+(.+)", re.DOTALL)

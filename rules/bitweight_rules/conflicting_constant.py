@@ -25,7 +25,8 @@ def _finding(conflict: Conflict, channels: tuple[str, ...]) -> Finding:
         rule=RULE.name,
         level=Level.WARNING,
         channels=channels,
-        message=f"{conflict.name} is defined as {listed(values)}; which one holds depends on the file",
+        message=f"{conflict.name} is defined as {listed(values)}; which one holds depends on the "
+        "file",
         place=last.place,
         found=" / ".join(values),
         expected="one value",
@@ -42,7 +43,8 @@ def _value(definition: Definition) -> str:
 RULE = TreeRule(
     name="conflicting-constant",
     summary="A constant of a channel is defined with different values that are both live.",
-    formula="definitions of one name, under the board's macros, with more than one value; names local "
+    formula="definitions of one name, under the board's macros, with more than one value; names "
+    "local "
     "to one file are no conflict",
     source="C11 6.10.3p2 (redefinition of macros); common practice",
     check=check,

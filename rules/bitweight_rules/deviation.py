@@ -1,6 +1,7 @@
 """Rule `deviation`: a deviation that is expired, has no reason or matches nothing.
 
-What deviations do needs the findings of all other rules: `judge/deviations.py` reports under this name.
+What deviations do needs the findings of all other rules: `judge/deviations.py` reports under this
+name.
 """
 
 from collections.abc import Iterable
@@ -18,7 +19,8 @@ def check(facts: Facts) -> Iterable[Finding]:
 RULE = TreeRule(
     name="deviation",
     summary="A deviation is expired, has no reason or matches nothing.",
-    formula="until < today, or no reason, or no finding of its rule on its symbol, channel, file or line",
+    formula="until < today, or no reason, or no finding of its rule on its symbol, channel, file "
+    "or line",
     source="common practice: a deviation is an accepted, recorded departure from a rule",
     check=check,
     levels="warning",

@@ -46,9 +46,11 @@ def _what(loss: Loss) -> str:
 RULE = ChannelRule(
     name="early-division",
     summary="Integer division or a shift throws resolution away before it is needed.",
-    formula="|C value - real value truncated once at the end| > one LSB + one step, for a code in range",
+    formula="|C value - real value truncated once at the end| > one LSB + one step, for a code in "
+    "range",
     source="C11 6.5.5p6 (division truncates toward zero), 6.5.7p5 (right shift); common practice",
     check=check,
-    levels="error where truncation alone leaves a stated allowed_error, note where it stays inside, "
+    levels="error where truncation alone leaves a stated allowed_error, note where it stays "
+    "inside, "
     "warning where none is stated",
 )

@@ -66,7 +66,8 @@ def _clamped(case: Case, judgement: Judgement, clamp: Clamp) -> Finding:
         rule=RULE.name,
         level=Level.ERROR,
         channels=(case.channel.name,),
-        message=f"{judgement.conversion.result} is held at {held} from code {code} on, but the range "
+        message=f"{judgement.conversion.result} is held at {held} from code {code} on, but the "
+        "range "
         f"goes {'up' if upper else 'down'} to {quantity(end, case.channel)}",
         place=clamp.node.place if leaf is None else leaf.place,
         found=held if leaf is None else f"{leaf.text} ({held})",
@@ -79,7 +80,8 @@ RULE = ChannelRule(
     name="narrowing",
     summary="The result is stored in a type, or clamped to bounds, that cannot hold the channel's "
     "range.",
-    formula="for every code in range the stored value equals the value before the store, and no clamp "
+    formula="for every code in range the stored value equals the value before the store, and no "
+    "clamp "
     "takes it out of the allowed error",
     source="C11 6.3.1.3 (integer conversions), 6.3.1.4 (from floating); clamps: common practice",
     check=check,

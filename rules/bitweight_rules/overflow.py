@@ -75,7 +75,7 @@ def _where(judgement: Judgement, operation: WrongOperation) -> str:
     upward = bool(operation.mask[operation.index :].all())
     where = f"wrong from code {code}" if upward else f"first wrong at code {code}"
     outside = "" if operation.in_range else ", outside the range"
-    if operation.exact is None:
+    if operation.exact is None or operation.operands is None:
         return f"{where}{outside}"
     return f"{where} ({operation.exact}){outside}"
 
@@ -101,6 +101,8 @@ def _expected(operation: WrongOperation) -> str:
     if operation.kind is FaultKind.SHIFT:
         return f"a shift below {operation.node.type.bits}"
     wider = type_for(operation.low or 0, operation.high or 0)
+    if operation.kind is FaultKind.SIGN and (operation.low or 0) < 0:
+        wider = "a signed type"
     return f"{wider}, as {operation.suffix.text} gives" if operation.suffix else wider
 
 

@@ -48,7 +48,8 @@ def _reading(judgement: Judgement, channel: str) -> Place:
 
 RULE = ChannelRule(
     name="sign",
-    summary="A code is read in another coding than the converter's: signed as unsigned, offset binary "
+    summary="A code is read in another coding than the converter's: signed as unsigned, offset "
+    "binary "
     "or complementary missed, or the reverse.",
     formula="the conversion is right for every code when fed with the words of another coding, and "
     "wrong with those of the converter's",

@@ -53,10 +53,11 @@ def _judged(case: Case, facts: Facts, limit: Limit, threshold: Threshold) -> Fin
         return None
     held = Fraction(threshold.value)
     wanted = limit.at.within(case.channel.unit)
-    ideal_count = (wanted - scale.zero) / scale.weight
+    count = (wanted - scale.zero) / scale.weight
     level = _level(
-        stands_off=abs(held * scale.weight + scale.zero - wanted) > _allowed(facts, side, scale, wanted),
-        nearest=_is_nearest(threshold, held, ideal_count, whole=scale.whole),
+        stands_off=abs(held * scale.weight + scale.zero - wanted)
+        > _allowed(facts, side, scale, wanted),
+        nearest=_is_nearest(threshold, held - count, whole=scale.whole),
     )
     return None if level is None else _finding(case.channel, limit, threshold, scale, level)
 
@@ -68,11 +69,11 @@ def _level(*, stands_off: bool, nearest: bool) -> Level | None:
     return Level.ERROR if stands_off else Level.WARNING
 
 
-def _is_nearest(threshold: Threshold, held: Fraction, ideal_count: Fraction, *, whole: bool) -> bool:
-    """Whether no other constant written with as many digits is nearer."""
+def _is_nearest(threshold: Threshold, off: Fraction, *, whole: bool) -> bool:
+    """Whether no other constant written with as many digits is nearer; `off` is in counts."""
     text = threshold.leaf.text if threshold.leaf is not None else ""
     digit = None if whole else half_digit(text)
-    return abs(held - ideal_count) <= (_HALF if digit is None else digit)
+    return abs(off) <= (_HALF if digit is None else digit)
 
 
 def _scale(case: Case, side: Ideal, limit: Limit) -> _Scale | None:
@@ -122,7 +123,9 @@ def _finding(
         found=f"{_plain(held)} ({stands_for})",
         expected=f"{right} ({limit.at})",
         related=() if leaf is None else uses(leaf),
-        replacement=edit(leaf, right + _suffix(leaf.text)) if leaf is not None and editable else None,
+        replacement=edit(leaf, right + _suffix(leaf.text))
+        if leaf is not None and editable
+        else None,
     )
 
 
@@ -150,7 +153,8 @@ def _plain(value: Fraction) -> str:
 RULE = ChannelRule(
     name="threshold",
     summary="A limit constant does not stand for the quantity that the board file gives.",
-    formula="q(constant) against `at`: the nearest count is right, further off than allowed_error is "
+    formula="q(constant) against `at`: the nearest count is right, further off than allowed_error "
+    "is "
     "an error",
     source="IEEE 1241 (code bins); common practice",
     check=check,

@@ -216,6 +216,14 @@ def test_blocks_change_nothing(conversion: Conversion, model: DataModel) -> None
         np.testing.assert_array_equal(one.mask, other.mask)
 
 
+@pytest.mark.parametrize("text", ["x * 3 / 7", "(int)(x * 0.5f)", "5 << x", "x ? 1 / x : 2"])
+def test_no_codes_give_no_values(text: str) -> None:
+    """A reading without words gives an empty curve."""
+    curve = evaluate(Conversion(text).build(HOST), lambda _: np.array([], dtype=np.int64))
+    assert curve.values.size == 0
+    assert curve.faults == ()
+
+
 def test_readings_must_be_of_one_length() -> None:
     """Two readings with different numbers of words are refused."""
     pair = [Code(channels=(), text=name, type=HOST.int_, place=PLACE) for name in "ab"]

@@ -58,3 +58,10 @@ def test_a_far_name() -> None:
     """A name like no rule's says where the list is."""
     with pytest.raises(UsageError, match="bitweight why lists all"):
         why.run_why(WhyOptions(rule="zzz"))
+
+
+def test_no_rules(monkeypatch: pytest.MonkeyPatch) -> None:
+    """An installation without rules is not taken for one in which nothing is checked."""
+    monkeypatch.setattr(why, "load_rules", tuple)
+    with pytest.raises(UsageError, match="no rules are installed"):
+        why.run_why(WhyOptions(rule=None))

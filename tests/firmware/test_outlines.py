@@ -25,7 +25,7 @@ def outline(text: str) -> Outline:
         ("a\r\nb\rc", "a \nb\nc"),
         ("x<:1:> %: y", "x[ 1]  #  y"),
         ("#include <a//b.h>\n", "#include <a//b.h>\n"),
-        ("a //\\\nb\nc", "a      \n\nc"),
+        ("a //\\\nb\nc", "a     \n\nc"),
     ],
 )
 def test_logical_text_has_no_comments_and_no_splices(text: str, logical: str) -> None:

@@ -54,7 +54,8 @@ MARKED = {
     "a tab inside": ("#define N\t\t4095", place(12), None, "4095"),
     "wide characters before": ("/* 水位 */ x = 4095;", place(14), None, "4095"),
     "an escape before": ("/* \x1b */ x = 4095;", place(13), None, "4095"),
-    "an operator": ("x = a >> 2;", place(7), None, ">"),
+    "a member": ("  tank.level->mm = x;", place(3), None, "tank.level->mm"),
+    "an operator": ("x = a >> 2;", place(7), None, ">>"),
     "a long line": ("x" * 400 + " = 4095;" + "y" * 400, place(404), None, "4095"),
     "past the end": ("short", place(80), None, ""),
 }
@@ -95,7 +96,7 @@ def test_many_related_places() -> None:
     """The first places are listed, the others counted."""
     related = tuple(Related(place=Place("a.c", n), message="used") for n in range(1, 20))
     lines = block(samples.finding(related=related))
-    assert lines[-2:] == ["              a.c:6: used", "              and 13 more"]
+    assert lines[-2:] == ["              a.c:4: used", "              and 15 more"]
 
 
 def test_hostile_text_stays_printable() -> None:

@@ -28,6 +28,13 @@ def amplifier(offset: Share | None) -> Amplifier:
     )
 
 
+FROM_SEVEN = replace(
+    samples.DEPTH.chain[0],
+    sensitivity=samples.part("sensitivity", "59 mV/pH"),
+    offset=samples.part("offset", "0 V"),
+    at=samples.part("at", "7 pH"),
+)
+
 HALF = Share(source=V33, factor=Fraction(1, 2), text="v33 / 2", place=samples.at(3))
 
 CHAINS: dict[str, tuple[tuple[Stage, ...], str]] = {
@@ -37,6 +44,7 @@ CHAINS: dict[str, tuple[tuple[Stage, ...], str]] = {
         "divider R21 27 kohm over R22 10 kohm, x 0.2703",
     ),
     "sensor and shunt": (samples.DEPTH.chain, "sensor 8 mA/m + 4 mA; shunt R41 200 ohm"),
+    "sensor without offset": ((FROM_SEVEN,), "sensor 59 mV/pH from 7 pH"),
     "amplifier": ((amplifier(None),), "amplifier x 20"),
     "shifted amplifier": ((amplifier(HALF),), "amplifier x 20 + v33 / 2"),
     "filter": (
@@ -98,6 +106,23 @@ def test_hardware_side_of_an_untraced_channel() -> None:
     """The board's line is known although the code's is not."""
     case = samples.outcome().facts.cases[2]
     assert sides.hardware_side(case) == Side(gain=5 / 1024, offset=0.0)
+
+
+def test_rows_name_bits_and_put_the_wrong_first() -> None:
+    """A resolution is shown in bits; of several constants the wrong ones come first."""
+    case = samples.outcome().facts.cases[1]
+    judged = case.judgement
+    assert judged is not None
+    bits = replace(samples.FULL_SCALE, name=None, text="10", place=samples.at(9, 9))
+    roles = (
+        (bits, "resolution"),
+        (samples.FULL_SCALE, "full-scale"),
+        (samples.FULL_SCALE, "full-scale"),
+    )
+    explained = replace(judged.explanation, roles=roles)
+    full_scale = sides.rows(case, replace(judged, explanation=explained))[1]
+    assert full_scale.firmware == "1023 (ADC_MAX), 10 bits"
+    assert full_scale.agrees is False
 
 
 def test_a_side_without_a_line() -> None:

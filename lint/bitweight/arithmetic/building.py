@@ -24,7 +24,7 @@ from bitweight.arithmetic.expressions import (
 from bitweight.arithmetic.types import CType, DataModel
 from bitweight.places import Place
 
-COMPARISONS = frozenset(("<", ">", "<=", ">=", "==", "!="))
+COMPARISONS = frozenset(scalars.COMPARISONS)
 LOGICAL = frozenset(("&&", "||"))
 SHIFTS = frozenset(("<<", ">>"))
 INTEGER_ONLY = frozenset(("%", "&", "|", "^", "~")) | SHIFTS

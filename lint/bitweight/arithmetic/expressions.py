@@ -53,7 +53,7 @@ class Literal:
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Code:
-    """A reading: the raw word of the converter. `channels` are those whose `reading` matched here."""
+    """A reading: the raw word of the converter. `channels` are those whose `reading` matched."""
 
     channels: tuple[str, ...]
     text: str

@@ -168,7 +168,8 @@ def _quotient(left: Value, divisor: Array, type_: CType) -> Array:
     floored = left.data // safe
     inexact = (left.data - floored * safe != 0) & ((left.data < 0) != (safe < 0))
     data = floored + inexact
-    return np.where(minus_one, -data, data)
+    quotient: Array = np.where(minus_one, -data, data)
+    return quotient
 
 
 def _count(right: Value, type_: CType) -> tuple[Array, Mask]:

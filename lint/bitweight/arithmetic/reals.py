@@ -46,6 +46,7 @@ from bitweight.arithmetic.expressions import (
     Purpose,
     Unary,
     Unknown,
+    children,
     walk,
 )
 from bitweight.arithmetic.fields import ExactNumbers, FloatNumbers, Numbers
@@ -53,12 +54,14 @@ from bitweight.arithmetic.literals import exact_value
 from bitweight.arithmetic.types import CType, Kind
 from bitweight.arithmetic.values import Array, reading
 from bitweight.arithmetic.words import SPELLED, Word, disjoint, words
+from bitweight.limits import Limits
 from bitweight.places import Place
 
 LeafKey = tuple[Place, str]
 """Where a constant is spelled and how; the same for every use of it."""
 
 Replacements = Mapping[LeafKey, Fraction]
+_DEFAULT_LIMITS = Limits()
 _NOTHING: Replacements = MappingProxyType({})
 
 _BITWISE: Mapping[str, Callable[[Any, Any], Any]] = MappingProxyType(
@@ -86,20 +89,36 @@ class RealForm:
 
     order: tuple[Expression, ...]
     words: Mapping[int, Word]
+    spent: tuple[tuple[int, ...], ...]
+    """For each node the identities of the nodes that nothing after it uses."""
 
     def exact(self, word: int, replace: Replacements = _NOTHING) -> Fraction | None:
         """The exact value at a raw word; None where it has none."""
         result = self._value(ExactNumbers(), lambda node: Fraction(_read_word(word, node)), replace)
         return result if isinstance(result, Fraction) else None
 
-    def floats(self, read: Callable[[Code], Array], replace: Replacements = _NOTHING) -> Array:
+    def floats(
+        self,
+        read: Callable[[Code], Array],
+        replace: Replacements = _NOTHING,
+        limits: Limits = _DEFAULT_LIMITS,
+    ) -> Array:
         """The value at every code in binary64; NaN where it has none, one element without codes."""
+        codes = (node for node in self.order if isinstance(node, Code))
+        words = {id(node): np.asarray(read(node)) for node in codes}
+        count = max((array.size for array in words.values()), default=1)
+        starts = range(0, max(count, 1), limits.block_codes)
+        parts = [slice(start, min(start + limits.block_codes, count)) for start in starts]
+        blocks = [self._block(words, part, replace) for part in parts]
+        return blocks[0] if len(blocks) == 1 else np.concatenate(blocks)
 
-        def words_of(node: Code) -> Array:
-            return reading(np.asarray(read(node)), node.type)[0].data.astype(np.float64)
+    def _block(self, words: Mapping[int, Array], part: slice, replace: Replacements) -> Array:
+        def held(node: Code) -> Array:
+            return reading(words[id(node)][part], node.type)[0].data.astype(np.float64)
 
         with np.errstate(all="ignore"):
-            return np.asarray(self._value(FloatNumbers(), words_of, replace), dtype=np.float64)
+            value = self._value(FloatNumbers(), held, replace)
+        return np.broadcast_to(np.asarray(value, dtype=np.float64), part.stop - part.start)
 
     def affine(
         self, at: Sequence[int], replace: Replacements = _NOTHING
@@ -109,19 +128,19 @@ class RealForm:
         known = [value for value in values if value is not None]
         if len(known) != len(values) or len(set(at)) < 2:
             return None
-        first, last = (
-            min(range(len(at)), key=at.__getitem__),
-            max(range(len(at)), key=at.__getitem__),
-        )
-        gain = (known[last] - known[first]) / (at[last] - at[first])
-        offset = known[first] - gain * at[first]
-        straight = all(y == gain * x + offset for x, y in zip(at, known, strict=True))
+        points = sorted(zip(at, known, strict=True))
+        (first, low), (last, high) = points[0], points[-1]
+        gain = (high - low) / (last - first)
+        offset = low - gain * first
+        straight = all(value == gain * word + offset for word, value in points)
         return (gain, offset) if straight else None
 
     def _value(self, numbers: Numbers, read: Callable[[Code], Any], replace: Replacements) -> Any:
         known: dict[int, Any] = {}
-        for node in self.order:
+        for node, spent in zip(self.order, self.spent, strict=True):
             known[id(node)] = numbers.bounded(self._apply(numbers, node, known, read, replace))
+            for key in spent:
+                del known[key]
         return known[id(self.order[-1])]
 
     def _apply(
@@ -182,7 +201,18 @@ class RealForm:
 def real_form(expression: Expression) -> RealForm:
     """`expression` made ready for its real value to be asked many times."""
     order = tuple(walk(expression))
-    return RealForm(order, MappingProxyType(words(order)))
+    return RealForm(order, MappingProxyType(words(order)), _spent(order))
+
+
+def _spent(order: Sequence[Expression]) -> tuple[tuple[int, ...], ...]:
+    """For each node those of its operands that no later node uses."""
+    last: dict[int, int] = {}
+    for index, node in enumerate(order):
+        last |= {id(child): index for child in children(node)}
+    found: list[list[int]] = [[] for _ in order]
+    for key, index in last.items():
+        found[index].append(key)
+    return tuple(map(tuple, found))
 
 
 def exact(expression: Expression, word: int, replace: Replacements = _NOTHING) -> Fraction | None:

@@ -169,11 +169,12 @@ def _integer_to_integer(value: Value, source: CType, target: CType) -> Result:
 def _floating_to_integer(value: Value, target: CType) -> Result:
     """Truncation toward zero; outside the type, where C gives none, the nearest end (0 for NaN)."""
     whole = np.trunc(value.data.astype(np.float64))
+    low, high = (whole.min(), whole.max()) if whole.size else (0.0, 0.0)
+    if low >= float(target.low) and high < float(target.high + 1):
+        return Value(whole.astype(dtype_of(target)), int(low), int(high)), ()
     above, below = whole >= float(target.high + 1), whole < float(target.low)
     lost = above | below | np.isnan(whole)
     data = np.where(lost, 0.0, whole).astype(dtype_of(target))
-    if not lost.any():
-        return Value(data, target.low, target.high), ()
     dtype = dtype_of(target)
     data = np.where(above, dtype(target.high), np.where(below, dtype(target.low), data))
     return Value(data, target.low, target.high), ((FaultKind.CONVERSION, lost),)

@@ -39,13 +39,16 @@ Offset = Part | Share
 """A voltage of its own, or a share of a supply."""
 
 
-def offset_volts(offset: Offset | None, values: Values) -> Fraction:
-    """What an offset adds, in its coherent unit."""
+def offset_volts(offset: Offset | None, values: Values, follow: Fraction = Fraction(1)) -> Fraction:
+    """What an offset adds, in its coherent unit.
+
+    An offset of its own follows what its stage is ratiometric to; a share follows its supply.
+    """
     match offset:
         case None:
             return Fraction(0)
         case Part():
-            return values(offset)
+            return values(offset) * follow
         case Share():
             return offset.volts(values)
 
@@ -116,8 +119,8 @@ class Amplifier:
 
     def line(self, values: Values = nominal) -> Affine:
         """Volts in to volts out."""
-        offset = offset_volts(self.offset, values) * relative(self.ratiometric, values)
-        return Affine(self.ratio(values), offset)
+        follow = relative(self.ratiometric, values)
+        return Affine(self.ratio(values), offset_volts(self.offset, values, follow))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -150,9 +153,9 @@ class Linear:
     def line(self, values: Values = nominal) -> Affine:
         """The measured quantity in to what the sensor gives."""
         follow = relative(self.ratiometric, values)
-        slope = values(self.sensitivity)
+        slope = values(self.sensitivity) * follow
         start = values(self.at) if self.at is not None else Fraction(0)
-        return Affine(slope * follow, (offset_volts(self.offset, values) - slope * start) * follow)
+        return Affine(slope, offset_volts(self.offset, values, follow) - slope * start)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

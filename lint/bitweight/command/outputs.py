@@ -43,9 +43,9 @@ def check_target(file: str | None) -> None:
     """Raises `UsageError` where a report cannot be written to `file`: asked before any work."""
     if file is None or file == STDOUT:
         return
-    target = Path(os.path.realpath(file))
-    if target.is_dir():
+    if Path(file).is_dir():
         raise UsageError(f"{file}: is a folder, a file is needed for the report")
+    target = Path(file) if _takes_bytes(file) else Path(os.path.realpath(file))
     if not target.parent.is_dir():
         raise UsageError(f"{file}: the folder {target.parent.name!r} does not exist")
     if not os.access(target if target.exists() else target.parent, os.W_OK):
@@ -61,15 +61,20 @@ def write_report(file: str, text: str) -> None:
         say(text)
         return
     try:
-        _write_file(Path(os.path.realpath(file)), text.encode())
+        if _takes_bytes(file):
+            Path(file).write_bytes(text.encode())
+        else:
+            _replace(Path(os.path.realpath(file)), text.encode())
     except OSError as error:
         raise UsageError(f"{file}: cannot be written: {error.strerror}") from error
 
 
-def _write_file(target: Path, content: bytes) -> None:
-    if target.exists() and not target.is_file():  # a device or a named pipe cannot be replaced
-        target.write_bytes(content)
-        return
+def _takes_bytes(file: str) -> bool:
+    """Whether the name is a device or a named pipe, which cannot be replaced."""
+    return Path(file).exists() and not Path(file).is_file()
+
+
+def _replace(target: Path, content: bytes) -> None:
     handle, name = tempfile.mkstemp(prefix=f".{target.name[:40]}.", dir=target.parent)
     try:
         with os.fdopen(handle, "wb") as stream:

@@ -18,6 +18,8 @@ def run_why(options: WhyOptions) -> int:
     Raises `UsageError` with the nearest names for a rule that does not exist.
     """
     rules = load_rules()
+    if not rules:
+        raise UsageError("no rules are installed; the distribution bitweight brings its own")
     say(catalogue(rules) if options.rule is None else explanation(_named(rules, options.rule)))
     return 0
 

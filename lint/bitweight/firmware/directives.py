@@ -72,6 +72,7 @@ class Script:
         self.outline = file.remembered(Outline)
         self.text = self.outline.logical
         self.directives = _joined_runs(self.outline)
+        self.count = len(self.directives)
         self.following, self.closing = _branches(self.directives)
         self.guard = self._guard()
         self._names: dict[tuple[int, int], frozenset[str]] = {}

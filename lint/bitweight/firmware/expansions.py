@@ -17,7 +17,7 @@ from bitweight.limits import Limits
 _NAME = Kind.NAME
 _LEAVE = Kind.LEAVE
 _ARGUMENT_DEPTH = 60
-"""Arguments within arguments expanded on their own; deeper ones are expanded where they land."""
+"""Arguments within arguments that are expanded; seven Python frames each."""
 _WORK = 16
 """Characters of a unit's bound that one expanded token is charged for."""
 _RETRIES = 16
@@ -73,6 +73,7 @@ class Expander:
         self._extensions = extensions
         self._limits = limits
         self.note = note
+        self.most_tokens = limits.macro_tokens
         self._builtin = builtin
         self._operators: Mapping[str, Callable[[Token, list[Token]], Token | None]] = {}
         self._disabled: set[str] = set()
@@ -298,6 +299,9 @@ class Expander:
                 self._depth -= 1
             else:
                 out = argument.raw
+                message = f"arguments of macros nest more than {_ARGUMENT_DEPTH} deep"
+                for token in argument.plain[:1]:
+                    self.note(token, message)
             argument.expanded = out
         return argument.expanded
 

@@ -86,6 +86,7 @@ class SourceTree:
         self._limits = limits
         self._skipped: dict[str, str] = {}
         self._read: dict[str, SourceFile | None] = {}
+        self._resolved: dict[tuple[str, bool, str], SourceFile | None] = {}
         self._include = tuple(os.path.abspath(folder) for folder in include)
         starts = tuple(os.path.abspath(source) for source in sources)
         self._inside = tuple(os.path.realpath(path) for path in (*starts, *self._include))
@@ -104,6 +105,7 @@ class SourceTree:
         tree._cwd = os.path.abspath(Path.cwd())
         tree._limits = Limits()
         tree._skipped = {}
+        tree._resolved = {}
         tree._include = tree._inside = ()
         tree.files = tuple(sorted(files, key=lambda file: file.path))
         tree._read = {tree._absolute(file.path): file for file in tree.files}
@@ -129,13 +131,18 @@ class SourceTree:
         Searched are: the including file's folder (quoted names only), the include folders in order,
         then the tree itself for a path that ends with the name, the nearest if there are several.
         """
-        wanted = name.replace("\\", "/")
+        key = (name, quoted, from_file.path)
+        if key not in self._resolved:
+            self._resolved[key] = self._resolve(name.replace("\\", "/"), quoted, from_file)
+        return self._resolved[key]
+
+    def _resolve(self, name: str, quoted: bool, from_file: SourceFile) -> SourceFile | None:
         own = os.path.dirname(self._absolute(from_file.path))
         for folder in (own, *self._include) if quoted else self._include:
-            file = self._open(os.path.normpath(os.path.join(folder, wanted)))
+            file = self._open(os.path.normpath(os.path.join(folder, name)))
             if file is not None:
                 return file
-        return self._nearest(wanted, from_file)
+        return self._nearest(name, from_file)
 
     def _absolute(self, path: str) -> str:
         return os.path.normpath(os.path.join(self._cwd, path))

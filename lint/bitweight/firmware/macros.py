@@ -14,7 +14,7 @@ from bitweight.places import Place
 
 VARIABLE_ARGUMENTS = "__VA_ARGS__"
 _DEFINE = re.compile(rf"\#\s*define\s+({NAME})(\()?+")
-_PARAMETERS = re.compile(rf"\s*(?:{NAME}\s*,\s*)*+(?:{NAME}\s*(?:\.\.\.)?|\.\.\.)?\s*\)")
+_PARAMETERS = re.compile(rf"\s*(?:(?:{NAME}\s*,\s*)*+(?:{NAME}\s*(?:\.\.\.)?|\.\.\.))?\s*\)")
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -123,6 +123,13 @@ class MacroTable:
     def names(self) -> frozenset[str]:
         """Every name that is a macro somewhere."""
         return frozenset(name for _, change in self._changes for name in change)
+
+    def final(self) -> "MacroTable":
+        """The definitions in force at the end of the unit, from the start."""
+        last: dict[str, Macro | None] = {}
+        for _, change in self._changes:
+            last.update(change)
+        return MacroTable([(0, last)])
 
     def history(self, name: str) -> list[tuple[int, Macro | None]]:
         """The definitions of one name, each from its offset on."""

@@ -87,6 +87,9 @@ class _Marks:
         self.comments: list[tuple[int, int]] = []
         self.directives: list[tuple[int, int]] = []
         self._clear = 0
+        """Where the comments end that nothing stands before on their line."""
+        self._taken = 0
+        """The end of the line that is known to begin with something else."""
         pieces: list[str] = []
         position = 0
         for start, end, instead in self._replacements():
@@ -124,10 +127,13 @@ class _Marks:
     def _begins_line(self, offset: int) -> bool:
         """Whether only white space and comments stand before `offset` on its line."""
         text = self._joined
-        if offset == 0 or text[offset - 1] == "\n":
+        if offset < self._taken:
+            return False
+        start = max(text.rfind("\n", self._clear, offset) + 1, self._clear)
+        if start == offset or text[start:offset].isspace():
             return True
-        start = max(text.rfind("\n", 0, offset) + 1, self._clear)
-        return start == offset or text[start:offset].isspace()
+        self._taken = _line_end(text, offset)
+        return False
 
 
 def _line_end(text: str, offset: int) -> int:

@@ -117,9 +117,13 @@ class Parser:
         variables: list[Declarator] = []
         typedefs: list[Typedef] = []
         specifiers: list[Specifiers] = []
-        for node in nodes:
-            if node.type == "function_definition":
-                function = self._function(node)
+        for node, following in zip(nodes, [*nodes[1:], None], strict=True):
+            if node.type in ("function_definition", "expression_statement"):
+                function = (
+                    self._function(node)
+                    if node.type == "function_definition"
+                    else self._untyped_function(node, following)
+                )
                 if function is not None:
                     functions.append(function)
                     specifiers.append(function.type.specifiers)
@@ -188,13 +192,74 @@ class Parser:
         derived = made.type.derivations
         if not derived or not isinstance(derived[0], FunctionOf) or not made.name:
             return None
+        declared = [child for child in node.named_children if child.type == "declaration"]
+        parameters = derived[0].parameters
+        if declared or self._is_identifier_list(declarator):
+            parameters = self._old_parameters(declarator, declared)
         return FunctionSyntax(
             start=made.start,
             end=body.end_byte,
             name=made.name,
             type=made.type,
-            parameters=derived[0].parameters,
+            parameters=parameters,
             body_start=body.start_byte,
+        )
+
+    @staticmethod
+    def _is_identifier_list(declarator: type_node) -> bool:
+        names = declarator.child_by_field_name("parameters")
+        return names is not None and any(c.type == "identifier" for c in names.named_children)
+
+    def _old_parameters(
+        self, declarator: type_node, declared: list[type_node]
+    ) -> tuple[Declarator, ...]:
+        """Parameters of an old-style definition (C11 6.9.1p6): names first, types after."""
+        types = {one.name: one for node in declared for one in self._declaration(node)}
+        names = declarator.child_by_field_name("parameters")
+        found = []
+        for child in names.named_children if names is not None else []:
+            if child.type != "identifier":
+                continue
+            name = self._text(child)
+            found.append(types.get(name) or self._implicit_int(name, child))
+        return tuple(found)
+
+    @staticmethod
+    def _implicit_int(name: str, node: type_node) -> Declarator:
+        specifiers = Specifiers(words=("int",))
+        return Declarator(
+            start=node.start_byte,
+            end=node.end_byte,
+            name=name,
+            type=TypeSyntax(specifiers=specifiers),
+        )
+
+    def _untyped_function(
+        self, node: type_node, following: type_node | None
+    ) -> FunctionSyntax | None:
+        """`name(...) { ... }` without a type: the grammar sees a call and a block."""
+        call = node.named_children[0] if node.named_child_count == 1 else None
+        if call is None or following is None or following.type != "compound_statement":
+            return None
+        name = call.child_by_field_name("function")
+        arguments = call.child_by_field_name("arguments")
+        if name is None or name.type != "identifier" or arguments is None:
+            return None
+        parameters = tuple(
+            self._implicit_int(self._text(child), child)
+            for child in arguments.named_children
+            if child.type == "identifier"
+        )
+        return FunctionSyntax(
+            start=name.start_byte,
+            end=following.end_byte,
+            name=self._text(name),
+            type=TypeSyntax(
+                specifiers=Specifiers(words=("int",)),
+                derivations=(FunctionOf(parameters=parameters),),
+            ),
+            parameters=parameters,
+            body_start=following.start_byte,
         )
 
     # --- declarations ----------------------------------------------------------------------
@@ -554,7 +619,14 @@ class Parser:
         return Name(start=node.start_byte, end=node.end_byte, text=self._text(node))
 
     def _number(self, node: type_node) -> Expr:
-        return Number(start=node.start_byte, end=node.end_byte, text=self._text(node))
+        text = self._text(node)
+        sign = text[0] if text[0] in "+-" else ""
+        number = Number(
+            start=node.start_byte + len(sign), end=node.end_byte, text=text[len(sign) :]
+        )
+        if not sign:
+            return number
+        return Operation(start=node.start_byte, end=node.end_byte, operator=sign, operand=number)
 
     def _string(self, node: type_node) -> Expr:
         return Text(start=node.start_byte, end=node.end_byte, text=self._text(node))

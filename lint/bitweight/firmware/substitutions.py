@@ -12,18 +12,21 @@ from bitweight.firmware.tokens import MARKS, Kind, Token, Use, kind_of, spelled
 
 _NAME = Kind.NAME
 _EMPTY = Kind.EMPTY
+_LONGEST = 1 << 16
+"""Characters of a token made by `#` or `##`; C11 5.2.4.1 asks for 4095."""
 
 
 class Argument:
     """The tokens of one argument, as written and (made when first asked for) expanded."""
 
-    __slots__ = ("absent", "expanded", "raw")
+    __slots__ = ("absent", "expanded", "raw", "spelling")
 
     def __init__(self, raw: list[Token], *, absent: bool = False) -> None:
         self.raw = raw
         self.absent = absent
         """Whether variable arguments were left out, not merely empty."""
         self.expanded: list[Token] | None = None
+        self.spelling: str | None = None
 
     @property
     def plain(self) -> list[Token]:
@@ -35,6 +38,7 @@ class ArgumentExpander(Protocol):
     """What expands arguments and hears of what cannot be done."""
 
     note: Callable[[Token, str], None]
+    most_tokens: int
 
     def expand_argument(self, argument: Argument) -> list[Token]:
         """An argument expanded as if it were all the text there is."""
@@ -66,6 +70,8 @@ class Substitution:
         self._use = use
         self._arguments = arguments
         self._placeless = use is name.use
+        self._has_options = macro.variadic
+        """Whether `__VA_OPT__` means something here: not inside another one."""
 
     def tokens(self) -> list[Token]:
         body = self._macro.body
@@ -92,6 +98,8 @@ class Substitution:
                 out.append(self._own(token))
             else:
                 out += self._argument(position, token.spaced)
+            if len(out) > self._expander.most_tokens:
+                break
         return out
 
     def _argument(self, position: int, spaced: bool) -> list[Token]:
@@ -104,7 +112,7 @@ class Substitution:
         out: list[Token] = []
         index = 0
         pasting = False
-        while index < len(body):
+        while index < len(body) and len(out) <= self._expander.most_tokens:
             if body[index].text == "##" and out and not pasting:
                 pasting = True
                 index += 1
@@ -127,7 +135,7 @@ class Substitution:
         after = body[index + 1].text if index + 1 < len(body) else ""
         if self._stringizes(token, after):
             return index + 2
-        if token.text == "__VA_OPT__" and self._macro.variadic and after == "(":
+        if token.text == "__VA_OPT__" and after == "(" and self._has_options:
             return _closing(body, index + 1) + 1
         return index + 1
 
@@ -157,20 +165,21 @@ class Substitution:
         rest = self._expander.expand_argument(self._arguments[-1])
         if all(each.kind in MARKS for each in rest):
             return [self._empty(token)]
+        self._has_options = False
         tokens = self._operated(content) or [self._empty(token)]
+        self._has_options = True
         space_first(tokens, token.spaced)
         return tokens
 
     def _stringized(self, sign: Token, position: int) -> Token:
         """The spelling of an argument as a string (C11 6.10.3.2)."""
-        plain = self._arguments[position].plain
-        parts = [
-            token._replace(text=token.text.replace("\\", "\\\\").replace('"', '\\"'))
-            if token.kind in (Kind.STRING, Kind.CHARACTER)
-            else token
-            for token in plain
-        ]
-        text = f'"{spelled(parts)}"'
+        argument = self._arguments[position]
+        if argument.spelling is None:
+            argument.spelling = _string(argument.plain)
+        text = argument.spelling
+        if len(text) > _LONGEST:
+            self._expander.note(sign, f"a string of more than {_LONGEST} characters is left empty")
+            text = '""'
         spot = self._name if self._placeless else sign
         return Token(Kind.STRING, text, spot.file, spot.offset, sign.spaced, self._use, exact=False)
 
@@ -205,11 +214,22 @@ class Substitution:
     def _pasted(self, left: Token, right: Token) -> list[Token]:
         """Two tokens made one (C11 6.10.3.3), or both if they do not make one."""
         text = left.text + right.text
-        kind = kind_of(text)
+        kind = kind_of(text) if len(text) <= _LONGEST else None
         if kind is None:
-            self._expander.note(left, f"{left.text} and {right.text} do not paste to one token")
+            self._expander.note(left, f"{left.text[:40]} and {right.text[:40]} do not paste to one token")
             return [left, right]
         return [Token(kind, text, left.file, left.offset, left.spaced, self._use, exact=False)]
+
+
+def _string(tokens: Sequence[Token]) -> str:
+    """The spelling of tokens as one string."""
+    parts = [
+        token._replace(text=token.text.replace("\\", "\\\\").replace('"', '\\"'))
+        if token.kind in (Kind.STRING, Kind.CHARACTER)
+        else token
+        for token in tokens
+    ]
+    return f'"{spelled(parts)}"'
 
 
 def _closing(body: Sequence[Token], index: int) -> int:

@@ -6,9 +6,11 @@ mentions a name, directly or through macros and headers.
 
 import re
 from collections.abc import Iterable, Iterator, Mapping
+from copy import copy
 from dataclasses import dataclass, field
 from functools import cached_property
 
+from bitweight.arithmetic.expressions import Expression
 from bitweight.arithmetic.types import CType, DataModel, Kind
 from bitweight.firmware.files import SourceFile, SourceTree
 from bitweight.firmware.mentions import Mentions, mentions
@@ -23,7 +25,7 @@ from bitweight.firmware.objects import (
     Root,
     Strange,
 )
-from bitweight.firmware.parsing import Parser, UnitSyntax
+from bitweight.firmware.parsing import Parser, UnitSyntax, snippet
 from bitweight.firmware.syntax import (
     ArrayOf,
     Block,
@@ -122,6 +124,7 @@ class Unit:
             marks=_trimmed(spans, translation.text),
         )
         self.syntax: UnitSyntax = self.parser.unit()
+        self.literals: dict[tuple[int, str], Expression] = {}
         self._places: dict[int, tuple[Place, Place]] = {}
         self.typedefs: Mapping[str, TypeSyntax] = {
             one.name: one.type for one in self.syntax.typedefs
@@ -140,6 +143,17 @@ class Unit:
             origin = self.translation.origin(offset)
             self._places[offset] = (origin.place, origin.use)
         return self._places[offset]
+
+    def excerpt(self, source: str) -> "Unit":
+        """A unit that holds just one expression of text from outside, at the end of this one."""
+        outside = (self.records, self.enumerators, self.functions, self.variables, self.prototypes)
+        made = copy(self)
+        assert outside  # Computed before the text is another.
+        made.translation = self.translation.excerpt(snippet(source))
+        made.parser = Parser(made.translation.text, is_type=self.parser.is_type)
+        made._places = {}
+        made.literals = {}
+        return made
 
     @cached_property
     def records(self) -> Mapping[str, tuple[Field, ...]]:
@@ -196,7 +210,7 @@ class Unit:
                 syntax=one,
                 static="static" in one.type.specifiers.storage,
                 weak="weak" in head,
-                key=self.spelled(one.start),
+                key=self.place(one.start),
             )
         return found
 
@@ -218,7 +232,7 @@ class Unit:
 
     def _variable(self, one: Declarator) -> Variable:
         storage = one.type.specifiers.storage
-        key = self.spelled(one.start)
+        key = self.place(one.start)
         scope = key.file if "static" in storage else ""
         return Variable(
             name=one.name,

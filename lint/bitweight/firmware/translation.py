@@ -6,7 +6,7 @@ a `Problem`.
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from typing import NamedTuple
 
@@ -70,11 +70,12 @@ class TranslationUnit:
             if EXTENSIONS.get(macro.name) is not macro
         )
 
-    def expand_text(self, source: str, offset: int) -> str:
-        """C text from outside the tree, expanded by the macros in force at an offset of `text`."""
-        outline = Outline(SourceFile("<pattern>", source))
+    def excerpt(self, source: str) -> "TranslationUnit":
+        """C text from outside the tree as if it stood at the end of the unit, expanded."""
+        outline = Outline(SourceFile(self.path, source))
+        final = self.macros.final()
         expander = Expander(
-            self.macros.at(offset),
+            final.at(0),
             extensions=EXTENSIONS,
             limits=self.limits,
             note=lambda token, message: None,
@@ -82,7 +83,9 @@ class TranslationUnit:
         )
         pieces = Pieces()
         pieces.expansion(expander.expanded_text(tokens_of(outline, 0, len(outline.logical))))
-        return pieces.text()
+        return replace(
+            self, text=pieces.text(), macros=final, pieces=pieces, entered=tuple(expander.entered)
+        )
 
 
 def translate(

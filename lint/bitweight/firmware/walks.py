@@ -4,27 +4,23 @@ Conditionals need no memory: a branch met in active text ends its group, and a s
 each group goes on.
 """
 
-import re
 from collections.abc import Mapping
 from typing import NamedTuple
 
-from bitweight.firmware.conditions import ConditionError, condition_holds
 from bitweight.firmware.directives import Directive, Keyword, Script
 from bitweight.firmware.expansions import Expander
 from bitweight.firmware.files import SourceFile, SourceTree
 from bitweight.firmware.macros import Macro
 from bitweight.firmware.pieces import Pieces
+from bitweight.firmware.questions import HEADER, Questions
 from bitweight.firmware.remarks import Remarks
-from bitweight.firmware.tokens import MARKS, Kind, Token, spelled
+from bitweight.firmware.tokens import spelled
 from bitweight.limits import Limits
 
-_HEADER = re.compile(r'\s*(?:"([^"\n]*)"|<([^>\n]*)>)')
 _SAME_FILE = 8
 """Times a file may stand inside itself before it counts as an include loop."""
-_LEAST_COST = 1024
+_LEAST_COST = 4096
 """Characters that an include is charged for at least, so that empty files end too."""
-_ASKING = ("__has_attribute", "__has_builtin", "__has_feature", "__has_extension")
-"""Operators that ask what a compiler can do: nothing, here."""
 
 
 class Stretch(NamedTuple):
@@ -77,8 +73,7 @@ class Walk:
         self._quiet = False
         self._cost = 0
         self._once: set[SourceFile] = set()
-        self._operators = {"defined": self._defined, "__has_include": self._has_include}
-        self._operators |= dict.fromkeys(_ASKING, self._asks)
+        self._questions = Questions(tree, macros=macros, expander=expander, remarks=remarks)
         self.included: dict[str, None] = {}
 
     @property
@@ -97,7 +92,7 @@ class Walk:
         while self._frames and not self._is_over():
             frame = self._frames[-1]
             script = frame.script
-            last = frame.index >= len(script.directives)
+            last = frame.index >= script.count
             start = frame.position
             end = len(script.text) if last else script.directives[frame.index].start
             if start < end:
@@ -184,7 +179,7 @@ class Walk:
 
     def _skip(self, frame: _Frame, index: int) -> None:
         """Go on behind a directive further down, or at the end of the file."""
-        if index < len(frame.script.directives):
+        if index < frame.script.count:
             self._pass(frame, index)
             return
         self._blank(frame.script, frame.position, len(frame.script.text))
@@ -195,86 +190,17 @@ class Walk:
         """Go to the branch of a conditional that is active."""
         script = frame.script
         directives = script.directives
-        if script.closing[index] == len(directives):
+        if script.closing[index] == script.count:
             self._problem(script, directives[index].start, "this conditional has no #endif")
-        while index < len(directives) and not self._holds(script, index):
+        while index < script.count and not self._questions.holds(script, index):
             index = script.following[index]
         self._skip(frame, index)
 
-    def _holds(self, script: Script, index: int) -> bool:
-        directive = script.directives[index]
-        match directive.keyword:
-            case Keyword.ELSE | Keyword.ENDIF:
-                return True
-            case Keyword.IFDEF | Keyword.ELIFDEF:
-                return self._is_defined(script, index)
-            case Keyword.IFNDEF | Keyword.ELIFNDEF:
-                return not self._is_defined(script, index)
-            case _:
-                return self._is_true(script, directive)
-
-    def _is_defined(self, script: Script, index: int) -> bool:
-        directive = script.directives[index]
-        name = directive.name
-        if name in self._macros or name in self._operators:
-            return True
-        if not name:
-            self._problem(script, directive.start, f"#{directive.keyword.value} names no macro")
-        elif name != script.guard:
-            following = script.directives[index + 1 : index + 2]
-            fallback = directive.keyword is Keyword.IFNDEF and any(
-                name in each.macros for each in following
-            )
-            offset = script.outline.source(script.text.index(name, directive.rest))
-            self._remarks.test(name, script.file, offset, fallback=fallback)
-        return False
-
-    def _is_true(self, script: Script, directive: Directive) -> bool:
-        written = script.tokens(directive.rest, directive.end)
-        tokens = self._expander.condition(written, self._operators)
-        for token in tokens:
-            if token.kind is Kind.NAME:
-                self._remarks.test(token.text, token.file, token.offset)
-        try:
-            return condition_holds(tokens)
-        except ConditionError as error:
-            self._problem(script, directive.start, str(error))
-            return False
-
-    def _defined(self, operator: Token, stack: list[Token]) -> Token | None:
-        name = _taken(stack)
-        if name is not None and name.text == "(":
-            name = _taken(stack)
-            _taken(stack)
-        if name is None or name.kind is not Kind.NAME:
-            return None
-        known = name.text in self._macros or name.text in self._operators
-        script = self._frames[-1].script
-        if not known and name.text != script.guard:
-            self._remarks.test(name.text, name.file, name.offset)
-        return _answer(operator, known)
-
-    def _has_include(self, operator: Token, stack: list[Token]) -> Token | None:
-        tokens = _argument(stack)
-        if not tokens:
-            return None
-        if tokens[0].kind is Kind.NAME:
-            tokens = self._expander.argument(tokens)
-        header = _HEADER.match(spelled(tokens))
-        if header is None:
-            return None
-        name, quoted = header[1] or header[2] or "", header[1] is not None
-        found = self._tree.resolve(name, quoted, self._frames[-1].script.file)
-        return _answer(operator, found is not None)
-
-    def _asks(self, operator: Token, stack: list[Token]) -> Token | None:
-        return _answer(operator, False) if _argument(stack) else None
-
     def _include(self, script: Script, directive: Directive) -> None:
-        header = _HEADER.match(script.text, directive.rest, directive.end)
+        header = HEADER.match(script.text, directive.rest, directive.end)
         if header is None:
             tokens = self._expander.expanded_text(script.tokens(directive.rest, directive.end))
-            header = _HEADER.match(spelled(tokens))
+            header = HEADER.match(spelled(tokens))
         if header is None:
             self._problem(script, directive.start, "this #include names no file")
             return
@@ -302,30 +228,3 @@ class Walk:
             self._problem(script, directive.start, "the unit includes too much; this is left out")
         else:
             self._frames.append(_Frame(included))
-
-
-def _taken(stack: list[Token]) -> Token | None:
-    """The next token of a reversed list; marks before it stay."""
-    index = len(stack) - 1
-    while index >= 0 and stack[index].kind in MARKS:
-        index -= 1
-    return stack.pop(index) if index >= 0 else None
-
-
-def _argument(stack: list[Token]) -> list[Token]:
-    """What stands in the parentheses that come next; empty if none do."""
-    token = _taken(stack)
-    if token is None or token.text != "(":
-        return []
-    tokens: list[Token] = []
-    depth = 1
-    while (token := _taken(stack)) is not None:
-        depth += (token.text == "(") - (token.text == ")")
-        if depth == 0:
-            return tokens
-        tokens.append(token)
-    return []
-
-
-def _answer(operator: Token, holds: bool) -> Token:
-    return operator._replace(kind=Kind.NUMBER, text=str(int(holds)), exact=False)

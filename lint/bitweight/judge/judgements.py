@@ -158,6 +158,7 @@ def question(frame: Frame, unit: ResultUnit, computed: Evaluation) -> Question:
         count_stated=converter.full_scale_stated or converter.family is not None,
         word_stated=converter.justified_stated or converter.word_bits_stated,
         stated=stated_roles(frame.board),
+        others=frame.others,
     )
 
 
@@ -208,10 +209,13 @@ def _likeliest(frame: Frame, unit: ResultUnit, codes: Codes) -> Evaluation:
 
 
 def _rough_error(frame: Frame, unit: ResultUnit, computed: Evaluation) -> float:
-    """The largest error in range, in channel units, at the likeliest power of ten."""
+    """The largest error in range, in channel units, of what the code means at the likeliest decade.
+
+    What the target's arithmetic then spoils does not tell how the words arrive.
+    """
     inside = computed.in_range
     quantity = frame.side.quantity(computed.codes)[inside]
-    held = computed.held[inside]
+    held = computed.real[inside]
     scale = float(unit.scale) if unit.scale is not None else rough_scale(quantity, held)
     error = np.abs(held * scale + float(unit.zero) - quantity)
     return float(error.max()) if np.isfinite(error).all() else math.inf

@@ -3,8 +3,9 @@
 An expression enters; its spelled constants leave, each once however often the expression uses it.
 """
 
+import math
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
 from types import MappingProxyType
@@ -25,7 +26,8 @@ from bitweight.arithmetic.expressions import (
     walk,
 )
 from bitweight.arithmetic.literals import exact_value, half_digit
-from bitweight.arithmetic.types import DataModel
+from bitweight.arithmetic.scalars import wrap
+from bitweight.arithmetic.types import CType, DataModel
 from bitweight.board.facts import Role
 from bitweight.judge.questions import StatedRole
 from bitweight.places import Place
@@ -62,6 +64,11 @@ class Knob:
         """Whether it is a nameless power of ten or two: a scale factor, unless shown otherwise."""
         return not self.named and (is_power(self.value, 10) or is_power(self.value, 2))
 
+    @property
+    def is_coarse(self) -> bool:
+        """Whether its rounding is so coarse that it fits some fact by chance."""
+        return self.half > abs(self.value) * _COARSE
+
     def holds(self, exact: Fraction) -> bool:
         """Whether the constant is `exact` as well as its digits can say it."""
         distance = abs(self.value - exact)
@@ -75,6 +82,7 @@ class Knob:
 
 
 _NOTHING: Mapping[Key, tuple[Leaf, ...]] = MappingProxyType({})
+_COARSE = Fraction(1, 20)
 _WIDE = 1000
 """From here on a whole number may be rounded down or up; below, only to nearest."""
 _SLACK = Fraction(1, 10**9)
@@ -136,16 +144,18 @@ def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | Non
         return None
     names = (*((leaf.name,) if leaf.name else ()), *leaf.names)
     words = [word for name in names for word in _words(name)]
+    stated = next((roles[name] for name in names if name in roles), None)
+    hints = _hints(words) or _hints(_words(leaf.comment))
     return Knob(
         key=leaf_key(leaf),
         leaf=leaf,
         value=value,
         half=half,
         whole=node.type.is_integer,
-        hints=_hints(words) or _hints(_words(leaf.comment)),
+        hints=hints,
         named=leaf.name is not None,
-        exponent=_exponent(words),
-        stated=next((roles[name] for name in names if name in roles), None),
+        exponent=_exponent(words, hints) if stated is None else _stated_exponent(stated),
+        stated=stated,
     )
 
 
@@ -241,6 +251,22 @@ def _rebuilt(node: Expression, rebuilt: dict[int, Expression]) -> Expression:
             )
 
 
+def steadied(expression: Expression, channel: str, others: Mapping[str, int]) -> Expression:
+    """The expression with readings of other channels as constants, at their steady words."""
+    rebuilt: dict[int, Expression] = {}
+    for node in walk(expression):
+        if isinstance(node, Code) and node.channels and channel not in node.channels:
+            word = next((others[name] for name in node.channels if name in others), 0)
+            rebuilt[id(node)] = Literal(value=_fitting(word, node.type), type=node.type)
+        else:
+            rebuilt[id(node)] = _rebuilt(node, rebuilt)
+    return rebuilt[id(expression)]
+
+
+def _fitting(word: int, type_: CType) -> int | float:
+    return wrap(word, type_) if type_.is_integer else float(word)
+
+
 def replaced(expression: Expression, literals: dict[Key, Literal]) -> Expression:
     """The expression with other constants in the places of some."""
     rebuilt: dict[int, Expression] = {}
@@ -286,6 +312,16 @@ def _hints(words: Iterable[str]) -> frozenset[Role]:
     return frozenset(role for word in words for role in _WORD_ROLES.get(word, ()))
 
 
-def _exponent(words: Iterable[str]) -> int | None:
+def _stated_exponent(stated: StatedRole) -> int | None:
+    """The power of ten that a stated unit says: 3 for mV."""
+    if stated.unit is None or not is_power(stated.unit, 10):
+        return None
+    return -round(math.log10(stated.unit))
+
+
+def _exponent(words: Sequence[str], hints: frozenset[Role]) -> int | None:
+    """The power of ten of the last unit word, of the first where it is one unit per another."""
     found = [_EXPONENTS[word] for word in words if word in _EXPONENTS]
-    return found[-1] if found else None
+    if found:
+        return found[0] if "per" in words else found[-1]
+    return -3 if "k" in words and Role.RESISTANCE in hints else None

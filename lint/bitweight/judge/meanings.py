@@ -83,8 +83,9 @@ _SUMS = range(11)
 _FIXED_POINT_COMMON = (0, 8, 10, 12, 14, 15, 16, 20)
 _FINEST_COMPOSITE = Fraction(1, 50)
 """A constant whose rounding is coarser than 2 % fits some product of facts by chance."""
-_COARSE = Fraction(1, 20)
-"""A constant whose rounding is coarser than 5 % stands for facts in everyday scalings only."""
+_FAR = 0.7
+_FAR_WITH_UNIT = 2.0
+"""Decades that a constant may be from its fact, more where its name says the unit."""
 _CLOSE = 1e-9
 
 _SCALINGS = {
@@ -154,25 +155,25 @@ def matches(
 
 
 def nearest(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
-    """For each term the scaling nearest to the constant, if it is within a factor of five."""
+    """For each term the scaling nearest to the constant, if it is not far off."""
     if knob.value <= 0:
         return
+    farthest = _FAR if knob.exponent is None else _FAR_WITH_UNIT
     for term in _allowed(knob, all_terms):
         ratio = float(knob.value / term.value)
         powers = _nearest_powers(knob, term, ratio)
         for exponent, doublings in powers:
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
-            if abs(math.log10(float(knob.value / exact))) < 0.7:
+            if abs(math.log10(float(knob.value / exact))) < farthest:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
 
 
 def snaps(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
     """Every meaning that the constant says as well as its digits can."""
-    coarse = knob.half > abs(knob.value) * _COARSE
     return (
         meaning
         for meaning in nearest(knob, all_terms)
-        if knob.holds(meaning.exact) and (meaning.is_natural or not coarse)
+        if knob.holds(meaning.exact) and (meaning.is_natural or not knob.is_coarse)
     )
 
 
@@ -227,9 +228,6 @@ def _powers(scaling: Scaling, ratio: float) -> Iterator[tuple[int, int]]:
 def _nearest_powers(knob: Knob, term: Term, ratio: float) -> Iterator[tuple[int, int]]:
     if knob.exponent is not None and term.scaling is Scaling.QUANTITY:
         yield knob.exponent, 0
-        return
-    if knob.stated is not None and knob.stated.unit is not None:
-        yield _power(1 / knob.stated.unit) or 0, 0
         return
     yield from _powers(term.scaling, ratio)
 

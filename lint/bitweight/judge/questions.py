@@ -1,7 +1,7 @@
 """One conversion and the board's side of it, as the search for wrong constants needs them."""
 
-from collections.abc import Callable
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
 from fractions import Fraction
 
 import numpy as np
@@ -51,7 +51,8 @@ class Question:
     the channel's unit. `allowed(step)` gives the allowed error at each code, in the channel's unit,
     when one count of the result is `step` channel units (0 for a floating result). The code stands
     `shift` bits above the lowest bit of a word of `word_bits`. `coding` is the converter's.
-    `count_stated` and `word_stated` are False where the board file left a default.
+    `count_stated` and `word_stated` are False where the board file left a default. `others` holds
+    the steady word of other channels' readings, by the channels' names.
     """
 
     conversion: Conversion
@@ -74,3 +75,4 @@ class Question:
     count_stated: bool = True
     word_stated: bool = True
     stated: tuple[StatedRole, ...] = ()
+    others: Mapping[str, int] = field(default_factory=dict)

@@ -57,7 +57,7 @@ class Layout:
 
 def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
     """The constant takes the value of a fact; None where that says nothing against the constant."""
-    if knob.holds(meaning.exact):
+    if knob.holds(meaning.exact) or _contradicts_unit(knob, meaning):
         return None
     if _holds_already(knob, meaning):
         names_unit = knob.exponent is not None and knob.exponent == meaning.exponent
@@ -72,7 +72,9 @@ def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
 
 def power_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None:
     """A bare power of ten takes another one."""
-    if not layout.unit_stated or not (is_power(knob.value, 10) and is_power(exact, 10)):
+    if not layout.unit_stated or not (knob.is_round and is_power(knob.value, 10)):
+        return None
+    if not is_power(exact, 10):
         return None
     if knob.value == exact or (knob.whole and exact.denominator != 1):
         return None
@@ -94,6 +96,12 @@ def divisor_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None
     if not knob.on_reading or not is_power(knob.value, 2) or exact != 1 << layout.shift:
         return None
     return Repair(rule="justification", knob=knob, exact=exact)
+
+
+def _contradicts_unit(knob: Knob, meaning: Meaning) -> bool:
+    """Whether the constant's own unit word says another scaling."""
+    quantity = meaning.term.scaling is Scaling.QUANTITY
+    return quantity and knob.exponent is not None and knob.exponent != meaning.exponent
 
 
 def _holds_already(knob: Knob, meaning: Meaning) -> bool:
@@ -141,7 +149,7 @@ def rank(repairs: Iterable[Repair]) -> Rank:
     chosen = tuple(repairs)
     return (
         sum(_is_doubtful(repair) for repair in chosen),
-        sum(repair.meaning is not None and not repair.meaning.is_natural for repair in chosen),
+        sum(_is_unusual(repair) for repair in chosen),
         sorted(RULE_ORDER.index(repair.rule) for repair in chosen),
         sum(repair.knob is None for repair in chosen),
         sum(not _is_hinted(repair) for repair in chosen),
@@ -160,6 +168,13 @@ def _is_doubtful(repair: Repair) -> bool:
         return True
     counts = meaning.term.role in (Role.FULL_SCALE, Role.ZERO_CODE)
     return knob.is_round and not (counts and is_power(knob.value, 2))
+
+
+def _is_unusual(repair: Repair) -> bool:
+    """Whether the constant would be in a scaling that is no everyday one."""
+    if repair.meaning is None or repair.rule == "justification":
+        return False
+    return not repair.meaning.is_natural
 
 
 def _is_hinted(repair: Repair) -> bool:

@@ -18,6 +18,7 @@ from bitweight.judge.questions import BoardLine, Question
 from bitweight.judge.repairs import Repair
 from bitweight.judge.roots import gain_root, offset_root
 from bitweight.judge.sketches import RealLine, same
+from bitweight.judge.spellings import spelled
 from bitweight.judge.views import View
 
 Array = NDArray[np.float64]
@@ -127,6 +128,8 @@ def culprit(view: View) -> Repair | None:
         search.sketch, search.target, unknown[0], {}
     )
     if root is None or root <= 0 or not search.fits({unknown[0].key: root}):
+        return None
+    if spelled(unknown[0].leaf.text, root) == unknown[0].leaf.text:
         return None
     rule = "transfer-offset" if gain_is_right else "transfer-gain"
     return Repair(rule=rule, knob=unknown[0], exact=root)

@@ -12,7 +12,7 @@ from itertools import combinations, islice
 from bitweight.arithmetic.expressions import Leaf
 from bitweight.judge.effects import Bench, bench
 from bitweight.judge.explanations import EffectPoint, Explanation, WrongConstant
-from bitweight.judge.knobs import Knob, is_power
+from bitweight.judge.knobs import Knob, is_power, steadied
 from bitweight.judge.meanings import Scaling, nearest, snaps
 from bitweight.judge.questions import BoardLine, Question, StatedRole
 from bitweight.judge.repairs import Repair, fact_repair
@@ -40,16 +40,26 @@ def explain(question: Question) -> Explanation:
     """
     if not question.lines:
         return Explanation()
-    first = next(views(question), None)
-    if first is None:
+    question = _steadied(question)
+    ways = tuple(views(question))
+    if not ways:
         return Explanation(residual="curve" if curve_leaves(question) else None)
-    answer = smallest_answer(views(question))
+    answer = smallest_answer(ways)
     if answer is not None and answer.repairs:
         return _wrong(question, answer)
-    view = first if answer is None else answer.view
+    view = ways[0] if answer is None else answer.view
     if bends(question, view):
         return _with_line(question, view, Explanation(residual="curve"))
     return _kept(question, view, explained=answer is not None)
+
+
+def _steadied(question: Question) -> Question:
+    """The question with the readings of other channels as constants."""
+    conversion = question.conversion
+    expression = steadied(conversion.expression, conversion.channel, question.others)
+    if expression is conversion.expression:
+        return question
+    return replace(question, conversion=replace(conversion, expression=expression))
 
 
 def _wrong(question: Question, answer: Answer) -> Explanation:
@@ -124,7 +134,8 @@ def _contradictions(view: View, knob: Knob) -> Iterator[Repair]:
         if knob.stated is not None or meaning.term.role in knob.hints
         if knob.exponent is not None or meaning.term.scaling is not Scaling.QUANTITY
     ]
-    if any(knob.holds(meaning.exact) for meaning in named):
+    named.sort(key=lambda meaning: not meaning.is_natural)
+    if any(meaning in named for meaning in snaps(knob, view.search.terms)):
         return
     for meaning in named:
         repair = fact_repair(knob, meaning, view.search.layout)

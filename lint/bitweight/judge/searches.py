@@ -109,7 +109,8 @@ def _exact_values(search: Search, knob: Knob) -> Iterator[Fraction]:
     if knob.is_round or knob.counts_bits:
         return
     for meaning in snaps(knob, search.terms):
-        if meaning.exact != knob.value:
+        hinted = meaning.term.role in knob.hints
+        if meaning.exact != knob.value and (hinted or not (knob.hints or knob.is_coarse)):
             yield meaning.exact
     yield from composites(knob, search.terms)
 

@@ -32,11 +32,12 @@ class RealLine:
 class Sketch:
     """One expression, probed at the ends of its straight stretch; counts what it was asked."""
 
-    __slots__ = ("_ends", "_form", "asked")
+    __slots__ = ("_ends", "_form", "_known", "asked")
 
     def __init__(self, form: RealForm, ends: tuple[tuple[int, int], tuple[int, int]]) -> None:
         self._form = form
         self._ends = ends
+        self._known: dict[frozenset[tuple[Key, Fraction]], RealLine | None] = {}
         self.asked = 0
 
     @property
@@ -46,9 +47,13 @@ class Sketch:
 
     def line(self, values: Values) -> RealLine | None:
         """The line with these constants; None where a value is missing or the sketch is spent."""
-        if self.spent:
-            return None
-        self.asked += 1
+        asked = frozenset(values.items())
+        if asked not in self._known and not self.spent:
+            self.asked += 1
+            self._known[asked] = self._drawn(values)
+        return self._known.get(asked)
+
+    def _drawn(self, values: Values) -> RealLine | None:
         (first, first_word), (last, last_word) = self._ends
         low, high = self._form.exact(first_word, values), self._form.exact(last_word, values)
         if low is None or high is None:

@@ -7,7 +7,7 @@ from dataclasses import replace
 import numpy as np
 
 from bitweight.arithmetic.evaluation import evaluate
-from bitweight.arithmetic.expressions import Literal, walk
+from bitweight.arithmetic.expressions import Binary, Literal, walk
 from bitweight.arithmetic.types import CType, DataModel
 from bitweight.judge.evaluations import Evaluation
 from bitweight.judge.operations import Suffix, WrongOperation, wrong_operations
@@ -19,8 +19,8 @@ _MOST = 8
 
 
 def suffix_for(computed: Evaluation, operation: WrongOperation) -> Suffix | None:
-    """The first suffix of a constant below the operator after which nothing goes wrong, or None."""
-    literals = [node for node in walk(operation.node) if isinstance(node, Literal)][:_MOST]
+    """The first suffix of a constant after which nothing goes wrong on the way, or None."""
+    literals = _near(computed, operation)
     for literal in literals:
         for text, type_ in _wider(literal, computed.model):
             if literal.leaf is not None and _mends(computed, operation, literal, type_):
@@ -28,19 +28,27 @@ def suffix_for(computed: Evaluation, operation: WrongOperation) -> Suffix | None
     return None
 
 
+def _near(computed: Evaluation, operation: WrongOperation) -> list[Literal]:
+    """Constants below an operator; of a conversion any, since its cause is the other operand."""
+    inside = operation.node if isinstance(operation.node, Binary) else computed.expression
+    return [node for node in walk(inside) if isinstance(node, Literal)][:_MOST]
+
+
 def _wider(literal: Literal, model: DataModel) -> Iterator[tuple[str, CType]]:
-    """The spellings of an integer constant in wider types, the narrowest first."""
+    """The spellings of an integer constant in wider types, or signed ones, the narrowest first."""
     match = _INTEGER.fullmatch(literal.leaf.text) if literal.leaf else None
     if match is None or not literal.type.is_integer:
         return
     choices = (
+        ("", model.int_),
         ("UL", model.unsigned_long),
         ("L", model.long),
         ("ULL", model.unsigned_long_long),
         ("LL", model.long_long),
     )
     for suffix, type_ in choices:
-        if type_.bits > literal.type.bits:
+        signs = type_.signed and not literal.type.signed and literal.value <= type_.high
+        if type_.bits > literal.type.bits or (signs and type_.bits == literal.type.bits):
             yield match[1] + suffix, type_
 
 

@@ -5,7 +5,7 @@ is stated, and take the code to stand elsewhere in its word. Each way is one `Vi
 """
 
 import math
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
@@ -40,6 +40,7 @@ class View:
     scale: Fraction
     decade: int
     given: tuple[Repair, ...] = ()
+    preference: int = 0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -60,24 +61,34 @@ class _Reading:
     line: RealLine
 
 
-def smallest_answer(views: Iterator[View]) -> Answer | None:
-    """The explanation with the fewest wrong constants; None where no view has one."""
-    best: Answer | None = None
-    for view in views:
-        left = (_MOST_WRONG if best is None else len(best.repairs)) - len(view.given)
-        solution = smallest(view.search, left) if left >= 0 else None
-        if solution is None:
-            continue
-        answer = Answer(view=view, repairs=(*view.given, *solution.repairs))
-        if best is None or _order(answer) < _order(best):
-            best = answer
-        if not best.repairs:
-            return best
-    return best
+def smallest_answer(ways: Sequence[View]) -> Answer | None:
+    """The explanation of least cost; None where no view has one."""
+    for most in range(1, _MOST_WRONG + 1):
+        answers = [answer for view in ways if (answer := _answer(view, most)) is not None]
+        if answers:
+            return min(answers, key=_order)
+    return None
+
+
+def _answer(view: View, most: int) -> Answer | None:
+    left = most - _cost(view.given)
+    solution = smallest(view.search, left) if left >= 0 else None
+    if solution is None:
+        return None
+    return Answer(view=view, repairs=(*view.given, *solution.repairs))
+
+
+def _cost(repairs: Sequence[Repair]) -> int:
+    """How many wrong constants: a prefix that no constant carries counts twice.
+
+    Named constants that contradict the board go before it.
+    """
+    return sum(2 if repair.rule == "unit-prefix" and not repair.knob else 1 for repair in repairs)
 
 
 def _order(answer: Answer) -> tuple[object, ...]:
-    return (len(answer.repairs), rank(answer.repairs), abs(answer.view.decade))
+    view = answer.view
+    return (_cost(answer.repairs), view.preference, rank(answer.repairs), abs(view.decade))
 
 
 def views(question: Question) -> Iterator[View]:
@@ -117,7 +128,7 @@ def _reading(
 
 def _plain_views(question: Question, reading: _Reading) -> Iterator[View]:
     for decade, scale in _scales(question, reading.line):
-        for board in question.lines:
+        for preference, board in enumerate(question.lines):
             search = Search(
                 sketch=reading.sketch,
                 knobs=reading.knobs,
@@ -132,6 +143,7 @@ def _plain_views(question: Question, reading: _Reading) -> Iterator[View]:
                 board=board,
                 scale=scale,
                 decade=decade,
+                preference=preference,
             )
 
 

@@ -19,11 +19,13 @@ from bitweight.report.texts import figure, shown, wrapped
 
 _LEVEL_STYLES = {Level.ERROR: "bold red", Level.WARNING: "bold yellow", Level.NOTE: "bold cyan"}
 
-_MOST_RELATED = 6
+_MOST_RELATED = 4
 """Places listed below a finding; the plain and JSON reports have all."""
 
 _INDENT = 4
-_WORD = re.compile(r"\w+|\S")
+_CULPRIT = re.compile(r"\w+(?:(?:\.|->)\w+)*|<<|>>|\S")
+"""What a mark covers where no edit says it: a name with its members, an operator."""
+
 
 Sources = Mapping[tuple[str, int], str]
 
@@ -103,7 +105,7 @@ def _split(line: str, finding: Finding) -> tuple[str, str, str]:
     if edit is not None and edit.place == finding.place and edit.end_column - 1 > start:
         end = edit.end_column - 1
     else:
-        match = _WORD.match(line, start)
+        match = _CULPRIT.match(line, start)
         end = match.end() if match else start
     return _shown(line[:start]), _shown(line[start:end]), _shown(line[end:])
 

@@ -4,7 +4,7 @@ A screen holds an outcome and yields styled lines for a width; it never prints. 
 stand in words, so that nothing is lost without colour; text from a tree is a literal, never markup.
 """
 
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterator
 from dataclasses import dataclass
 from itertools import zip_longest
 
@@ -16,7 +16,8 @@ from bitweight.judge.findings import Finding
 from bitweight.judge.outcomes import Outcome
 from bitweight.report.blocks import finding_block, reminder
 from bitweight.report.drawings import Ink, bars, drawing
-from bitweight.report.rulings import BOLD, STATUS_STYLES, entry, heading, table_row
+from bitweight.report.overviews import Numbers, elsewhere, numbered, overview
+from bitweight.report.rulings import BOLD, entry, heading, table_row
 from bitweight.report.sides import (
     chain_text,
     full_scale_text,
@@ -25,16 +26,15 @@ from bitweight.report.sides import (
     place_text,
     reference_text,
     rows,
+    worst_texts,
 )
-from bitweight.report.texts import CAUTION, accepted, closing, figure, figures, shown, wrapped
+from bitweight.report.texts import CAUTION, accepted, closing, figure, figures, wrapped
 
 NARROWEST, WIDEST = 60, 120
 """Columns a sheet is laid out for; a terminal outside gets the nearer bound."""
 
 _HEIGHT = 7
 """Rows of a drawing."""
-
-_MARKS = {Status.VERIFIED: " ", Status.MISMATCHED: "x", Status.UNTRACED: "?"}
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -51,7 +51,7 @@ class Screen:
     def lines(self, width: int) -> Iterator[Text]:
         """The lines of the screen, each at most as wide as the sheet."""
         columns = min(max(width, NARROWEST), WIDEST)
-        numbers = _numbered(self.outcome)
+        numbers = numbered(self.outcome)
         for line in _screen(self.outcome, numbers, columns, self.ink):
             if self.ink is Ink.PLAIN:
                 line.plain = line.plain.replace("µ", "u")
@@ -59,12 +59,8 @@ class Screen:
             yield line
 
 
-Numbers = Mapping[int, int]
-"""The number of each finding (key: its index in the outcome), in the order of the sheets."""
-
-
 def _screen(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
-    yield from _overview(outcome, numbers, width, ink)
+    yield from overview(outcome, numbers, width, ink)
     for case in outcome.facts.cases:
         yield Text()
         yield from _sheet(case, outcome, numbers, width, ink)
@@ -72,82 +68,6 @@ def _screen(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterato
     yield Text()
     yield Text(ink.light * width, style="dim")
     yield from _closing(outcome, width)
-
-
-def _numbered(outcome: Outcome) -> Numbers:
-    """Findings numbered down the page: by channel, worst first; accepted ones and the rest last."""
-    order = {case.channel.name: index for index, case in enumerate(outcome.facts.cases)}
-    last = len(order)
-
-    def position(index: int) -> tuple[int, bool, int, int]:
-        one = outcome.findings[index]
-        channel = min((order.get(name, last) for name in one.channels), default=last)
-        return (channel, one.deviation is not None, -one.level.weight, index)
-
-    ranked = sorted(range(len(outcome.findings)), key=position)
-    return {index: number for number, index in enumerate(ranked, start=1)}
-
-
-def _overview(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
-    board = outcome.facts.board
-    revision = f", revision {board.revision}" if board.revision else ""
-    variant = f", variant {board.variant}" if board.variant else ""
-    title = f"{board.name or 'board'}{revision}{variant}"
-    for line in wrapped(title, width):
-        yield Text(line, style=BOLD)
-    yield Text(shown(board.file), style="dim")
-    yield Text(ink.light * width, style="dim")
-    columns = _columns(outcome.facts.cases, width)
-    yield table_row(("", *columns, "findings"), tuple(columns.values()), width)
-    for case in outcome.facts.cases:
-        status = outcome.statuses[case.channel.name]
-        findings = _listed(case, outcome, numbers)
-        yield from _overview_rows(case, status, findings, columns, width)
-
-
-def _columns(cases: Sequence[Case], width: int) -> Mapping[str, int]:
-    """The columns of the overview and their widths; a narrow sheet leaves out what is allowed."""
-    longest = max((len(shown(case.channel.name)) for case in cases), default=0)
-    name = max(7, min(longest, 24 if width >= 80 else 14))
-    columns = {"channel": name, "status": 10, "worst error": 11, "allowed": 10}
-    if width < 76:
-        del columns["allowed"]
-    return columns
-
-
-def _overview_rows(
-    case: Case, status: Status, findings: str, columns: Mapping[str, int], width: int
-) -> Iterator[Text]:
-    widths = tuple(columns.values())
-    worst, allowed = ("-", "-") if case.judgement is None else _worst_texts(case.judgement)
-    name, style = shown(case.channel.name), STATUS_STYLES[status]
-    if len(name) > columns["channel"]:
-        for line in wrapped(case.channel.name, width - 2):
-            yield table_row((_MARKS[status], line), (), width, style=style)
-        name = ""
-    cells = {"channel": name, "status": status.value, "worst error": worst, "allowed": allowed}
-    first, *rest = wrapped(findings, width - sum(widths) - 2 * len(widths) - 2)
-    kept = [cells[column] for column in columns]
-    yield table_row((_MARKS[status], *kept, first), widths, width, style=style)
-    for more in rest:
-        yield table_row(("", *[""] * len(kept), more), widths, width)
-
-
-def _listed(case: Case, outcome: Outcome, numbers: Numbers) -> str:
-    """`error 1 2, warning 3`: the findings of a channel by level, by their numbers."""
-    groups: dict[str, list[int]] = {"error": [], "warning": [], "note": [], "accepted": []}
-    for index, finding in enumerate(outcome.findings):
-        if case.channel.name in finding.channels:
-            word = finding.level.value if finding.deviation is None else "accepted"
-            groups[word].append(numbers[index])
-    parts = [f"{word} {' '.join(map(str, sorted(of)))}" for word, of in groups.items() if of]
-    return ", ".join(parts) or "-"
-
-
-def _worst_texts(judgement: Judgement) -> tuple[str, str]:
-    unit = judgement.ideal.channel.unit.text
-    worst = figure(float(judgement.error[judgement.worst_index]), unit, digits=3, sign=True)
-    return worst, figure(float(judgement.allowed[judgement.worst_index]), unit, digits=3)
 
 
 def _sheet(case: Case, outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
@@ -255,7 +175,7 @@ def _conversion_place(judgement: Judgement) -> str:
 
 
 def _error_text(judgement: Judgement) -> str:
-    worst, allowed = _worst_texts(judgement)
+    worst, allowed = worst_texts(judgement)
     span = float(judgement.ideal.span)
     share = 100 * float(judgement.error[judgement.worst_index]) / span if span else 0.0
     code = judgement.codes[judgement.worst_index]
@@ -303,7 +223,7 @@ def _points(judgement: Judgement, width: int) -> Iterator[Text]:
 
 def _outside(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:
     """Findings that belong to no channel's sheet."""
-    rest = [index for index, one in enumerate(outcome.findings) if not _shown_first(one, outcome)]
+    rest = elsewhere(outcome)
     if not rest:
         return
     yield Text()

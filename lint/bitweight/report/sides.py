@@ -3,8 +3,9 @@
 A case goes in, short texts come out; sheets arrange them. Nothing is judged here.
 """
 
-from collections.abc import Container, Iterable, Sequence
+from collections.abc import Container, Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from itertools import starmap
 
 from bitweight.arithmetic.expressions import Leaf
 from bitweight.board.chains import ideal, not_computed
@@ -30,9 +31,9 @@ class Row:
 def rows(case: Case, judgement: Judgement) -> tuple[Row, ...]:
     """Reference, full-scale count, chain, gain and offset, the board's beside the firmware's."""
     channel = case.channel
-    groups = _grouped(judgement.explanation.roles)
     explained = judgement.explanation
     wrong = {one.place for one in (*explained.wrong, *explained.cancelling)}
+    groups = _grouped(explained.roles, wrong)
     constants = (
         ("reference", reference_text(channel.converter)),
         ("full scale", full_scale_text(channel.converter)),
@@ -44,7 +45,7 @@ def rows(case: Case, judgement: Judgement) -> tuple[Row, ...]:
             Row(
                 label=label,
                 board=board,
-                firmware=", ".join(map(_leaf_text, groups[label])),
+                firmware=", ".join(starmap(_leaf_text, groups[label])),
                 agrees=_agrees(groups[label], wrong),
             )
             for label, board in constants
@@ -119,6 +120,13 @@ def result_unit_text(channel: Channel, judgement: Judgement) -> str:
     return f"{number(judgement.scale, 12)} {channel.unit.text}".strip()
 
 
+def worst_texts(judgement: Judgement) -> tuple[str, str]:
+    """The worst error in range, with its sign, and what is allowed where it stands."""
+    unit = judgement.ideal.channel.unit.text
+    worst = figure(float(judgement.error[judgement.worst_index]), unit, digits=3, sign=True)
+    return worst, figure(float(judgement.allowed[judgement.worst_index]), unit, digits=3)
+
+
 def _gain_difference(judgement: Judgement) -> str:
     board, code = judgement.hardware.gain, judgement.firmware.gain
     if not board or code is None:
@@ -127,21 +135,32 @@ def _gain_difference(judgement: Judgement) -> str:
     return f" ({percent:+.2f} %)" if abs(percent) >= 0.005 else ""
 
 
-def _grouped(roles: Iterable[tuple[Leaf, str]]) -> dict[str, list[Leaf]]:
-    groups: dict[str, list[Leaf]] = {"reference": [], "full scale": [], "chain": []}
-    for leaf, role in roles:
-        word = role.split(" ", 1)[0]
-        label = {"reference": "reference", "full-scale": "full scale", "resolution": "full scale"}
-        groups[label.get(word, "chain")].append(leaf)
-    return groups
+_LABELS = {"reference": "reference", "full-scale": "full scale", "resolution": "full scale"}
+"""The row of a constant by the first word of its role; all others belong to the chain."""
 
 
-def _agrees(leaves: Sequence[Leaf], wrong: Container[Place]) -> bool | None:
-    return not any(leaf.place in wrong for leaf in leaves) if leaves else None
+def _grouped(
+    roles: Iterable[tuple[Leaf, str]], wrong: Container[Place]
+) -> Mapping[str, Sequence[tuple[Leaf, str]]]:
+    """Constants with their role by row, the wrong ones first, each spelling once."""
+    groups: dict[str, dict[Place, tuple[Leaf, str]]] = {
+        "reference": {},
+        "full scale": {},
+        "chain": {},
+    }
+    for leaf, role in sorted(roles, key=lambda one: one[0].place not in wrong):
+        label = _LABELS.get(role.split(" ", 1)[0], "chain")
+        groups[label].setdefault(leaf.place, (leaf, role))
+    return {label: tuple(group.values()) for label, group in groups.items()}
 
 
-def _leaf_text(leaf: Leaf) -> str:
-    return f"{leaf.text} ({leaf.name})" if leaf.name else leaf.text
+def _agrees(group: Sequence[tuple[Leaf, str]], wrong: Container[Place]) -> bool | None:
+    return not any(leaf.place in wrong for leaf, _ in group) if group else None
+
+
+def _leaf_text(leaf: Leaf, role: str) -> str:
+    value = f"{leaf.text} bits" if role.startswith("resolution") else leaf.text
+    return f"{value} ({leaf.name})" if leaf.name else value
 
 
 def _stage_text(stage: Stage) -> str:
@@ -157,12 +176,19 @@ def _stage_text(stage: Stage) -> str:
         case Shunt():
             return f"shunt {_part(stage.resistance)}"
         case Linear():
-            at = f" at {_part(stage.at)}" if stage.at and stage.offset else ""
-            return f"sensor {_part(stage.sensitivity)}{_plus(stage.offset)}{at}"
+            return f"sensor {_part(stage.sensitivity)}{_start(stage)}"
         case LowPass():
             return f"low-pass {_part(stage.resistance)}, {_part(stage.capacitance)}"
         case _:
             return stage.KIND
+
+
+def _start(sensor: Linear) -> str:
+    """Where a sensor's line starts: its offset, the quantity at which it gives that, or both."""
+    if isinstance(sensor.offset, Part) and not sensor.offset.quantity.number:
+        return f" from {_part(sensor.at)}" if sensor.at else ""
+    at = f" at {_part(sensor.at)}" if sensor.at and sensor.offset else ""
+    return _plus(sensor.offset) + at
 
 
 def _plus(offset: Part | Share | None) -> str:

@@ -79,7 +79,6 @@ class Context:
     statics: dict[Root, Declared] = field(default_factory=dict)
     in_progress: dict[Root, set[tuple[str | int, ...]]] = field(default_factory=dict)
     pattern_constants: dict[int, tuple[Expr, int | float | None]] = field(default_factory=dict)
-    _literals: dict[tuple[str, int, str], Expression] = field(default_factory=dict)
     _declared: dict[Root, Declared | None] = field(default_factory=dict)
     _fixed: dict[Root, bool] = field(default_factory=dict)
     _wanted: dict[str, Mapping[tuple[str, str], tuple[Wanted, ...]]] = field(default_factory=dict)
@@ -163,11 +162,7 @@ class Context:
         else:
             candidates = self.program.all_functions(root.name)
         whole = declared is None or isinstance(declared.type, Array)
-        return tuple(
-            one
-            for one in candidates
-            if self._touches(one, root, whole)
-        )
+        return tuple(one for one in candidates if self._touches(one, root, whole))
 
     def _touches(self, function: Function, root: Root, whole: bool) -> bool:
         seen = function.mentions
@@ -188,7 +183,9 @@ class Context:
         self._kept.append(node)
         return node
 
-    def unknown(self, reason: str, place: Place, type_: CType | None = None, text: str = "?") -> Code:
+    def unknown(
+        self, reason: str, place: Place, type_: CType | None = None, text: str = "?"
+    ) -> Code:
         """A value that is not followed; the reason is for the user."""
         made = Input(kind="unknown", reason=reason, place=place)
         return self._placeholder(text, type_ or self.model.int_, place, made)
@@ -213,10 +210,10 @@ class Context:
 
     def literal(self, unit: Unit, start: int, text: str) -> Expression:
         """A constant with the place it is spelled at; a placeholder where it is no constant of C."""
-        key = (unit.path, start, text)
-        if key not in self._literals:
-            self._literals[key] = self._literal(unit, start, text)
-        return self._literals[key]
+        key = (start, text)
+        if key not in unit.literals:
+            unit.literals[key] = self._literal(unit, start, text)
+        return unit.literals[key]
 
     def _literal(self, unit: Unit, start: int, text: str) -> Expression:
         origin = unit.translation.origin(start)
@@ -267,8 +264,10 @@ def shown(location: Location) -> str:
     """An object as C text."""
     if location.root.kind == "pointee" and location.path:
         first, *rest = location.path
-        text = f"{location.root.name}->{first}" if isinstance(first, str) else (
-            f"{location.root.name}[{first}]"
+        text = (
+            f"{location.root.name}->{first}"
+            if isinstance(first, str)
+            else (f"{location.root.name}[{first}]")
         )
         return str(Location(type(location.root)("", text), tuple(rest)))
     return str(location)

@@ -43,7 +43,7 @@ from bitweight.firmware.syntax import (
     Stmt,
     Switch,
 )
-from bitweight.trace.contexts import Context, Declared
+from bitweight.trace.contexts import Context, Declared, Reading
 from bitweight.trace.initialisers import element_count
 from bitweight.trace.lowering import Frame, Lowering
 from bitweight.trace.memory import Address, Copy, Routine, State, Value, is_number
@@ -51,8 +51,16 @@ from bitweight.trace.memory import Address, Copy, Routine, State, Value, is_numb
 _TURNS_WITH_EXITS = 16
 """Turns of a loop that may leave it by a condition before the loop counts as unbounded."""
 _TABLE_READS = frozenset(
-    {"pgm_read_byte", "pgm_read_word", "pgm_read_dword", "pgm_read_float", "pgm_read_byte_near",
-     "pgm_read_word_near", "pgm_read_dword_near", "pgm_read_float_near"}
+    {
+        "pgm_read_byte",
+        "pgm_read_word",
+        "pgm_read_dword",
+        "pgm_read_float",
+        "pgm_read_byte_near",
+        "pgm_read_word_near",
+        "pgm_read_dword_near",
+        "pgm_read_float_near",
+    }
 )
 
 _NOWHERE = Node(start=0, end=0)
@@ -92,7 +100,10 @@ class Execution(Lowering):
     def bind(self, name: str, value: Value) -> None:
         """Give a name a value for what is evaluated next."""
         location = Location(Root("local", name, "given"))
-        self.frame.scopes[0][name] = (location, Arithmetic(type=self.as_number(value, _NOWHERE).type))
+        self.frame.scopes[0][name] = (
+            location,
+            Arithmetic(type=self.as_number(value, _NOWHERE).type),
+        )
         self.state.write(location, value)
 
     # --- statements ------------------------------------------------------------------------
@@ -163,7 +174,7 @@ class Execution(Lowering):
         if isinstance(type_, Callable_):
             return
         if isinstance(type_, Array) and type_.length is None and one.value is not None:
-            from_text = element_count(one.value)
+            from_text = element_count(one.value, self.subscript_in(self.unit))
             type_ = replace(type_, length=from_text)
         function = self.frame.function
         if "static" in storage and function is not None:
@@ -205,7 +216,9 @@ class Execution(Lowering):
         return self._fork(condition, then, other, node)
 
     def _fork(self, condition: Expression, then: Flow, other: Flow, node: Node) -> Flow:
-        exits = [replace(one, condition=self._and(condition, one.condition, node)) for one in then.exits]
+        exits = [
+            replace(one, condition=self._and(condition, one.condition, node)) for one in then.exits
+        ]
         if other.exits:
             opposite = building.unary(self.model, "!", condition, self.used(node))
             exits += [
@@ -250,7 +263,11 @@ class Execution(Lowering):
         return default
 
     def _either(
-        self, subject: Expression, cases: list[tuple[int, Case]], items: Sequence[Stmt], node: Switch
+        self,
+        subject: Expression,
+        cases: list[tuple[int, Case]],
+        items: Sequence[Stmt],
+        node: Switch,
     ) -> Flow:
         """A switch on a value that is not constant: each case is followed from the same state."""
         start = self.state
@@ -346,11 +363,15 @@ class Execution(Lowering):
         start = self.state.copy()
         events, near = len(self.events), self.near
         self._turn(node)
-        changed = [
-            location
-            for location, value in self.state.values.items()
-            if start.values.get(location) is not value
-        ] if self.state is not None else []
+        changed = (
+            [
+                location
+                for location, value in self.state.values.items()
+                if start.values.get(location) is not value
+            ]
+            if self.state is not None
+            else []
+        )
         del self.events[events:]
         self.near = near
         self.state = start.copy()
@@ -359,8 +380,9 @@ class Execution(Lowering):
             if location in start.values or location.root.kind != "local":
                 type_ = self.type_at(location)
                 number = type_.type if isinstance(type_, Arithmetic) else None
-                if isinstance(type_, Arithmetic) or is_number(start.values.get(location) or Copy(
-                        parts=(), source=location, type=type_)):
+                if isinstance(type_, Arithmetic) or is_number(
+                    start.values.get(location) or Copy(parts=(), source=location, type=type_)
+                ):
                     self.state.values[location] = self.context.unknown(
                         f"{location} changes from turn to turn of the loop at line {line}, "
                         "whose number of turns is not constant",
@@ -444,6 +466,30 @@ class Execution(Lowering):
         if function is None:
             return self._outside(routine.name, node, values, len(functions))
         return self._inside(function, node, values)
+
+    def note_registers(self, source: Reading, node: Expr) -> None:
+        """As below; a reading that is a call is followed for the registers it sets."""
+        if not self.context.registers:
+            return
+        if not isinstance(node, Call):
+            super().note_registers(source, node)
+            return
+        function = self._only_function(node)
+        if function is None or len(self.frames) > self.context.limits.call_depth:
+            return
+        before, stores = self.state.copy(), dict(self.stores)
+        events, near = len(self.events), self.near
+        values = [self.value(one) for one in node.arguments]
+        self.enter(function, values, node)
+        del self.events[events:]
+        super().note_registers(source, node)
+        self.state, self.stores, self.near = before, stores, near
+
+    def _only_function(self, node: Call) -> Function | None:
+        if not isinstance(node.function, Name):
+            return None
+        found = self.context.program.function(node.function.text, self.unit)
+        return found[0] if len(found) == 1 else None
 
     def _routine(self, node: Expr) -> Routine | None:
         if isinstance(node, Name) and self.frame.local(node.text) is None:
@@ -568,10 +614,18 @@ class Execution(Lowering):
         if isinstance(type_, Array):
             type_ = Pointer(to=type_.of)
         if isinstance(type_, Pointer) and isinstance(value, Address):
-            value = replace(value, type=type_.to) if not isinstance(
-                value.type, Record | Array) or isinstance(type_.to, Record) else value
-        location = Location(Root("local", one.name, f"{frame.function.name if frame.function else ''}"
-                                 f"#{frame.number}@{one.start}"))
+            value = (
+                replace(value, type=type_.to)
+                if not isinstance(value.type, Record | Array) or isinstance(type_.to, Record)
+                else value
+            )
+        location = Location(
+            Root(
+                "local",
+                one.name,
+                f"{frame.function.name if frame.function else ''}#{frame.number}@{one.start}",
+            )
+        )
         frame.scopes[0][one.name] = (location, type_)
         self.state.write(location, value)
         self.types[location] = type_
@@ -591,7 +645,8 @@ class Execution(Lowering):
         self.state = after if after is not None else self._steady()
         if lost:
             result = self.context.unknown(
-                f"{function.name}() jumps with goto, which is not followed", self.used(function.body)
+                f"{function.name}() jumps with goto, which is not followed",
+                self.used(function.body),
             )
         self._note_locals(frame, function)
         if is_number(result) and returns:
@@ -621,28 +676,27 @@ class Execution(Lowering):
                 path = str(Location(Root("", ""), location.path))
                 self.note("local", name + path, value, place)  # type: ignore[arg-type]
 
-    def _result(
-        self, function: Function, returns: list[Exit], falls: bool, frame: Frame
-    ) -> Value:
+    def _result(self, function: Function, returns: list[Exit], falls: bool, frame: Frame) -> Value:
         type_ = function.unit.type_of(function.syntax.type)
         declared = type_.returns if isinstance(type_, Callable_) else None
         result: Value | None = None
         if falls or not returns:
-            result = self.context.unknown(
-                f"{function.name}() returns nothing here", function.key
-            )
+            result = self.context.unknown(f"{function.name}() returns nothing here", function.key)
         for one in reversed(returns):
             value = one.value
             if value is None:
                 value = self.context.unknown(f"{function.name}() returns nothing", function.key)
             if isinstance(declared, Arithmetic) and is_number(value):
                 value = building.convert(
-                    value, declared.type, Purpose.RETURN, self.spelled(one.node.start)  # type: ignore[arg-type]
+                    value,
+                    declared.type,
+                    Purpose.RETURN,
+                    self.spelled(one.node.start),  # type: ignore[arg-type]
                 )
             if result is None or one.condition is None:
                 result = value
             else:
-                result = self.joined(one.condition, value, result, one.node)
+                result = self.joined(one.condition, value, result, one.node, merge=True)
         assert result is not None
         if isinstance(declared, Arithmetic) and is_number(result):
             return building.convert(result, declared.type, Purpose.RETURN, function.key)  # type: ignore[arg-type]

@@ -41,10 +41,12 @@ class RegisterField:
 class Family:
     """One family: bit names with their positions, types of registers and calls, register fields.
 
-    `document` is what it was written from.
+    `document` is what it was written from. A target of its `architecture` that names no family gets it.
     """
 
     name: str
+    aliases: tuple[str, ...]
+    architecture: str | None
     document: str
     names: Mapping[str, int]
     types: Mapping[str, str]
@@ -61,6 +63,8 @@ class _FieldData(msgspec.Struct, frozen=True, kw_only=True, forbid_unknown_field
 
 class _FamilyData(msgspec.Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
     document: str
+    aliases: tuple[str, ...] = ()
+    architecture: str | None = None
     names: dict[str, int] = {}
     types: dict[str, str] = {}
     field: list[_FieldData] = []
@@ -89,6 +93,8 @@ def family_from_text(name: str, text: str) -> Family:
         raise RuleError(f"family {name!r}: {error}") from error
     return Family(
         name=name,
+        aliases=data.aliases,
+        architecture=data.architecture,
         document=data.document,
         names=data.names,
         types=data.types,

@@ -3,20 +3,28 @@
 from collections.abc import Callable
 
 from bitweight.firmware.objects import Array, ObjectType, Record
-from bitweight.firmware.syntax import Braces, Expr, Number
+from bitweight.firmware.syntax import Braces, Expr
 
+Subscript = Callable[[Expr], int | None]
 Members = Callable[[Record], tuple[tuple[str, ObjectType], ...]]
 _DEPTH = 32
 
 
 def component(
-    value: Expr | None, path: tuple[str | int, ...], members: Members, type_: ObjectType
+    value: Expr | None,
+    path: tuple[str | int, ...],
+    type_: ObjectType,
+    members: Members,
+    subscript: Subscript,
 ) -> Expr | None:
-    """The expression that initialises the part at `path`; None where the text gives none."""
+    """The expression that initialises the part at `path`; None where the text gives none.
+
+    `members` lists a record's, `subscript` evaluates a designator.
+    """
     for step in path[:_DEPTH]:
         if not isinstance(value, Braces):
             return None
-        value = _entry(value, step, members, type_)
+        value = _entry(value, step, type_, members, subscript)
         type_ = _inner(type_, step, members)
     if isinstance(value, Braces) and value.type is None and len(value.entries) == 1:
         # C allows braces around a scalar.
@@ -27,7 +35,7 @@ def component(
 
 
 def _entry(
-    braces: Braces, step: str | int, members: Members, type_: ObjectType
+    braces: Braces, step: str | int, type_: ObjectType, members: Members, subscript: Subscript
 ) -> Expr | None:
     names = [name for name, _ in members(type_)] if isinstance(type_, Record) else []
     position = 0
@@ -39,7 +47,8 @@ def _entry(
                 position = names.index(first) if first in names else -1
                 here: str | int = first
             else:
-                position = _number(first)
+                found_at = subscript(first)
+                position = found_at if found_at is not None else -1
                 here = position
         else:
             here = names[position] if names and position < len(names) else position
@@ -57,21 +66,17 @@ def _inner(type_: ObjectType, step: str | int, members: Members) -> ObjectType:
     return type_
 
 
-def _number(node: Expr) -> int:
-    try:
-        return int(node.text, 0) if isinstance(node, Number) else -1
-    except ValueError:
-        return -1
-
-
-def element_count(value: Expr | None) -> int | None:
+def element_count(value: Expr | None, subscript: Subscript) -> int | None:
     """How many elements a braced list gives an array without a written size."""
     if not isinstance(value, Braces):
         return None
     position = highest = 0
     for entry in value.entries:
         if entry.designators and not isinstance(entry.designators[0], str):
-            position = _number(entry.designators[0])
+            found = subscript(entry.designators[0])
+            if found is None:
+                return None
+            position = found
         position += 1
         highest = max(highest, position)
     return highest

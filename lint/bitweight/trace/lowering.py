@@ -4,7 +4,7 @@ A C tree and a state enter; a value leaves, the state changed as C says. What is
 placeholder with its reason, so that the structure around it is kept.
 """
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 
 from bitweight.arithmetic import building
@@ -136,7 +136,9 @@ class Lowering:
         """Count one step of the run; raises `LimitReached` when it has taken too many."""
         self.steps -= 1
         if self.steps < 0:
-            raise LimitReached(f"the code is too long to follow ({self.context.limits.steps} steps)")
+            raise LimitReached(
+                f"the code is too long to follow ({self.context.limits.steps} steps)"
+            )
 
     # --- statements and calls, added below ----------------------------------------------------
 
@@ -209,7 +211,19 @@ class Lowering:
 
     def constant(self, node: Expr) -> int | float | None:
         """The constant an expression has here, without its side effects."""
-        if not isinstance(node, Name | Number | Pair | Operation | Cast | SizeOf | Member | Index | Conditional | Marked):
+        if not isinstance(
+            node,
+            Name
+            | Number
+            | Pair
+            | Operation
+            | Cast
+            | SizeOf
+            | Member
+            | Index
+            | Conditional
+            | Marked,
+        ):
             return None
         state, events = self.state.copy(), len(self.events)
         try:
@@ -288,15 +302,24 @@ class Lowering:
                 inner = self.plain_constant(node.operand)
                 if inner is None or node.operator not in ("-", "+", "~", "!"):
                     return None
-                return self._computed(lambda: building.unary(
-                    self.model, node.operator, _plain(inner, self.model), self.nowhere))
+                return self._computed(
+                    lambda: building.unary(
+                        self.model, node.operator, _plain(inner, self.model), self.nowhere
+                    )
+                )
             case Pair():
                 left, right = self.plain_constant(node.left), self.plain_constant(node.right)
                 if left is None or right is None or node.operator == ",":
                     return None
-                return self._computed(lambda: building.binary(
-                    self.model, node.operator, _plain(left, self.model),
-                    _plain(right, self.model), self.nowhere))
+                return self._computed(
+                    lambda: building.binary(
+                        self.model,
+                        node.operator,
+                        _plain(left, self.model),
+                        _plain(right, self.model),
+                        self.nowhere,
+                    )
+                )
             case _:
                 return None
 
@@ -328,16 +351,23 @@ class Lowering:
 
     def _code(self, source: Reading, type_: ObjectType | None, node: Expr) -> Code:
         declared = type_.type if isinstance(type_, Arithmetic) else source.type
-        for register in self.context.registers:
-            held = self.value(Name(start=node.start, end=node.start, text=register))
-            if is_number(held):
-                self.note("register", register, held, self.used(node), channels=source.channels)  # type: ignore[arg-type]
+        self.note_registers(source, node)
         return Code(
             channels=source.channels,
             text=source.pattern.text,
             type=declared,
             place=self.used(node),
         )
+
+    def note_registers(self, source: Reading, node: Expr) -> None:
+        """Record what the family's registers hold where this reading is taken."""
+        for register in self.context.registers:
+            name = Name(start=node.start, end=node.start, text=register)
+            found = self.lvalue(name)
+            held = self.value(name)
+            if is_number(held) and found is not None:
+                place = self.stores.get(found[0], (self.used(node), ""))[0]
+                self.note("register", register, held, place, channels=source.channels)  # type: ignore[arg-type]
 
     def _type_of(self, node: Expr) -> ObjectType | None:
         """The declared type of an expression that a pattern matched."""
@@ -429,7 +459,9 @@ class Lowering:
         """The type of an object with its array sizes filled in."""
         type_ = self.sized(variable.type, variable.syntax.type, variable.unit)
         if isinstance(type_, Array) and type_.length is None:
-            type_ = replace(type_, length=element_count(variable.value))
+            type_ = replace(
+                type_, length=element_count(variable.value, self.subscript_in(variable.unit))
+            )
         return type_
 
     def sized(self, type_: ObjectType, syntax: TypeSyntax, unit: Unit) -> ObjectType:
@@ -631,7 +663,11 @@ class Lowering:
         if location.path in self.context.in_progress.get(location.root, ()):
             return None
         expression = component(
-            declared.value, location.path, lambda record: self.field_names(record), declared.type
+            declared.value,
+            location.path,
+            declared.type,
+            self.field_names,
+            self.subscript_in(declared.unit),
         )
         if expression is None:
             return None
@@ -647,6 +683,15 @@ class Lowering:
         finally:
             self.frames.pop()
             progress.discard(location.path)
+
+    def subscript_in(self, unit: Unit) -> Callable[[Expr], int | None]:
+        """Evaluates the subscript of a designator as a unit means it."""
+
+        def subscript(node: Expr) -> int | None:
+            value = self.context.constant(self.elsewhere(unit, node))
+            return int(value) if value is not None else None
+
+        return subscript
 
     def field_names(self, record: Record) -> tuple[tuple[str, ObjectType], ...]:
         """Members of a record in order."""
@@ -704,8 +749,12 @@ class Lowering:
             if isinstance(fixed, int):
                 # A plain number keeps loop counters short.
                 after = building.convert(
-                    Literal(value=fixed + step, type=self.model.usual(number.type, self.model.int_)),
-                    number.type, Purpose.STORE, self.used(node),
+                    Literal(
+                        value=fixed + step, type=self.model.usual(number.type, self.model.int_)
+                    ),
+                    number.type,
+                    Purpose.STORE,
+                    self.used(node),
                 )
                 counted = self.context.constant(after)
                 after = Literal(value=counted if counted is not None else 0, type=number.type)
@@ -742,8 +791,10 @@ class Lowering:
         before = self.state.copy()
         second = self.number(node.right)
         if known is None and before.values != self.state.values:
-            condition = first if node.operator == "&&" else building.unary(
-                self.model, "!", first, self.used(node)
+            condition = (
+                first
+                if node.operator == "&&"
+                else building.unary(self.model, "!", first, self.used(node))
             )
             self.state = self.join(condition, self.state, before, node)
         return building.binary(self.model, node.operator, first, second, self.spelled(node.at))
@@ -768,8 +819,14 @@ class Lowering:
             old = self.read(*found, node) if found else self.unknown("an unknown object", node)
             new = self.value(node.value)
             if isinstance(old, Address):
-                pair = Pair(start=node.start, end=node.end, operator=node.operator[:-1],
-                            left=node.target, right=node.value, at=node.at)
+                pair = Pair(
+                    start=node.start,
+                    end=node.end,
+                    operator=node.operator[:-1],
+                    left=node.target,
+                    right=node.value,
+                    at=node.at,
+                )
                 value = self._pointer_pair(pair, old, new)
             else:
                 value = building.binary(
@@ -814,7 +871,7 @@ class Lowering:
             condition,
             then,
             other,
-            lambda cond, left, right, _: self.joined(cond, left, right, node),
+            lambda cond, left, right, _: self.joined(cond, left, right, node, merge=True),
             lambda location: self.before(location, node),
         )
 
@@ -839,12 +896,17 @@ class Lowering:
                 type_ = self.member_type(type_, str(step)) or Strange(name="")
         return type_
 
-    def joined(self, condition: Expression, then: Value, other: Value, node: Node) -> Value:
-        """One value or the other, by a condition."""
+    def joined(
+        self, condition: Expression, then: Value, other: Value, node: Node, merge: bool = False
+    ) -> Value:
+        """One value or the other, by a condition; with `merge` two values of one object."""
         if then is other or then == other:
             return then
         if is_number(then) and is_number(other):
-            return building.choose(self.model, condition, then, other, self.used(node))  # type: ignore[arg-type]
+            place = self.used(node)
+            if merge and then.type == other.type:  # type: ignore[union-attr]
+                return building.merge(condition, then, other, place)  # type: ignore[arg-type]
+            return building.choose(self.model, condition, then, other, place)  # type: ignore[arg-type]
         if isinstance(then, Copy) and isinstance(other, Copy):
             return replace(then, parts=self._joined_parts(condition, then, other, node))
         return self.unknown("which object is meant depends on what happens at run time", node)
@@ -864,7 +926,7 @@ class Lowering:
                 )
                 for side, copy in ((left, then), (right, other))
             ]
-            found.append((path, self.joined(condition, values[0], values[1], node)))
+            found.append((path, self.joined(condition, values[0], values[1], node, merge=True)))
         return tuple(found)
 
     def _cast(self, node: Cast) -> Value:
@@ -952,12 +1014,18 @@ class Lowering:
         if isinstance(type_, Record):
             members: list[tuple[str | int, ObjectType]] = list(self.field_names(type_))
         elif isinstance(type_, Array):
-            length = type_.length if type_.length is not None else element_count(node)
+            length = type_.length
+            if length is None:
+                length = element_count(node, self.subscript_in(self.unit))
             members = [(index, type_.of) for index in range(min(length or 0, 4096))]
         else:
             return []
         return [
-            (name, inner, component(node, (name,), self.field_names, type_))
+            (
+                name,
+                inner,
+                component(node, (name,), type_, self.field_names, self.subscript_in(self.unit)),
+            )
             for name, inner in members
         ]
 

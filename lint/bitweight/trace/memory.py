@@ -49,9 +49,7 @@ Value = Expression | Address | Routine | Copy
 
 def is_number(value: Value) -> bool:
     """Whether a value is an expression rather than a pointer or a struct."""
-    return isinstance(
-        value, Literal | Code | Unknown | Default | Convert | Unary | Binary | Choose
-    )
+    return isinstance(value, Literal | Code | Unknown | Default | Convert | Unary | Binary | Choose)
 
 
 @dataclass(slots=True)

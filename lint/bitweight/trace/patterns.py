@@ -7,7 +7,6 @@ import re
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
-from bitweight.firmware.parsing import Parser, snippet
 from bitweight.firmware.symbols import Function, Unit
 from bitweight.firmware.syntax import (
     Call,
@@ -63,11 +62,14 @@ def pattern(text: str, place: Place) -> Pattern:
     return Pattern(text=body.strip(), where=where.strip(), place=place)
 
 
+def excerpt(text: str, unit: Unit) -> Unit:
+    """The unit of a pattern: its text with the macros of `unit` expanded."""
+    return unit.excerpt(text.replace("$any", ANY).replace("$code", CODE).rstrip("; \t"))
+
+
 def parsed(text: str, unit: Unit) -> Expr | None:
     """The tree of a pattern with the macros of a unit expanded; None if it is no C expression."""
-    marked = text.replace("$any", ANY).replace("$code", CODE).rstrip("; \t")
-    expanded = unit.translation.expand_text(marked, len(unit.translation.text))
-    return Parser(snippet(expanded), is_type=unit.parser.is_type).expression()
+    return excerpt(text, unit).parser.expression()
 
 
 def head(tree: Expr) -> tuple[str, str]:
@@ -97,7 +99,9 @@ def matches(wanted: Expr, given: Expr, ours: Constant, theirs: Constant) -> bool
     `ours` evaluates constants of the pattern, `theirs` those of the expression where it stands.
     """
     wanted, given = _bare(wanted), _bare(given)
-    if isinstance(wanted, Name) and wanted.text in (ANY, CODE):
+    if isinstance(wanted, Name) and wanted.text == ANY:
+        return True
+    if _is_delivery(wanted):
         return True
     if _same_shape(wanted, given, ours, theirs):
         return True
@@ -158,10 +162,17 @@ def _bare(tree: Expr) -> Expr:
                 return tree
 
 
+def _is_delivery(wanted: Expr) -> bool:
+    """Whether a pattern's part is where the code arrives; any pointer may stand there."""
+    if isinstance(wanted, Operation) and wanted.operator == "&":
+        wanted = wanted.operand
+    return isinstance(wanted, Name) and wanted.text == CODE
+
+
 def delivered(wanted: Expr, given: Expr) -> Expr | None:
-    """The part of a matching expression that stands where the pattern has `$code`."""
+    """The part of a matching expression that stands where the pattern has `$code` or `&$code`."""
     wanted, given = _bare(wanted), _bare(given)
-    if isinstance(wanted, Name) and wanted.text == CODE:
+    if _is_delivery(wanted):
         return given
     match wanted, given:
         case Call(), Call():
@@ -184,7 +195,5 @@ def substituted(tree: Expr, name: str, by: Expr) -> Expr:
     if isinstance(tree, Name) and tree.text == name:
         return by
     if isinstance(tree, Call):
-        return replace(
-            tree, arguments=tuple(substituted(one, name, by) for one in tree.arguments)
-        )
+        return replace(tree, arguments=tuple(substituted(one, name, by) for one in tree.arguments))
     return tree

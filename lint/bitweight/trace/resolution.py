@@ -101,8 +101,10 @@ class Resolver:
                 return self._choice(node, memo)
             case Default() | Convert() | Unary() | Binary():
                 below = [memo[id(child)] for child in children(node)]
-                if all(len(some) == 1 and some[0] is child
-                       for some, child in zip(below, children(node), strict=True)):
+                if all(
+                    len(some) == 1 and some[0] is child
+                    for some, child in zip(below, children(node), strict=True)
+                ):
                     return (node,)
                 made = [self._rebuilt(node, parts) for parts in product(*below)]
                 return self._distinct(made, node)
@@ -140,7 +142,11 @@ class Resolver:
             known = self.context.constant(condition)
             if known is not None:
                 return then if known else other
-            if (condition,) == (node.condition,) and then == (node.then,) and other == (node.other,):
+            if (
+                (condition,) == (node.condition,)
+                and then == (node.then,)
+                and other == (node.other,)
+            ):
                 return (node,)
             made = [
                 replace(node, condition=condition, then=one, other=two)
@@ -155,9 +161,7 @@ class Resolver:
         carrying = tuple(one for one in others if self.measures(one))
         return self._distinct(carrying or others, node)
 
-    def _distinct(
-        self, ways: Iterable[Expression], node: Expression
-    ) -> tuple[Expression, ...]:
+    def _distinct(self, ways: Iterable[Expression], node: Expression) -> tuple[Expression, ...]:
         found: dict[str, Expression] = {}
         for one in ways:
             found.setdefault(structure(one), one)
@@ -248,9 +252,7 @@ class Resolver:
                 return (written[0],)
         if initial is not None:
             place = node.place
-            made = Default(
-                name=shown(location), operand=initial, type=initial.type, place=place
-            )
+            made = Default(name=shown(location), operand=initial, type=initial.type, place=place)
             return (made,) if written else (initial,)
         declared = self.context.declared(location, None)
         if written and None not in values:
@@ -273,14 +275,23 @@ class Resolver:
         if declared is None or declared.value is None:
             return None
         lowering = Execution(self.context, declared.unit, declared.function)
-        found = component(declared.value, location.path, lowering.field_names, declared.type)
+        found = component(
+            declared.value,
+            location.path,
+            declared.type,
+            lowering.field_names,
+            lowering.subscript_in(declared.unit),
+        )
         if found is None:
             return None
         value = lowering.value(found)
         if not is_number(value):
             return None
         made = building.convert(
-            named(value, shown(location), node.place), node.type, Purpose.STORE, node.place  # type: ignore[arg-type]
+            named(value, shown(location), node.place),
+            node.type,
+            Purpose.STORE,
+            node.place,  # type: ignore[arg-type]
         )
         return made if self.context.constant(made) is not None else None
 
@@ -302,9 +313,7 @@ class Resolver:
             rounds += 1
             one = pending.pop()
             values = self._values(one, location, node)
-            callers = (
-                self._callers(one) if any(self._waits_for(v, one) for v in values) else ()
-            )
+            callers = self._callers(one) if any(self._waits_for(v, one) for v in values) else ()
             if callers:
                 for caller in callers:
                     if caller.key not in seen:

@@ -4,7 +4,15 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from bitweight.errors import LimitReached
-from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, Pointer, Record, Root
+from bitweight.firmware.objects import (
+    Arithmetic,
+    Array,
+    Location,
+    ObjectType,
+    Pointer,
+    Record,
+    Root,
+)
 from bitweight.firmware.symbols import Function
 from bitweight.places import Place
 from bitweight.trace.contexts import Context

@@ -103,7 +103,9 @@ def _combined(operator: str, left: Bits, right: Bits) -> Bits:
             return Bits(both, (left.value ^ right.value) & both)
         case "<<" if right.known == _WORD and right.value < 64:
             low = (1 << right.value) - 1
-            return Bits((left.known << right.value | low) & _WORD, left.value << right.value & _WORD)
+            return Bits(
+                (left.known << right.value | low) & _WORD, left.value << right.value & _WORD
+            )
         case "+" if not (_WORD & ~(zeros[0] | zeros[1])):
             # No bit is set on both sides: nothing carries, + is |.
             return _combined("|", left, right)

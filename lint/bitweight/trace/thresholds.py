@@ -10,7 +10,7 @@ from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution
 from bitweight.trace.memory import is_number
-from bitweight.trace.patterns import Pattern, parsed
+from bitweight.trace.patterns import Pattern, excerpt
 from bitweight.trace.resolution import Resolver
 
 
@@ -86,11 +86,12 @@ def _threshold(context: Context, resolver: Resolver, aim: LimitAim) -> Threshold
 
 
 def _evaluated(context: Context, unit: Unit, pattern: Pattern) -> Expression | None:
-    tree = parsed(pattern.text, unit)
+    text = excerpt(pattern.text, unit)
+    tree = text.parser.expression()
     if tree is None:
         return None
     try:
-        value = Execution(context, unit).value(tree)
+        value = Execution(context, text).value(tree)
     except LimitReached:
         return None
     return value if is_number(value) else None  # type: ignore[return-value]

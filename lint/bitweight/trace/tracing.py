@@ -23,9 +23,8 @@ from bitweight.trace.ends import End, consumed, flow_ends, wanted_ends
 from bitweight.trace.execution import Execution
 from bitweight.trace.flows import Flows, Progress
 from bitweight.trace.formulas import formula
-from bitweight.trace.lowering import Frame
 from bitweight.trace.memory import is_number
-from bitweight.trace.patterns import CODE, Pattern, matches, parsed
+from bitweight.trace.patterns import CODE, Pattern, excerpt, matches, parsed
 from bitweight.trace.resolution import Resolver, structure
 from bitweight.trace.runs import Run, Runner
 
@@ -136,11 +135,11 @@ class Tracer:
             known = unit.translation.macros.at(len(unit.translation.text)).get(name)
             if known is None and name not in unit.functions:
                 continue
-            tree = parsed(value.text, unit)
+            text = excerpt(value.text, unit)
+            tree = text.parser.expression()
             if tree is None or (isinstance(tree, Name) and tree.text == name):
                 continue
-            execution = Execution(self.context, unit)
-            execution.frames[0] = Frame(unit, None, 0)
+            execution = Execution(self.context, text)
             if CODE in value.text.replace("$code", CODE):
                 first = aim.readings[0]
                 code = Code(channels=first.channels, text="code", type=first.type, place=aim.place)
@@ -236,9 +235,7 @@ class Tracer:
         kept = [
             (end, way)
             for end, way in last
-            if end.kind != "argument" or not any(
-                id(node) in roots for node in walk(end.value)
-            )
+            if end.kind != "argument" or not any(id(node) in roots for node in walk(end.value))
         ]
         scaled = [(end, way) for end, way in kept if not _is_bare(way)]
         return scaled or kept
@@ -328,4 +325,3 @@ def _steps(nodes: list[Expression], end: End) -> tuple[Step, ...]:
     found.setdefault(end.place, f"the result: {end.result}")
     steps = [Step(place=place, message=message) for place, message in found.items()]
     return tuple(steps[:_MOST_STEPS])
-

@@ -387,12 +387,10 @@ def test_a_board_error_prints_one_line_a_mistake() -> None:
     """The text of the error is in the form file:line:column: error: message."""
     text = "[channel.a]\nx=1\n[converter.b]\nbits=0\n[reference.r]\nvoltage='1 V'"
     with pytest.raises(BoardError) as caught:
-        board_from_text(
-            "[channel.a]\nx=1\n[converter.b]\nbits=0\n[reference.r]\nvoltage='1 V'", file="b"
-        )
+        board_from_text(text, file="b")
     assert str(caught.value).split("\n") == [
-        "b:2:1: error: unknown key 'x' in [channel.a]; known keys: allowed_error, chain, converter, "
-        "firmware, hazard, input, input_minus, like, limit, nominal, pin, pin_limit, range, "
-        "sample_rate, unit",
+        "b:2:1: error: unknown key 'x' in [channel.a]; known keys: allowed_error, chain, "
+        "converter, firmware, hazard, input, input_minus, like, limit, nominal, pin, pin_limit, "
+        "range, sample_rate, unit",
         "b:4:6: error: bits: expected a whole number from 1 to 32, found 0",
     ]

@@ -1,0 +1,27 @@
+"""Rule `justification`: a left-justified result is read as right-justified, or the reverse."""
+
+from collections.abc import Iterator
+
+from bitweight.judge.cases import Case, Facts
+from bitweight.judge.corrections import constant_findings
+from bitweight.judge.explanations import WrongConstant
+from bitweight.judge.findings import Finding
+from bitweight.judge.rules import ChannelRule
+
+
+def check(case: Case, facts: Facts) -> Iterator[Finding]:
+    """One finding where the code is taken to stand elsewhere in its word."""
+    return constant_findings(case, RULE.name, _say)
+
+
+def _say(wrong: WrongConstant) -> str:
+    return f"{wrong.text} misplaces the code in its word: {wrong.found}, not {wrong.expected}"
+
+
+RULE = ChannelRule(
+    name="justification",
+    summary="A left-justified result is read as a right-justified one, or the reverse.",
+    formula=("gain of the code / gain of the board = 2**n or 2**-n, n the bits below the code"),
+    source="data sheets (left- and right-adjusted result registers); common practice",
+    check=check,
+)

@@ -1,0 +1,29 @@
+"""Rule `reference-value`: the reference voltage in the code is not the board's."""
+
+from collections.abc import Iterator
+
+from bitweight.judge.cases import Case, Facts
+from bitweight.judge.corrections import constant_findings
+from bitweight.judge.explanations import WrongConstant
+from bitweight.judge.findings import Finding
+from bitweight.judge.rules import ChannelRule
+
+
+def check(case: Case, facts: Facts) -> Iterator[Finding]:
+    """One finding for each reference voltage that is not the board's."""
+    return constant_findings(case, RULE.name, _say)
+
+
+def _say(wrong: WrongConstant) -> str:
+    return f"{wrong.text} is {wrong.found}, but the board has {wrong.expected} as {wrong.role}"
+
+
+RULE = ChannelRule(
+    name="reference-value",
+    summary="The reference voltage in the code is not the board's.",
+    formula=(
+        "q(c) = c * reference * reference_gain / (full_scale_count * input_gain), through the chain"
+    ),
+    source="IEEE 1241 (transfer of an ideal converter); the converter's data sheet",
+    check=check,
+)
