@@ -33,7 +33,7 @@ def test_no_colour(monkeypatch: pytest.MonkeyPatch) -> None:
     text = shown(monkeypatch)
     assert not any(f"\x1b[3{colour}" in text for colour in range(8))
     assert "mismatched" in text
-    assert "to settle" in text
+    assert "untraced" in text
 
 
 def test_colour(monkeypatch: pytest.MonkeyPatch) -> None:

@@ -71,7 +71,7 @@ def test_logical_text_keeps_length_lines_and_characters(text: str) -> None:
                 assert text[found.source(offset)] == character
 
 
-TEXT = "int a; // first\n/* doc\n * more */ int b; /* in mV */ // twice\nint c;\n\"// no\";"
+TEXT = 'int a; // first\n/* doc\n * more */ int b; /* in mV */ // twice\nint c;\n"// no";'
 
 
 @pytest.mark.parametrize(

@@ -49,5 +49,7 @@ def test_builtin_macros_say_where_they_are_used(source: str, text: str) -> None:
 
 def test_a_use_may_reach_over_directives() -> None:
     """Arguments may hold conditionals; directives behind a bare name end the search for `(`."""
-    source = "#define F(x, y) [x|y]\nF(1\n#if 0\n+2\n#else\n+3\n#endif\n, 4)\nF\n#define Z\n(1, 2)\n"
+    source = (
+        "#define F(x, y) [x|y]\nF(1\n#if 0\n+2\n#else\n+3\n#endif\n, 4)\nF\n#define Z\n(1, 2)\n"
+    )
     assert words_of(unit_of(source).text) == "[1 +3|4] F (1, 2)"

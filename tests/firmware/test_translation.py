@@ -117,7 +117,15 @@ def test_the_units_own_file_keeps_its_offsets() -> None:
 
 
 WORDS = ["A", "B", "F(", "G(", ")", ",", "x", "1", "'", '"', "\\\n", "\n", " ", "/*", "*/", "//"]
-LINES = ["\n#define A ", "\n#define F(x) ", "\n#define G(x, ...) ", "\n#if ", "\n#else\n", "#", "##"]
+LINES = [
+    "\n#define A ",
+    "\n#define F(x) ",
+    "\n#define G(x, ...) ",
+    "\n#if ",
+    "\n#else\n",
+    "#",
+    "##",
+]
 MORE = ["\n#endif\n", "\n#ifdef A\n", '\n#include "main.c"\n', "\n#undef F\n", "__VA_ARGS__", "é"]
 SCRAPS = st.lists(st.sampled_from(WORDS + LINES + MORE), max_size=40).map("".join)
 SMALL = Limits(unit_bytes=40_000, macro_tokens=500, include_depth=20, macro_depth=20)

@@ -11,6 +11,8 @@ from bitweight.report.texts import shown, wrapped
 
 _WIDTH = 80
 
+_HAZARD = "a channel with a hazard raises note to warning and warning to error"
+
 
 def run_why(options: WhyOptions) -> int:
     """Prints one rule, or all with their summaries; exit status 0.
@@ -36,7 +38,7 @@ def explanation(rule: Rule) -> str:
         ("rule", rule.name),
         ("checks", rule.summary),
         ("formula", rule.formula),
-        ("level", rule.levels),
+        ("level", f"{rule.levels}; {_HAZARD}"),
         ("source", rule.source),
     )
     return "".join(_entry(label, text, 10) for label, text in parts)

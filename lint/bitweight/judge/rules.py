@@ -13,7 +13,7 @@ GROUP = "bitweight.rules"
 
 BY_EFFECT = (
     "error where its effect alone leaves the allowed error, warning where it stays inside, "
-    "note where no code changes; a channel with a hazard raises it by one"
+    "note where no code changes"
 )
 """How a rule's level follows from the reading, unless the rule says otherwise."""
 

@@ -204,7 +204,7 @@ def _points(judgement: Judgement, width: int) -> Iterator[Text]:
     unit, points = judgement.ideal.channel.unit.text, judgement.points
     if not points:
         return
-    resolution = judgement.lsb / 10
+    resolution = judgement.lsb / 3
     sides = figures(
         [*(point.hardware for point in points), *(point.firmware for point in points)],
         unit,
@@ -237,12 +237,13 @@ def _outside(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterat
 def _closing(outcome: Outcome, width: int) -> Iterator[Text]:
     if any(finding.hazard for finding in outcome.findings):
         yield from entry("caution", CAUTION, width)
-    open_ones = [
-        f"{case.channel.name} ({status.value})"
-        for case in outcome.facts.cases
-        if (status := outcome.statuses[case.channel.name]) is not Status.VERIFIED
-    ]
-    if open_ones:
-        yield from entry("to settle", ", ".join(open_ones), width)
+    for status in (Status.MISMATCHED, Status.UNTRACED):
+        names = [
+            case.channel.name
+            for case in outcome.facts.cases
+            if outcome.statuses[case.channel.name] is status
+        ]
+        if names:
+            yield from entry(status.value, ", ".join(names), width, style=BOLD)
     for line in wrapped(closing(outcome.counts, accepted(outcome.findings)), width):
         yield Text(line, style=BOLD)

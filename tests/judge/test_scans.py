@@ -1,0 +1,43 @@
+"""Converters of 24 bits: every code is looked at."""
+
+import facts
+from facts import C
+
+from bitweight.board.hardware import Channel
+
+
+def _wide(**changes: object) -> Channel:
+    return facts.channel(
+        converter=facts.converter(20, **changes), count="uV", allowed="1 mV", ends=("0 V", "5 V")
+    )
+
+
+def test_clean_conversion() -> None:
+    """A right conversion of 20 bits is right at every code."""
+    c = C()
+    scaled = c.op(c.op(c.code("uint32_t"), "*", "5000000ULL"), "/", "1048576")
+    judgement = facts.case(scaled, of=_wide()).judgement
+    assert judgement is not None
+    assert judgement.worst_ratio < 1
+    assert judgement.operations == ()
+
+
+def test_single_wrong_code_is_found() -> None:
+    """One wrong code off the grid is the worst."""
+    c = C()
+    code = c.code("uint32_t")
+    scaled = c.op(c.op(code, "*", "5000000ULL"), "/", "1048576")
+    spoiled = c.choose(c.op(code, "==", "500002"), "0ULL", scaled)
+    judgement = facts.case(spoiled, of=_wide()).judgement
+    assert judgement is not None
+    assert int(judgement.codes[judgement.worst_index]) == 500002
+
+
+def test_first_overflow_is_exact() -> None:
+    """The first code that overflows is that code, not the next of a grid."""
+    c = C()
+    scaled = c.op(c.op(c.code("uint32_t"), "*", "5000UL"), "/", "1049")
+    judgement = facts.case(scaled, of=_wide()).judgement
+    assert judgement is not None
+    (wrong,) = judgement.operations
+    assert int(judgement.codes[wrong.index]) == (1 << 32) // 5000 + 1
