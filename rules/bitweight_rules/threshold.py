@@ -56,7 +56,7 @@ def _judged(case: Case, facts: Facts, limit: Limit, threshold: Threshold) -> Fin
     count = (wanted - scale.zero) / scale.weight
     level = _level(
         stands_off=abs(held * scale.weight + scale.zero - wanted)
-        > _allowed(facts, side, scale, wanted),
+        > _allowed(case, facts, side, wanted),
         nearest=_is_nearest(threshold, held - count, whole=scale.whole),
     )
     return None if level is None else _finding(case.channel, limit, threshold, scale, level)
@@ -96,12 +96,12 @@ def _of_result(judgement: Judgement) -> _Scale:
     )
 
 
-def _allowed(facts: Facts, side: Ideal, scale: _Scale, wanted: Fraction) -> float:
-    """The allowed error at the quantity, in the channel's unit."""
+def _allowed(case: Case, facts: Facts, side: Ideal, wanted: Fraction) -> float:
+    """The channel's allowed error at the quantity, in its unit."""
     converter = side.channel.converter
     code = min(max(round(side.code_of(wanted)), converter.code_low), converter.code_high)
     given = allowance(side, np.array([code], dtype=np.int64), facts.board.coverage)
-    return float(given.at_step(float(abs(scale.weight)) if scale.whole else 0.0)[0])
+    return float(given.at_step(case.judgement.step if case.judgement is not None else 0.0)[0])
 
 
 def _finding(

@@ -14,7 +14,7 @@ OUTLINE = Outline(FILE)
 
 def test_copied_text_keeps_its_places() -> None:
     """Runs that follow each other are one, and each character has its own place."""
-    pieces = Pieces()
+    pieces = Pieces(1000)
     pieces.copy(OUTLINE, 0, 4)
     pieces.copy(OUTLINE, 4, 12, blank=True)
     pieces.copy(OUTLINE, 12, len(FILE.text))
@@ -25,7 +25,7 @@ def test_copied_text_keeps_its_places() -> None:
 
 def test_tokens_that_would_join_are_kept_apart() -> None:
     """A space is put between tokens only where it is needed or was written."""
-    pieces = Pieces()
+    pieces = Pieces(1000)
     pieces.copy(OUTLINE, 16, 17)
     pieces.expansion([*tokens_of(OUTLINE, 16, 18), *tokens_of(OUTLINE, 0, 3)])
     pieces.copy(OUTLINE, 12, 15)
@@ -34,7 +34,7 @@ def test_tokens_that_would_join_are_kept_apart() -> None:
 
 def test_an_expansion_spans_its_tokens() -> None:
     """Marks become ranges; one that never closes ends with the text."""
-    pieces = Pieces()
+    pieces = Pieces(1000)
     use = Use("M", FILE, 12, None)
     number = Token(Kind.NUMBER, "3", FILE, 17, True, use)
     pieces.expansion(
@@ -56,4 +56,4 @@ def test_an_expansion_spans_its_tokens() -> None:
 def test_empty_text_has_no_origin() -> None:
     """There is no offset to ask for."""
     with pytest.raises(IndexError):
-        Pieces().origin(0)
+        Pieces(1000).origin(0)

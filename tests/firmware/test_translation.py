@@ -106,6 +106,13 @@ def test_text_from_outside_is_expanded_as_if_it_stood_there() -> None:
     assert unit.expand_text(pattern, unit.text.index("b")) == "adc_buf[3] + $any @ ADC1"
 
 
+def test_an_excerpt_is_read_with_the_last_definitions() -> None:
+    """Text from outside becomes a unit of its own, as if it stood behind everything else."""
+    unit = unit_of("#define CH 2\na\n#undef CH\n#define CH 3\nb\n").excerpt("read(CH)")
+    assert unit.text == "read(3)"
+    assert unit.origin(unit.text.index("3")).names == ("CH",)
+
+
 def test_the_units_own_file_keeps_its_offsets() -> None:
     """Without macro uses the text is as long as the file, and every line stands where it stood."""
     text = "#if 0\nit's {{ odd\r\n#else\nint a; // b\r\n#endif\n#define A\\\n 1\nint c;\n"
@@ -164,7 +171,7 @@ def test_every_token_is_spelled_where_its_origin_says(text: str) -> None:
         ("#endif\n", "#endif without #if"),
         ("#error wrong   board\n", "#error is active: wrong board"),
         ("#define 1\n", "this #define is malformed"),
-        ("#define F(x) x\nF(1\n", "the arguments of F have no end"),
+        ("#define F(x) x\nF(1\n", "the arguments of F have no end within 500 tokens"),
         ("#define F(x) x\nF(1, 2)\n", "F is used with 2 arguments"),
         ("#define P(a, b) a ## b\nP(+, /)\n", "+ and / do not paste to one token"),
         ("#if 1 / 0\n#endif\n", "a condition divides by zero"),
@@ -194,6 +201,14 @@ def test_hostile_nesting_ends(text: str) -> None:
     """Nesting without bound neither fails nor takes time that grows with its square."""
     unit = unit_of(f"#define F(x) x\n#define G(x) F(x) F(x)\n{text}\n")
     assert unit.text
+
+
+def test_tokens_that_double_are_bounded() -> None:
+    """Pasting a token to itself a hundred times over fills no memory."""
+    lines = ["#define PASTE(a, b) a ## b", "#define TWICE(a) PASTE(a, a)", "#define A0 x"]
+    lines += [f"#define A{number + 1} TWICE(A{number})" for number in range(100)]
+    unit = unit_of("\n".join([*lines, "A58"]), limits=SMALL)
+    assert len(unit.text) < 100_000
 
 
 def test_arguments_that_nest_too_deep_are_named() -> None:

@@ -2,10 +2,10 @@
 
 from fractions import Fraction
 
-import facts
 import numpy as np
 import pytest
 
+import facts
 from bitweight.board.chains import ideal
 from bitweight.board.hardware import Channel
 from bitweight.judge.allowances import Allowance, allowance

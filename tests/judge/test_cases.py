@@ -1,13 +1,13 @@
 """A channel's case: judged, or the reason why not."""
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.board.hardware import Channel
 from bitweight.board.stages import Side, Thermistor
 from bitweight.judge.cases import Case, reads_another
 from bitweight.trace.conversions import Trace
+from facts import C
 
 
 def _thermistor() -> Thermistor:

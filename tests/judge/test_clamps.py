@@ -1,10 +1,10 @@
 """Limits in the code that cut the reading off inside the range."""
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.judge.clamps import Clamp
+from facts import C
 
 
 def _clamps(top: str, ends: tuple[str, str] = ("0 V", "5 V")) -> tuple[Clamp, ...]:

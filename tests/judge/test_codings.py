@@ -2,13 +2,13 @@
 
 from typing import Any
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.expressions import Expression
 from bitweight.board.converters import Coding
 from bitweight.judge.cases import Judgement
+from facts import C
 
 CODINGS = list(Coding)
 

@@ -4,10 +4,10 @@ from datetime import date
 from typing import Any
 
 import pytest
-from facts import HEADER, at, deviation, finding
 
 from bitweight.judge.deviations import Remark, apply_deviations, remarks_in
 from bitweight.judge.findings import Finding
+from facts import HEADER, at, deviation, finding
 
 TODAY = date(2026, 12, 1)
 

@@ -1,12 +1,12 @@
 """Where a reading ends more than once."""
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.expressions import Expression
 from bitweight.board.hardware import Channel
 from bitweight.judge.cases import Case
+from facts import C
 
 
 def _open_end(**changes: object) -> Channel:

@@ -2,13 +2,13 @@
 
 from fractions import Fraction
 
-import facts
 import numpy as np
 import pytest
-from facts import C
 
+import facts
 from bitweight.board.converters import Coding
 from bitweight.judge.evaluations import code_grid, presented, reader, steady_words
+from facts import C
 
 
 def _words(converter_bits: int, codes: list[int], gain: int = 1) -> list[list[int]]:

@@ -2,14 +2,14 @@
 
 from fractions import Fraction
 
-import facts
 import numpy as np
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.expressions import Expression, Unknown
 from bitweight.board.hardware import Channel
 from bitweight.judge.cases import Judgement
+from facts import C
 
 
 def _judged(expression: Expression, of: Channel | None = None) -> Judgement:
@@ -99,7 +99,7 @@ def test_clamped_line_is_a_line() -> None:
 
 
 def test_other_readings_stand_still() -> None:
-    """A second channel's reading inside stands at its nominal code: a ratio to the supply is judged."""
+    """A ratio to the supply is judged with the supply's reading at its nominal code."""
     supply = facts.channel("supply", nominal=facts.parse_quantity("2.5 V"))
     c = C()
     ratio = c.op(c.op(c.code(), "*", "2500"), "/", c.code("uint16_t", "supply"))

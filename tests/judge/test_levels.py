@@ -1,8 +1,8 @@
 """Hazards, and the level that a loss earns."""
 
-import facts
 import pytest
 
+import facts
 from bitweight.judge.findings import Level
 from bitweight.judge.levels import stated_or_warning, with_hazards
 

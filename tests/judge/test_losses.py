@@ -1,12 +1,12 @@
 """Resolution thrown away before it is needed."""
 
-import facts
 import pytest
-from facts import C
 
-from bitweight.board.hardware import Channel
+import facts
 from bitweight.arithmetic.expressions import Expression
+from bitweight.board.hardware import Channel
 from bitweight.judge.losses import Loss
+from facts import C
 
 
 def _loss(expression: Expression, of: Channel | None = None) -> Loss | None:

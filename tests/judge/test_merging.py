@@ -1,10 +1,9 @@
 """Findings of one cause become one, and all get their order."""
 
 import facts
-from facts import at, finding
-
 from bitweight.judge.findings import Level, Related, Replacement
 from bitweight.judge.merging import merge, ordered
+from facts import at, finding
 
 ORDER = ["battery", "tank", "pump"]
 

@@ -1,14 +1,14 @@
 """The operators that go wrong for some code, each cause once."""
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.expressions import Expression
 from bitweight.arithmetic.types import DataModel
 from bitweight.arithmetic.values import FaultKind
 from bitweight.board.hardware import Channel
 from bitweight.judge.operations import WrongOperation
+from facts import C
 
 
 def _found(

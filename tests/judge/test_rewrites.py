@@ -1,14 +1,14 @@
 """The same expression in other types."""
 
-import facts
 import numpy as np
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.evaluation import evaluate
 from bitweight.arithmetic.expressions import Binary, Choose, Expression, Literal, walk
 from bitweight.arithmetic.types import DataModel
 from bitweight.judge.rewrites import chosen, realised, retyped, widened
+from facts import C
 
 
 def _at(expression: Expression, word: int) -> float:

@@ -1,16 +1,16 @@
-"""Which constants of a conversion are wrong, at several magnitudes and in several ways to write C."""
+"""Which constants of a conversion are wrong, at several magnitudes and in several styles."""
 
 from dataclasses import replace
 from fractions import Fraction
 
 import pytest
-from operands import HOST, Board, Operand, const, fact, number, question, raw, stored
 
 from bitweight.arithmetic.building import binary, choose
 from bitweight.board.converters import Coding
 from bitweight.board.facts import Role
 from bitweight.judge.findings import Level
 from bitweight.judge.roles import Explanation, StatedRole, explain
+from operands import HOST, Board, Operand, const, fact, number, question, raw, stored
 
 MILLI = Fraction(1, 1000)
 TEN_BITS = Board()
@@ -433,7 +433,7 @@ def test_the_one_unexplained_constant_is_offered_its_right_value() -> None:
 
 
 def test_levels_follow_from_the_own_effect() -> None:
-    """With both constants mended but one, the reference leaves the allowed error, F - 1 does not."""
+    """Each alone, the reference leaves the allowed error and F - 1 does not."""
     wrong = explain(question(TEN_BITS, scaled("4900UL", "1023"))).wrong
     levels = {one.rule: one.level for one in wrong}
     assert levels == {"reference-value": Level.ERROR, "full-scale": Level.WARNING}

@@ -4,12 +4,12 @@ from fractions import Fraction
 
 from hypothesis import HealthCheck, assume, given, settings
 from hypothesis import strategies as st
-from operands import Board, Operand, const, fact, number, question, raw
 
 from bitweight.board.facts import Role
 from bitweight.judge.roles import explain
+from operands import Board, Operand, const, fact, number, question, raw
 
-QUIET = settings(max_examples=300, deadline=None, suppress_health_check=[HealthCheck.too_slow])
+QUIET = settings(max_examples=30, deadline=None, suppress_health_check=[HealthCheck.too_slow])
 MILLI = Fraction(1, 1000)
 
 millivolts = st.sampled_from([1100, 1250, 2048, 2500, 2560, 3000, 3300, 4096, 5000, 5120])

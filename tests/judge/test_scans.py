@@ -1,9 +1,8 @@
 """Converters of 24 bits: every code is looked at."""
 
 import facts
-from facts import C
-
 from bitweight.board.hardware import Channel
+from facts import C
 
 
 def _wide(**changes: object) -> Channel:

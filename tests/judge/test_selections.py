@@ -3,11 +3,10 @@
 from typing import Any
 
 import facts
-from facts import at
-
 from bitweight.judge.selections import contradicting, selections
 from bitweight.trace.conversions import Trace
 from bitweight.trace.settings import Setting
+from facts import at
 
 CASE = facts.case(traced=Trace(channel="tank"))
 

@@ -2,12 +2,12 @@
 
 from fractions import Fraction
 
-import facts
 import pytest
-from facts import C, at
 
+import facts
 from bitweight.arithmetic.expressions import Literal, Unknown
 from bitweight.judge.statements import edit, first_leaf, listed, place_of, quantity, uses, volts
+from facts import C, at
 
 
 @pytest.mark.parametrize(("names", "text"), [("a", "a"), ("ab", "a and b"), ("abc", "a, b and c")])

@@ -2,14 +2,14 @@
 
 from datetime import date
 
-import facts
 import pytest
-from facts import C, finding
 
+import facts
 from bitweight.judge.cases import Status
 from bitweight.judge.findings import Level
 from bitweight.judge.statuses import counts, reasons_of, settle, statuses_of
 from bitweight.trace.conversions import Trace
+from facts import C, finding
 
 TODAY = date(2026, 12, 1)
 TRACED = facts.case(C().op(C().op(C().code(), "*", "5000"), "/", "1024"))
@@ -63,7 +63,7 @@ def test_settle() -> None:
     found = [finding(), finding(channels=("pump",)), finding("sign")]
     settled = settle(found, run, (), TODAY)
     assert [(one.rule, one.channels, one.level, one.hazard, one.deviation) for one in settled] == [
-        ("full-scale", ("tank",), Level.ERROR, "the tank overflows", None),
         ("full-scale", ("pump",), Level.WARNING, None, "a spare input"),
+        ("full-scale", ("tank",), Level.ERROR, "the tank overflows", None),
         ("sign", ("tank",), Level.ERROR, "the tank overflows", None),
     ]

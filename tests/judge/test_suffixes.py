@@ -1,10 +1,10 @@
 """The suffix that mends an overflow."""
 
-import facts
 import pytest
-from facts import C
 
+import facts
 from bitweight.arithmetic.types import DataModel
+from facts import C
 
 CASES = [
     ("uint16_t", "5000", facts.AVR, "5000UL"),
@@ -45,4 +45,5 @@ def test_no_constant_no_suffix() -> None:
     code = c.code()
     judgement = facts.case(c.op(c.op(code, "*", code), "/", code), model=facts.AVR).judgement
     assert judgement is not None
-    assert [one.suffix for one in judgement.operations if not one.at_end][0] is None
+    on_the_way = [one for one in judgement.operations if not one.at_end]
+    assert [one.suffix for one in on_the_way] == [None]

@@ -2,9 +2,9 @@
 
 from fractions import Fraction
 
-import facts
 import pytest
 
+import facts
 from bitweight.judge.units import result_unit, unit_in_name
 from bitweight.units import parse_unit
 

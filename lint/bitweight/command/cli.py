@@ -12,11 +12,14 @@ from bitweight.command.options import (
     parse_options,
 )
 from bitweight.command.outputs import complain, say
-from bitweight.errors import BitweightError, BoardError
+from bitweight.errors import BitweightError, BoardError, SourceError
 from bitweight.version import VERSION
 
 FAILED = 2
 """Exit status of a run that could not be done (as of POSIX diff and grep)."""
+
+INTERRUPTED = 128 + signal.SIGINT
+"""Exit status after an interrupt, as shells show it."""
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
@@ -26,10 +29,12 @@ def main(arguments: Sequence[str] | None = None) -> int:
     except SystemExit as leave:  # argparse, after --help
         return leave.code if isinstance(leave.code, int) else 0
     except KeyboardInterrupt:
-        return 128 + signal.SIGINT
+        return INTERRUPTED
     except BoardError as error:
         for mistake in error.mistakes:
             complain(str(mistake))
+    except SourceError as error:
+        complain(str(error))
     except BitweightError as error:
         complain(f"bitweight: error: {error}")
     except OSError as error:
@@ -37,6 +42,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
     except MemoryError:
         complain("bitweight: error: out of memory")
     except Exception as error:
+        if _interrupted(error):
+            return INTERRUPTED
         complain(f"bitweight: internal error: {type(error).__name__}: {error}; please report")
     return FAILED
 
@@ -55,6 +62,14 @@ def _run(options: Options) -> int:
             from bitweight.command.why import run_why
 
             return run_why(options)
+
+
+def _interrupted(error: BaseException) -> bool:
+    """Whether the error arose while an interrupt was unwinding the program."""
+    context = error.__context__
+    while context is not None and not isinstance(context, KeyboardInterrupt):
+        context = context.__context__
+    return context is not None
 
 
 def _words(error: OSError) -> str:

@@ -18,7 +18,7 @@ _NAME = Kind.NAME
 _LEAVE = Kind.LEAVE
 _ARGUMENT_DEPTH = 60
 """Arguments within arguments that are expanded; seven Python frames each."""
-_WORK = 16
+_WORK = 64
 """Characters of a unit's bound that one expanded token is charged for."""
 _RETRIES = 16
 """Argument lists without an end that are read again for what else they hold."""
@@ -109,7 +109,8 @@ class Expander:
 
     def argument(self, tokens: list[Token]) -> list[Token]:
         """Tokens in the operand of a conditional's operator, expanded."""
-        return self.expand_argument(Argument(tokens))
+        found = self.expand_argument(Argument(tokens))
+        return [token for token in found if token.kind not in MARKS]
 
     def _all(self, tokens: list[Token], following: Following = NOTHING) -> list[Token]:
         self._spent = 0
@@ -219,7 +220,8 @@ class Expander:
         taken: list[Token] = []
         lists = self._listed(macro, stack, following, out, taken)
         if lists is None:
-            self.note(name, f"the arguments of {name.text} have no end")
+            most = self._limits.macro_tokens
+            self.note(name, f"the arguments of {name.text} have no end within {most} tokens")
             self._retries -= 1
             if self._retries < 0:
                 taken = [token._replace(painted=True) for token in taken]

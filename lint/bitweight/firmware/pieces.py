@@ -30,7 +30,9 @@ class Expanded(NamedTuple):
 class Pieces:
     """Text under construction, then its origins."""
 
-    def __init__(self) -> None:
+    def __init__(self, most: int) -> None:
+        """`most` is the length in characters from which on nothing more is expanded."""
+        self._most = most
         self._texts: list[str] = []
         self._starts: list[int] = []
         self._origins: list[_Copied | Token] = []
@@ -66,6 +68,8 @@ class Pieces:
         opened: dict[int, int] = {}
         waiting: list[int] = []
         for token in tokens:
+            if self.length > self._most:
+                break
             if token.kind is Kind.OPEN:
                 waiting.append(token.offset)
             elif token.kind is Kind.CLOSE:

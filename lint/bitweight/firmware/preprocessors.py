@@ -35,7 +35,7 @@ class Preprocessor:
     """Preprocesses one unit; afterwards its parts hold what was found."""
 
     def __init__(self, tree: SourceTree, limits: Limits) -> None:
-        self.pieces = Pieces()
+        self.pieces = Pieces(limits.unit_bytes)
         self.remarks = Remarks()
         self.changes: list[tuple[int, Mapping[str, Macro | None]]] = []
         self._macros: dict[str, Macro] = {}

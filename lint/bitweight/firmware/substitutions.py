@@ -12,7 +12,7 @@ from bitweight.firmware.tokens import MARKS, Kind, Token, Use, kind_of, spelled
 
 _NAME = Kind.NAME
 _EMPTY = Kind.EMPTY
-_LONGEST = 1 << 16
+_LONGEST = 1 << 14
 """Characters of a token made by `#` or `##`; C11 5.2.4.1 asks for 4095."""
 
 

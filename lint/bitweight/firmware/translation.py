@@ -13,7 +13,7 @@ from typing import NamedTuple
 from bitweight.firmware.expansions import Entered, Expander
 from bitweight.firmware.extensions import EXTENSIONS
 from bitweight.firmware.files import SourceFile, SourceTree
-from bitweight.firmware.macros import Macro, MacroTable
+from bitweight.firmware.macros import Macro, MacrosInForce, MacroTable
 from bitweight.firmware.outlines import Outline
 from bitweight.firmware.pieces import Expanded, Pieces
 from bitweight.firmware.preprocessors import Preprocessor
@@ -70,22 +70,30 @@ class TranslationUnit:
             if EXTENSIONS.get(macro.name) is not macro
         )
 
+    def expand_text(self, source: str, offset: int) -> str:
+        """C text from outside the tree, expanded by the macros in force at an offset of `text`."""
+        return self._expanded(source, self.macros.at(offset))[0].text()
+
     def excerpt(self, source: str) -> "TranslationUnit":
         """C text from outside the tree as if it stood at the end of the unit, expanded."""
-        outline = Outline(SourceFile(self.path, source))
         final = self.macros.final()
+        pieces, entered = self._expanded(source, final.at(0))
+        return replace(self, text=pieces.text(), macros=final, pieces=pieces, entered=entered)
+
+    def _expanded(
+        self, source: str, definitions: MacrosInForce
+    ) -> tuple[Pieces, tuple[Entered, ...]]:
+        outline = Outline(SourceFile(self.path, source))
         expander = Expander(
-            final.at(0),
+            definitions,
             extensions=EXTENSIONS,
             limits=self.limits,
             note=lambda token, message: None,
             builtin=lambda token: None,
         )
-        pieces = Pieces()
+        pieces = Pieces(self.limits.unit_bytes)
         pieces.expansion(expander.expanded_text(tokens_of(outline, 0, len(outline.logical))))
-        return replace(
-            self, text=pieces.text(), macros=final, pieces=pieces, entered=tuple(expander.entered)
-        )
+        return pieces, tuple(expander.entered)
 
 
 def translate(

@@ -71,7 +71,7 @@ class Bench:
         expression = replaced(self.expression, literals) if literals else self.expression
         curve = evaluate(expression, lambda _: words)
         values = np.broadcast_to(np.asarray(curve.values, dtype=np.float64), self.codes.shape)
-        return values * float(scale) + float(self.zero) - self.quantity
+        return values * nearest(scale, 64) + nearest(self.zero, 64) - self.quantity
 
     def leaves(self, error: Array) -> NDArray[np.bool_]:
         """At which codes an error is outside the allowed one."""
@@ -85,12 +85,14 @@ def bench(question: Question, expression: Expression, board: BoardLine, scale: F
         inside = np.arange(question.codes.size)
     spread = np.linspace(0, inside.size - 1, min(inside.size, _MOST_CODES)).round().astype(np.int64)
     at = inside[spread]
-    step = float(abs(scale)) if expression.type.is_integer else 0.0
+    step = nearest(abs(scale), 64) if expression.type.is_integer else 0.0
     return Bench(
         expression=expression,
         codes=question.codes[at],
         words=question.words[at],
-        quantity=np.asarray(question.codes[at] * float(board.gain) + float(board.offset)),
+        quantity=np.asarray(
+            question.codes[at] * nearest(board.gain, 64) + nearest(board.offset, 64)
+        ),
         allowed=np.broadcast_to(question.allowed(step), question.codes.shape)[at],
         scale=scale,
         zero=question.zero,

@@ -99,6 +99,11 @@ def is_power(value: Fraction, base: int) -> bool:
     return number == 1
 
 
+def decades(value: Fraction) -> float:
+    """The logarithm of a positive number to the base of ten, however large or small it is."""
+    return math.log10(value.numerator) - math.log10(value.denominator)
+
+
 def leaf_key(leaf: Leaf) -> Key:
     """What tells one spelled constant from another."""
     return (leaf.place, leaf.text)
@@ -316,7 +321,7 @@ def _stated_exponent(stated: StatedRole) -> int | None:
     """The power of ten that a stated unit says: 3 for mV."""
     if stated.unit is None or not is_power(stated.unit, 10):
         return None
-    return -round(math.log10(stated.unit))
+    return -round(decades(stated.unit))
 
 
 def _exponent(words: Sequence[str], hints: frozenset[Role]) -> int | None:

@@ -12,7 +12,7 @@ from fractions import Fraction
 from itertools import combinations
 
 from bitweight.board.facts import BoardFact, Role
-from bitweight.judge.knobs import Knob
+from bitweight.judge.knobs import Knob, decades
 from bitweight.units import coherent, takes_prefix
 
 
@@ -87,6 +87,7 @@ _FAR = 0.7
 _FAR_WITH_UNIT = 2.0
 """Decades that a constant may be from its fact, more where its name says the unit."""
 _CLOSE = 1e-9
+_DECADES_OF_TWO = math.log10(2)
 
 _SCALINGS = {
     Role.FULL_SCALE: Scaling.COUNT,
@@ -136,7 +137,7 @@ def _term(fact: BoardFact, value: Fraction) -> Term:
 
 def _power(value: Fraction) -> int | None:
     """The exponent of a power of ten, None for any other number."""
-    exponent = round(math.log10(value))
+    exponent = round(decades(value))
     return exponent if Fraction(10) ** exponent == value else None
 
 
@@ -147,10 +148,10 @@ def matches(
     if wanted <= 0:
         return
     for term in _allowed(knob, all_terms):
-        ratio = float(wanted / term.value)
+        ratio = wanted / term.value
         for exponent, doublings in _powers(term.scaling, ratio):
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
-            if abs(float(wanted / exact) - 1) <= closeness:
+            if abs(wanted / exact - 1) <= closeness:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
 
 
@@ -160,11 +161,11 @@ def nearest(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
         return
     farthest = _FAR if knob.exponent is None else _FAR_WITH_UNIT
     for term in _allowed(knob, all_terms):
-        ratio = float(knob.value / term.value)
+        ratio = knob.value / term.value
         powers = _nearest_powers(knob, term, ratio)
         for exponent, doublings in powers:
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
-            if abs(math.log10(float(knob.value / exact))) < farthest:
+            if abs(decades(knob.value / exact)) < farthest:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
 
 
@@ -206,9 +207,9 @@ def _is_stated(knob: Knob, term: Term) -> bool:
     return named and stated.role in (role, term.role.value)
 
 
-def _powers(scaling: Scaling, ratio: float) -> Iterator[tuple[int, int]]:
+def _powers(scaling: Scaling, ratio: Fraction) -> Iterator[tuple[int, int]]:
     """Exponents of ten and of two that make a term `ratio` times as large."""
-    tens, twos = round(math.log10(ratio)), round(math.log2(ratio))
+    tens, twos = round(decades(ratio)), round(decades(ratio) / _DECADES_OF_TWO)
     match scaling:
         case Scaling.PLAIN:
             yield 0, 0
@@ -225,7 +226,7 @@ def _powers(scaling: Scaling, ratio: float) -> Iterator[tuple[int, int]]:
                 yield 0, twos
 
 
-def _nearest_powers(knob: Knob, term: Term, ratio: float) -> Iterator[tuple[int, int]]:
+def _nearest_powers(knob: Knob, term: Term, ratio: Fraction) -> Iterator[tuple[int, int]]:
     if knob.exponent is not None and term.scaling is Scaling.QUANTITY:
         yield knob.exponent, 0
         return
@@ -244,7 +245,7 @@ def composites(knob: Knob, all_terms: Sequence[Term]) -> tuple[Fraction, ...]:
     for product in _products(all_terms):
         for twos in _FIXED_POINT_COMMON:
             scaled = product * (1 << twos)
-            tens = round(math.log10(float(knob.value / scaled)))
+            tens = round(decades(knob.value / scaled))
             exact = scaled * Fraction(10) ** tens
             if knob.rounds(exact) and exact != knob.value:
                 found.add(exact)

@@ -1,12 +1,11 @@
 """One correction of one constant: which meaning it takes, and which rule reports it."""
 
-import math
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from bitweight.board.facts import Role
-from bitweight.judge.knobs import Knob, is_power
+from bitweight.judge.knobs import Knob, decades, is_power
 from bitweight.judge.meanings import Meaning, Scaling
 
 RULE_ORDER = (
@@ -108,7 +107,7 @@ def _holds_already(knob: Knob, meaning: Meaning) -> bool:
     """Whether the constant is the fact already, in another everyday scaling: V, not mV."""
     if meaning.term.scaling not in (Scaling.QUANTITY, Scaling.RATIO) or knob.value <= 0:
         return False
-    exponent = round(math.log10(knob.value / meaning.term.value))
+    exponent = round(decades(knob.value / meaning.term.value))
     held = replace(
         meaning,
         exact=meaning.term.value * Fraction(10) ** exponent,
@@ -152,7 +151,7 @@ def rank(repairs: Iterable[Repair]) -> Rank:
         sum(_is_unusual(repair) for repair in chosen),
         sorted(RULE_ORDER.index(repair.rule) for repair in chosen),
         sum(repair.knob is None for repair in chosen),
-        sum(not _is_hinted(repair) for repair in chosen),
+        sum(not is_likely(repair) for repair in chosen),
         round(sum(_distance(repair) for repair in chosen), 9),
         sum(repair.knob is not None and not repair.knob.named for repair in chosen),
         [str(repair.knob.leaf.place) if repair.knob else "" for repair in chosen],
@@ -177,7 +176,8 @@ def _is_unusual(repair: Repair) -> bool:
     return not repair.meaning.is_natural
 
 
-def _is_hinted(repair: Repair) -> bool:
+def is_likely(repair: Repair) -> bool:
+    """Whether the board file or the constant's name speaks for the meaning."""
     knob, meaning = repair.knob, repair.meaning
     if knob is None or meaning is None:
         return False
@@ -189,4 +189,4 @@ def _distance(repair: Repair) -> float:
     knob = repair.knob
     if knob is None or knob.value <= 0 or repair.exact <= 0:
         return 1.0
-    return abs(math.log10(repair.exact / knob.value))
+    return abs(decades(repair.exact / knob.value))

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from bitweight.arithmetic.expressions import Code
 from bitweight.arithmetic.reals import reals
+from bitweight.arithmetic.scalars import nearest
 from bitweight.board.converters import Coding
 from bitweight.judge.knobs import Knob
 from bitweight.judge.meanings import snaps
@@ -36,10 +37,10 @@ def residual(question: Question, view: View) -> str | None:
         return None
     at = _sample(question)
     codes = question.codes[at].astype(np.float64)
-    wanted = codes * float(view.board.gain) + float(view.board.offset)
-    value = (codes * float(line.gain) + float(line.offset)) * float(view.scale) + float(
-        question.zero
-    )
+    wanted = codes * nearest(view.board.gain, 64) + nearest(view.board.offset, 64)
+    value = (codes * nearest(line.gain, 64) + nearest(line.offset, 64)) * nearest(
+        view.scale, 64
+    ) + float(question.zero)
     if not _leaves(question, view.scale, at, value - wanted):
         return None
     if same(line.gain, target.gain):
@@ -70,7 +71,7 @@ def curve_leaves(question: Question) -> bool:
     scale = question.scale
     if scale is None or not np.isfinite(value).any():
         return False
-    error = value * float(scale) + float(question.zero) - question.quantity[at]
+    error = value * nearest(scale, 64) + nearest(question.zero, 64) - question.quantity[at]
     return _leaves(question, scale, at, error)
 
 
@@ -78,13 +79,13 @@ def bends(question: Question, view: View) -> bool:
     """Whether the code leaves its own straight stretch otherwise than by a clamp or a jump."""
     at = _sample(question)
     value = _real_values(question, at)
-    line = question.codes[at] * float(view.line.gain) + float(view.line.offset)
+    line = question.codes[at] * nearest(view.line.gain, 64) + nearest(view.line.offset, 64)
     distance = value - line
     size = max(1.0, float(np.abs(line).max()))
     off = np.isfinite(value) & (np.abs(distance) > _STRAIGHT * size)
     if not off.any() or _is_level(value[off], size) or _is_level(distance[off], size):
         return False
-    return _leaves(question, view.scale, at[off], distance[off] * float(view.scale))
+    return _leaves(question, view.scale, at[off], distance[off] * nearest(view.scale, 64))
 
 
 def _is_level(values: Array, size: float) -> bool:

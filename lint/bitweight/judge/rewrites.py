@@ -211,19 +211,22 @@ def _relowered(node: Expression, known: _Known, model: DataModel) -> Expression:
         case Convert():
             return building.convert(known[id(node.operand)], node.type, node.purpose, node.place)
         case Unary():
-            return building.unary(model, node.operator, known[id(node.operand)], node.place)
+            operand = _as_written(known[id(node.operand)])
+            return building.unary(model, node.operator, operand, node.place)
         case Binary():
-            return building.binary(
-                model, node.operator, known[id(node.left)], known[id(node.right)], node.place
-            )
+            left, right = (_as_written(known[id(one)]) for one in (node.left, node.right))
+            return building.binary(model, node.operator, left, right, node.place)
         case Choose():
-            return building.choose(
-                model,
-                known[id(node.condition)],
-                known[id(node.then)],
-                known[id(node.other)],
-                node.place,
-            )
+            condition = known[id(node.condition)]
+            then, other = (_as_written(known[id(one)]) for one in (node.then, node.other))
+            return building.choose(model, condition, then, other, node.place)
+
+
+def _as_written(node: Expression) -> Expression:
+    """An operand without the conversions that C did not spell."""
+    while isinstance(node, Convert) and node.purpose in (Purpose.PROMOTION, Purpose.BALANCE):
+        node = node.operand
+    return node
 
 
 def _place(node: Expression) -> Place:

@@ -74,8 +74,8 @@ def run_rules(rules: Iterable[Rule], facts: Facts) -> tuple[Finding, ...]:
         try:
             match rule:
                 case ChannelRule():
-                    for case in facts.cases:
-                        found.extend(rule.check(case, facts))
+                    for view in (view for case in facts.cases for view in case.each):
+                        found.extend(rule.check(view, facts))
                 case TreeRule():
                     found.extend(rule.check(facts))
         except Exception as error:

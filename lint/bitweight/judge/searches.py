@@ -10,13 +10,14 @@ from fractions import Fraction
 from itertools import combinations, islice, product
 
 from bitweight.board.facts import Role
-from bitweight.judge.knobs import Key, Knob
+from bitweight.judge.knobs import Key, Knob, is_power
 from bitweight.judge.meanings import Term, composites, matches, nearest, snaps
 from bitweight.judge.repairs import (
     Layout,
     Repair,
     divisor_repair,
     fact_repair,
+    is_likely,
     power_repair,
     rank,
     shift_repairs,
@@ -51,9 +52,11 @@ class Search:
         return self.target.fits(self.line(values))
 
 
-_MOST_BASELINES = 16
+_MOST_BASELINES = 24
+_MOST_ROUNDED = 3
 _MOST_OPTIONS = 3
 _MOST_TRIES = 300
+_FEW_DIGITS = 3
 _FINE_FOLD = Fraction(1, 40)
 _NEAR = 0.2
 _OFFSETS = (Role.OFFSET, Role.ZERO_CODE, Role.AT)
@@ -89,30 +92,31 @@ def _baselines(search: Search) -> tuple[Values, ...]:
     """The constants as they are, then with rounded ones taken as the exact facts they stand for."""
     if search.fits({}):
         return ({},)
-    options = []
-    for knob in search.knobs:
-        exact = dict.fromkeys(_exact_values(search, knob))
-        options.append([None, *islice(exact, _MOST_OPTIONS)])
-    choices = islice(product(*options), 1 << 12)
-    ordered = sorted(choices, key=lambda choice: sum(value is not None for value in choice))
-    return tuple(
-        {
-            knob.key: value
-            for knob, value in zip(search.knobs, choice, strict=True)
-            if value is not None
-        }
-        for choice in ordered[:_MOST_BASELINES]
+    options = {knob.key: _exact_values(search, knob) for knob in search.knobs}
+    rounded = [key for key, values in options.items() if values]
+    chosen = (
+        dict(zip(keys, values, strict=True))
+        for size in range(_MOST_ROUNDED + 1)
+        for keys in combinations(rounded, size)
+        for values in product(*(options[key] for key in keys))
     )
+    return tuple(islice(chosen, _MOST_BASELINES))
 
 
-def _exact_values(search: Search, knob: Knob) -> Iterator[Fraction]:
+def _exact_values(search: Search, knob: Knob) -> tuple[Fraction, ...]:
+    """What a constant that is a rounded number may be exactly, board facts first."""
     if knob.is_round or knob.counts_bits:
-        return
+        return ()
+    facts = _rounded_facts(search, knob)
+    found = dict.fromkeys((*facts, *composites(knob, search.terms)))
+    return tuple(islice(found, _MOST_OPTIONS))
+
+
+def _rounded_facts(search: Search, knob: Knob) -> Iterator[Fraction]:
     for meaning in snaps(knob, search.terms):
         hinted = meaning.term.role in knob.hints
         if meaning.exact != knob.value and (hinted or not (knob.hints or knob.is_coarse)):
             yield meaning.exact
-    yield from composites(knob, search.terms)
 
 
 def _exact_offset(search: Search, most: int) -> Solution | None:
@@ -267,8 +271,21 @@ def _plausible(search: Search, knob: Knob) -> Iterator[Repair]:
         return
     for meaning in nearest(knob, search.terms):
         repair = fact_repair(knob, meaning, search.layout)
-        if repair is not None:
+        if repair is not None and (is_likely(repair) or _speaks_for_itself(knob)):
             yield repair
+
+
+def _speaks_for_itself(knob: Knob) -> bool:
+    """Whether a value may be a fact of some board: a count, or few digits; no scale factor.
+
+    Otherwise any two constants folded by hand would do for a wrong reference and a wrong count.
+    """
+    if is_power(knob.value, 2) or is_power(knob.value + 1, 2):
+        return True
+    if knob.is_round or not knob.value:
+        return False
+    digits = str(abs(knob.value.numerator * 10**9 // knob.value.denominator)).strip("0")
+    return len(digits) <= _FEW_DIGITS
 
 
 def _doubles(search: Search, baselines: Sequence[Values]) -> Iterator[tuple[Repair, ...]]:
@@ -306,7 +323,7 @@ def _with_offset(
 def _option_then_root(search: Search, values: Values) -> Iterator[tuple[Repair, ...]]:
     """One constant takes its likely fact; another is solved for, in whatever scaling it is."""
     for option in _options(search, values):
-        if not _is_likely(option.repair):
+        if not is_likely(option.repair):
             continue
         put = {**values, option.key: option.repair.exact}
         for knob in search.knobs:
@@ -315,13 +332,6 @@ def _option_then_root(search: Search, values: Values) -> Iterator[tuple[Repair, 
             for repair in _gain_repairs(search, knob, put):
                 if search.fits({**put, knob.key: repair.exact}):
                     yield (option.repair, repair)
-
-
-def _is_likely(repair: Repair) -> bool:
-    """Whether the constant's name speaks of the fact."""
-    if repair.knob is None or repair.meaning is None:
-        return False
-    return repair.knob.stated is not None or repair.meaning.term.role in repair.knob.hints
 
 
 def _combined(

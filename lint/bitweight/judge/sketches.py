@@ -15,8 +15,9 @@ from bitweight.judge.knobs import Key
 
 Values = Mapping[Key, Fraction]
 _PROBES = 9
-_MOST_LINES = 4_000
-"""Lines asked of one sketch; a search that needs more has no explanation to offer."""
+_MOST_NODES = 400_000
+_FEWEST_LINES = 12
+"""Nodes evaluated for one sketch, about a second; a search beyond has no explanation to offer."""
 RELATIVE = Fraction(1, 10**9)
 """Two exact numbers closer than this are one: room for constants that are themselves rounded."""
 
@@ -43,7 +44,8 @@ class Sketch:
     @property
     def spent(self) -> bool:
         """Whether it has been asked as often as it answers."""
-        return self.asked >= _MOST_LINES
+        work = self.asked * len(self._form.order)
+        return self.asked >= _FEWEST_LINES and work >= _MOST_NODES
 
     def line(self, values: Values) -> RealLine | None:
         """The line with these constants; None where a value is missing or the sketch is spent."""

@@ -7,6 +7,7 @@ import re
 from fractions import Fraction
 
 from bitweight.arithmetic.literals import literal
+from bitweight.arithmetic.scalars import nearest
 from bitweight.arithmetic.types import DataModel
 
 _HEXADECIMAL = re.compile(r"(?P<prefix>0[xX])(?P<digits>[0-9a-fA-F]+)(?P<suffix>[uUlL]*)")
@@ -52,7 +53,7 @@ def shown(value: Fraction, digits: int = _SIGNIFICANT) -> str:
     """A number for people: whole ones in full, others with some significant digits."""
     if value.denominator == 1:
         return str(value.numerator)
-    return f"{float(value):.{digits}g}"
+    return f"{nearest(value, 64):.{digits}g}"
 
 
 def _whole_match(text: str) -> re.Match[str] | None:

@@ -4,7 +4,6 @@ A conversion may count by any accepted full-scale count, give a result in any de
 is stated, and take the code to stand elsewhere in its word. Each way is one `View`, searched alone.
 """
 
-import math
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
@@ -12,7 +11,7 @@ from fractions import Fraction
 import numpy as np
 
 from bitweight.arithmetic.expressions import Expression, Leaf
-from bitweight.judge.knobs import Key, Knob, grouped, knobs
+from bitweight.judge.knobs import Key, Knob, decades, grouped, knobs
 from bitweight.judge.meanings import terms
 from bitweight.judge.questions import BoardLine, Question
 from bitweight.judge.repairs import Layout, Repair, rank
@@ -22,6 +21,8 @@ from bitweight.judge.sketches import RealLine, Sketch, sketch
 
 _MOST_WRONG = 3
 _PROBES = 9
+_FARTHEST_DECADE = 40
+"""No unit of any quantity is further from another of its kind."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -152,7 +153,9 @@ def _scales(question: Question, line: RealLine) -> Iterator[tuple[int, Fraction]
     if question.scale is not None:
         yield 0, question.scale
         return
-    exact = math.log10(abs(question.lines[0].gain / line.gain))
+    exact = decades(abs(question.lines[0].gain / line.gain))
+    if abs(exact) > _FARTHEST_DECADE:
+        return
     nearest = round(exact)
     other = nearest + (1 if exact > nearest else -1)
     for decade in (nearest, other):
@@ -185,8 +188,8 @@ def _layout(question: Question) -> Layout:
 
 def _other_prefix(view: View) -> View | None:
     """The result taken to be in another power of ten of the stated unit, if that comes nearer."""
-    decade = round(math.log10(abs(view.search.target.gain / view.line.gain)))
-    if decade == 0:
+    decade = round(decades(abs(view.search.target.gain / view.line.gain)))
+    if decade == 0 or abs(decade) > _FARTHEST_DECADE:
         return None
     factor = Fraction(10) ** decade
     return replace(

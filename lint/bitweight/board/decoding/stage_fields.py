@@ -184,4 +184,5 @@ def _stage_fields(value: Value, mistakes: Mistakes) -> Decoded | None:
         known = hint or f"; known kinds: {', '.join(FIELDS)}"
         mistakes.add(kind.place, f"unknown kind of stage, found {described(kind)}{known}")
         return None
-    return read_table(value, FIELDS[name], f"a {name} stage", mistakes)
+    article = "an" if name in ("amplifier", "rtd", "against") else "a"
+    return read_table(value, FIELDS[name], f"{article} {name} stage", mistakes)

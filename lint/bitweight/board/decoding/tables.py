@@ -16,6 +16,10 @@ from bitweight.places import Place
 Schema = dict[str, object]
 """A fragment of JSON schema."""
 
+_LONGEST_MESSAGE = 400
+_LONGEST_NAME = 60
+"""Characters of one message and of one name in it: what a line can carry."""
+
 T = TypeVar("T")
 T_co = TypeVar("T_co", covariant=True)
 
@@ -53,7 +57,9 @@ class Mistakes:
     def extend(self, mistakes: Iterable[Mistake]) -> None:
         """Note several."""
         for mistake in mistakes:
-            self.found.setdefault((mistake.place, mistake.message), mistake)
+            message = printable(mistake.message)
+            shown = Mistake(place=mistake.place, message=message)
+            self.found.setdefault((mistake.place, message), shown)
 
     def raise_any(self) -> None:
         """Raise `BoardError` with all mistakes in the order of the file, if there are any."""
@@ -107,12 +113,20 @@ def described(value: Value) -> str:
 
 def shortened(text: str) -> str:
     """A text from the file, cut to what a message can carry."""
-    return text if len(text) <= 60 else text[:57] + "..."
+    return text if len(text) <= _LONGEST_NAME else text[: _LONGEST_NAME - 3] + "..."
+
+
+def printable(message: str) -> str:
+    """A message with control and bidirectional characters escaped, of bounded length."""
+    shown = message if len(message) <= _LONGEST_MESSAGE else message[:_LONGEST_MESSAGE] + "..."
+    return "".join(
+        character if character.isprintable() else ascii(character)[1:-1] for character in shown
+    )
 
 
 def nearest(name: str, known: Iterable[str]) -> str:
     """', did you mean "x"?' for the nearest known name, or nothing."""
-    close = get_close_matches(name, list(known), n=1, cutoff=0.5)
+    close = get_close_matches(name[:_LONGEST_NAME], list(known), n=1, cutoff=0.5)
     return f", did you mean '{close[0]}'?" if close else ""
 
 
