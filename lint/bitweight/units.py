@@ -5,7 +5,6 @@ m, g, l, N and every word that is not known, which is a unit of its own and take
 """
 
 import re
-from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
@@ -274,8 +273,3 @@ def _joined(left: Unit, right: Unit, *, divide: bool) -> Unit:
         zero=left.zero or right.zero,
         below=product(left.below, right.dimension) if divide else left.below,
     )
-
-
-def same_kind(units: Iterable[Unit]) -> bool:
-    """Whether all the units convert to each other."""
-    return len({unit.dimension for unit in units}) <= 1

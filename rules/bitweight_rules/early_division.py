@@ -5,7 +5,7 @@ from collections.abc import Iterator
 import numpy as np
 
 from bitweight.arithmetic.expressions import Binary
-from bitweight.judge.cases import Case, Facts
+from bitweight.judge.cases import Case, Facts, Judgement
 from bitweight.judge.findings import Finding
 from bitweight.judge.levels import stated_or_warning
 from bitweight.judge.losses import Loss
@@ -28,13 +28,23 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
             leaves=bool((lost > judgement.allowed).any()),
         ),
         channels=(case.channel.name,),
-        message=f"{_what(loss)} loses up to {largest}, at code {int(judgement.codes[loss.index])}, "
-        f"where one LSB is {quantity(judgement.lsb, case.channel)}",
+        message=_message(case, judgement, loss, largest),
         place=place_of(loss.node, judgement.conversion.place),
         found=f"up to {largest} lost",
-        expected="multiply before dividing",
+        expected="finer counts of the result" if loss.at_end else "multiply before dividing",
         related=steps(judgement.conversion),
     )
+
+
+def _message(case: Case, judgement: Judgement, loss: Loss, largest: str) -> str:
+    code = int(judgement.codes[loss.index])
+    if loss.at_end:
+        return (
+            f"{judgement.conversion.result} is cut to whole counts: up to {largest} lost, at code "
+            f"{code}, leaves the allowed error by itself"
+        )
+    lsb = quantity(judgement.lsb, case.channel)
+    return f"{_what(loss)} loses up to {largest}, at code {code}, where one LSB is {lsb}"
 
 
 def _what(loss: Loss) -> str:

@@ -23,8 +23,6 @@ def _channel(case: Case) -> Finding:
         channels=(channel.name,),
         message=case.reason or f"no conversion of {channel.name} was found",
         place=case.place or channel.place,
-        found="not followed",
-        expected="a conversion that can be followed",
         related=() if place is None else (Related(place=place, message="followed up to here"),),
     )
 
@@ -42,8 +40,6 @@ def _limits(case: Case, facts: Facts) -> Iterator[Finding]:
             channels=(case.channel.name,),
             message=f"limit {limit.name}: {threshold.text} was not compared: {reason}",
             place=limit.constant_place,
-            found="not followed",
-            expected=f"a constant for {limit.at}",
             related=()
             if threshold.place is None
             else (Related(place=threshold.place, message="defined here"),),

@@ -48,8 +48,26 @@ def test_a_condition_has_its_value_in_the_widest_type(text: str, value: bool) ->
 
 @pytest.mark.parametrize(
     "text",
-    ["", "1 +", "(1", "1 / 0", "1 % 0", "1.5", '"a"', "1 2", "= 1", "09", "''", "1 ? 2", ")", "0x"]
-    + ["(" * 10_000, "-" * 10_000, "1?" * 10_000, "1" * 10_000 + "u"],
+    [
+        "",
+        "1 +",
+        "(1",
+        "1 / 0",
+        "1 % 0",
+        "1.5",
+        '"a"',
+        "1 2",
+        "= 1",
+        "09",
+        "''",
+        "1 ? 2",
+        ")",
+        "0x",
+        "(" * 10_000,
+        "-" * 10_000,
+        "1?" * 10_000,
+        "1" * 10_000 + "u",
+    ],
     ids=lambda text: text[:6],
 )
 def test_a_condition_without_value_is_an_error(text: str) -> None:

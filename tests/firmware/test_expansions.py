@@ -1,6 +1,7 @@
 """Macro uses expanded and read again."""
 
 import pytest
+
 from firmware.sources import unit_of, words_of
 
 

@@ -1,9 +1,9 @@
 """Words that compilers for small targets add to C."""
 
 import pytest
-from firmware.sources import unit_of, words_of
 
 from bitweight.firmware.extensions import EXTENSIONS
+from firmware.sources import unit_of, words_of
 
 
 @pytest.mark.parametrize(

@@ -38,8 +38,18 @@ def test_a_definition_has_name_parameters_and_body(
 
 @pytest.mark.parametrize(
     "text",
-    ["#define", "#define 1", "#define F(", "#define F(a", "#define F(1) x", "#define F(a b)"]
-    + ["#define F(..., a)", "#define F(a,) a", "#define defined 1", "#undef A"],
+    [
+        "#define",
+        "#define 1",
+        "#define F(",
+        "#define F(a",
+        "#define F(1) x",
+        "#define F(a b)",
+        "#define F(..., a)",
+        "#define F(a,) a",
+        "#define defined 1",
+        "#undef A",
+    ],
 )
 def test_a_malformed_definition_is_none(text: str) -> None:
     """What gcc refuses defines nothing."""

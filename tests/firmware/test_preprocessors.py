@@ -1,6 +1,7 @@
 """Definitions from outside and built-in macros."""
 
 import pytest
+
 from firmware.sources import unit_of, words_of
 
 

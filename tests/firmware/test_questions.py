@@ -1,10 +1,10 @@
 """What conditionals ask."""
 
 import pytest
-from firmware.sources import unit_of, words_of
 
 from bitweight.firmware.remarks import Undefined
 from bitweight.places import Place
+from firmware.sources import unit_of, words_of
 
 HEADERS = {
     "inc/guard.h": "#ifndef G\n#define G\nguarded\n#endif\n",

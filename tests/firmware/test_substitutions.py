@@ -1,6 +1,7 @@
 """Arguments put into a replacement list."""
 
 import pytest
+
 from firmware.sources import unit_of, words_of
 
 

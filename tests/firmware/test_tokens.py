@@ -54,8 +54,19 @@ def test_one_token_has_a_kind(text: str, kind: Kind | None) -> None:
 
 @pytest.mark.parametrize(
     ("pair", "joins"),
-    [("ab", True), ("1.", True), ("--", True), ("<=", True), ("e+", True), ("a(", False)]
-    + [("((", False), (" a", False), (";a", False), ('L"', True), ("x+", False)],
+    [
+        ("ab", True),
+        ("1.", True),
+        ("--", True),
+        ("<=", True),
+        ("e+", True),
+        ("a(", False),
+        ("((", False),
+        (" a", False),
+        (";a", False),
+        ('L"', True),
+        ("x+", False),
+    ],
 )
 def test_characters_that_would_join_tokens_need_a_space(pair: str, joins: bool) -> None:
     """Two tokens side by side must not read as one."""

@@ -3,7 +3,6 @@
 import string
 
 import pytest
-from firmware.sources import unit_of, words_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
@@ -11,9 +10,11 @@ from bitweight.firmware.tokens import kind_of
 from bitweight.firmware.translation import TranslationUnit
 from bitweight.limits import Limits
 from bitweight.places import LineIndex, Place
+from firmware.sources import unit_of, words_of
 
 HEADERS = {
-    "inc/board.h": "#ifndef BOARD_H\n#define BOARD_H\n#define VREF 3300\n#define FULL 1024\n#endif\n",
+    "inc/board.h": "#ifndef BOARD_H\n#define BOARD_H\n#define VREF 3300\n#define FULL 1024\n"
+    "#endif\n",
 }
 MAIN = """#include "board.h"
 #define SCALE(c) ((c) * VREF / \\

@@ -1,10 +1,10 @@
 """Directives obeyed on the way through a unit."""
 
 import pytest
-from firmware.sources import unit_of, words_of
 
 from bitweight.firmware.remarks import Missing
 from bitweight.places import Place
+from firmware.sources import unit_of, words_of
 
 HEADERS = {
     "inc/once.h": "#pragma once\nonce\n",

@@ -83,26 +83,34 @@ f(2)(9)
 """,
 }
 TRICKY = {
-    "splices inside tokens": "#def\\\nine AD\\\nC 10\\\n24\nint a = A\\\nDC\\\n; /\\\n* gone *\\\n/ x\n",
-    "comments in directives": "/* a */ # /* b */ define /* c\n d */ N /* e */ 7 /* f\n*/ + 1 // g\nN\n",
+    "splices inside tokens": "#def\\\nine AD\\\nC 10\\\n24\nint a = A\\\nDC\\\n; /\\\n"
+    "* gone *\\\n/ x\n",
+    "comments in directives": "/* a */ # /* b */ define /* c\n d */ N /* e */ 7 /* f\n"
+    "*/ + 1 // g\nN\n",
     "signs that would join": "#define NEG -1\n#define E\n-NEG +E+ x.E.y NEG-NEG -E- &E& 1 E 2\n",
     "rest arguments": "#define L(f, ...) p(f, ## __VA_ARGS__)\n#define G(a...) q(a)\n"
     "#define O(f, ...) p(f __VA_OPT__(,) __VA_ARGS__)\n"
     "L(a) L(a,) L(a,b) L(a,b,c) G() G(1,2) O(a) O(a,b,c)\n",
     "name without arguments": "#define F(x) <x>\nF F (1) F\n(2) F\n#define LATE 1\n(LATE) (F)(3)\n",
-    "directives among arguments": "#define F(x, y) [x|y]\nF(1\n#if 1\n+2\n#else\n+3 )\n#endif\n, 4)\n",
-    "conditionals": "#if 0\nit's \"unbalanced /* not here\n*/ #else\nno\n#elif -1 > 0u && (2||1/0)\nyes\n"
+    "directives among arguments": "#define F(x, y) [x|y]\nF(1\n#if 1\n+2\n#else\n+3 )\n"
+    "#endif\n, 4)\n",
+    "conditionals": "#if 0\nit's \"unbalanced /* not here\n*/ #else\nno\n"
+    "#elif -1 > 0u && (2||1/0)\nyes\n"
     "#else\nno\n#endif\n#if !defined(A) && defined B || 'a' == 97 && 0b11 == 3\nb\n#endif\n",
     "digraphs": "%:define S(x) %:x\n%:define C(a,b) a%:%:b\nint a<:C(1,2):> = <% S(x y) %>;\n",
-    "late closing parenthesis": "#define NIL(x) x\n#define G0(a) NIL(G1)(a)\n#define G1(a) NIL(a)\nG0(42)\n",
-    "twice through one name": "#define foo foo a bar\n#define bar foo 2\nfoo bar\n#define A B\n#define B A\nA B\n",
+    "late closing parenthesis": "#define NIL(x) x\n#define G0(a) NIL(G1)(a)\n"
+    "#define G1(a) NIL(a)\nG0(42)\n",
+    "twice through one name": "#define foo foo a bar\n#define bar foo 2\nfoo bar\n"
+    "#define A B\n#define B A\nA B\n",
     "deferred": "#define EMPTY\n#define DEFER(x) x EMPTY\n#define A() 123\nDEFER(A)()\n"
     "#define EXPAND(x) x\nEXPAND(DEFER(A)())\n",
     "string arguments": "#define S(x) #x\n#define X(x) S(x)\n"
     "S( a  +  b ) S(\"q\\n\" 'x') X(S(1)) S(a,) \n".replace("S(a,)", "S((a,b))"),
     "redefinition": "#define V 1\nV\n#undef V\nV\n#define V 2\nV\n#define V 3\nV\n",
-    "defined from a macro": "#define HAS defined(ADC)\n#define ADC\n#if HAS\nyes\n#else\nno\n#endif\n",
-    "shift by much": "#if (1 << 62) > 0 && (1u << 63) > 0 && -1 >> 70 == -1 && 5 % -3 == 2\nyes\n#endif\n",
+    "defined from a macro": "#define HAS defined(ADC)\n#define ADC\n#if HAS\nyes\n#else\nno\n"
+    "#endif\n",
+    "shift by much": "#if (1 << 62) > 0 && (1u << 63) > 0 && -1 >> 70 == -1 && 5 % -3 == 2\n"
+    "yes\n#endif\n",
     "conditional value": "#if (1 ? -1 : 0u) > 0\nyes\n#endif\n#if (2 , 3) == 3\n#endif\n",
     "counter": "#define C __COUNTER__\nC C __COUNTER__ __LINE__\n",
 }

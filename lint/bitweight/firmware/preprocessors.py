@@ -127,8 +127,9 @@ class Preprocessor:
         """Whether the next token is `(`; it is not looked for behind a directive."""
         if self._stretch is None:
             return False
-        behind = _SPACE.match(self._stretch.script.text, self._position, self._stretch.end)
-        return behind is not None and self._stretch.script.text.startswith("(", behind.end(), self._stretch.end)
+        text, end = self._stretch.script.text, self._stretch.end
+        behind = _SPACE.match(text, self._position, end)
+        return behind is not None and text.startswith("(", behind.end(), end)
 
     def take(self) -> Token | None:
         """The next token of the unit; directives before it are obeyed."""

@@ -1,5 +1,4 @@
-"""What conditionals ask: which names are defined, what an expression is worth, what can be included.
-"""
+"""What conditionals ask: whether names are defined, files are there, expressions are not 0."""
 
 import re
 from collections.abc import Mapping

@@ -216,7 +216,8 @@ class Substitution:
         text = left.text + right.text
         kind = kind_of(text) if len(text) <= _LONGEST else None
         if kind is None:
-            self._expander.note(left, f"{left.text[:40]} and {right.text[:40]} do not paste to one token")
+            both = f"{left.text[:40]} and {right.text[:40]}"
+            self._expander.note(left, f"{both} do not paste to one token")
             return [left, right]
         return [Token(kind, text, left.file, left.offset, left.spaced, self._use, exact=False)]
 

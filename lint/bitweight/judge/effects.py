@@ -17,8 +17,9 @@ from bitweight.arithmetic.scalars import nearest
 from bitweight.arithmetic.types import CType
 from bitweight.judge.explanations import EffectPoint
 from bitweight.judge.findings import Level
-from bitweight.judge.knobs import Key, leaf_key, replaced
+from bitweight.judge.knobs import Key, leaf_key
 from bitweight.judge.questions import BoardLine, Question
+from bitweight.judge.substitutions import replaced
 
 Array = NDArray[np.float64]
 _MOST_CODES = 1 << 14
@@ -102,6 +103,10 @@ def bench(question: Question, expression: Expression, board: BoardLine, scale: F
             if isinstance(node, Literal) and node.leaf is not None
         },
     )
+
+
+def _along(board: BoardLine, codes: NDArray[np.int64]) -> Array:
+    return np.asarray(codes * nearest(board.gain, 64) + nearest(board.offset, 64))
 
 
 def _literal(value: Fraction, type_: CType) -> Literal | None:

@@ -32,7 +32,7 @@ from bitweight.judge.evaluations import (
     evaluated,
     presented,
 )
-from bitweight.judge.losses import Loss, truncation_loss
+from bitweight.judge.losses import Loss, coarse_end, truncation_loss
 from bitweight.judge.operations import WrongOperation, wrong_operations
 from bitweight.judge.roles import BoardLine, Explanation, Question, StatedRole, explain
 from bitweight.judge.scans import with_scanned
@@ -122,7 +122,7 @@ def judge_conversion(frame: Frame) -> Judgement | str:
         return reason
     explanation = explain(question(frame, unit, computed))
     accepted = replace(frame, side=_accepted(frame.side, explanation.count))
-    scale = unit.scale if unit.scale is not None else Fraction(10) ** explanation.decade
+    scale = unit.scale if unit.scale is not None else _inferred(frame, computed, explanation)
     result = ResultScale(
         scale=float(scale),
         zero=float(unit.zero),
@@ -216,18 +216,29 @@ def _rough_error(frame: Frame, unit: ResultUnit, computed: Evaluation) -> float:
     inside = computed.in_range
     quantity = frame.side.quantity(computed.codes)[inside]
     held = computed.real[inside]
-    scale = float(unit.scale) if unit.scale is not None else rough_scale(quantity, held)
+    scale = float(unit.scale if unit.scale is not None else rough_scale(quantity, held))
     error = np.abs(held * scale + float(unit.zero) - quantity)
     return float(error.max()) if np.isfinite(error).all() else math.inf
 
 
-def rough_scale(quantity: Array, held: Array) -> float:
-    """The power of ten that brings the width of one curve nearest to that of the other."""
+def _inferred(frame: Frame, computed: Evaluation, explanation: Explanation) -> Fraction:
+    """The power of ten under which the explanation holds, or the likeliest where it has no line."""
+    if explanation.gain is not None:
+        return Fraction(10) ** explanation.decade
+    inside = computed.in_range
+    return rough_scale(frame.side.quantity(computed.codes)[inside], computed.real[inside])
+
+
+def rough_scale(quantity: Array, held: Array) -> Fraction:
+    """The power of ten that brings the slope of one curve nearest to that of the other.
+
+    Slopes are medians from code to code, so that clamps do not count.
+    """
     with np.errstate(invalid="ignore"):
-        wanted, width = float(np.ptp(quantity)), float(np.ptp(held))
-    if not (wanted > 0 and math.isfinite(width) and width > 0):
-        return 1.0
-    return float(10.0 ** round(math.log10(wanted / width)))
+        wanted, found = (float(np.median(np.abs(np.diff(one)))) for one in (quantity, held))
+    if not (wanted > 0 and math.isfinite(found) and found > 0):
+        return Fraction(1)
+    return Fraction(10) ** round(math.log10(wanted / found))
 
 
 def _unknown(computed: Evaluation) -> str | None:
@@ -298,12 +309,15 @@ def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _F
     operations = tuple(
         replace(one, suffix=suffix_for(computed, one)) for one in wrong_operations(computed)
     )
+    wrong = wrong_mask(operations)
     wanted = (allowed.quantity - result.zero) / result.scale
+    limit = allowed.at_step(result.step) / counts
     tolerance = (allowed.lsb + result.step) / counts * _ROUNDING
     return _Faults(
         operations=operations,
-        loss=truncation_loss(computed, wrong_mask(operations), tolerance),
-        clamps=clamps_in_range(computed, wanted, allowed.at_step(result.step) / counts),
+        loss=truncation_loss(computed, wrong, tolerance)
+        or coarse_end(computed, wrong, wanted, limit),
+        clamps=clamps_in_range(computed, wanted, limit),
     )
 
 

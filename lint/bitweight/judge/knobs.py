@@ -10,24 +10,17 @@ from dataclasses import dataclass, replace
 from fractions import Fraction
 from types import MappingProxyType
 
-from bitweight.arithmetic.building import Folder
 from bitweight.arithmetic.expressions import (
     Binary,
-    Choose,
     Code,
     Convert,
     Default,
     Expression,
     Leaf,
     Literal,
-    Unary,
-    Unknown,
-    children,
     walk,
 )
 from bitweight.arithmetic.literals import exact_value, half_digit
-from bitweight.arithmetic.scalars import wrap
-from bitweight.arithmetic.types import CType, DataModel
 from bitweight.board.facts import Role
 from bitweight.judge.questions import StatedRole
 from bitweight.places import Place
@@ -164,7 +157,7 @@ def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | Non
     )
 
 
-def _bare(node: Expression) -> Expression:
+def bare(node: Expression) -> Expression:
     """The node below conversions and declared defaults."""
     while isinstance(node, Convert | Default):
         node = node.operand
@@ -174,7 +167,7 @@ def _bare(node: Expression) -> Expression:
 def _shift_counts(expression: Expression) -> frozenset[int]:
     """Identities of the constants that say by how many bits something is shifted."""
     return frozenset(
-        id(_bare(node.right))
+        id(bare(node.right))
         for node in walk(expression)
         if isinstance(node, Binary) and node.operator in ("<<", ">>")
     )
@@ -183,104 +176,12 @@ def _shift_counts(expression: Expression) -> frozenset[int]:
 def _on_reading(expression: Expression) -> frozenset[int]:
     """Identities of the constants that shift or divide the bare reading, first of all."""
     return frozenset(
-        id(_bare(node.right))
+        id(bare(node.right))
         for node in walk(expression)
         if isinstance(node, Binary)
         and node.operator in ("<<", ">>", "/")
-        and isinstance(_bare(node.left), Code)
+        and isinstance(bare(node.left), Code)
     )
-
-
-def grouped(
-    expression: Expression, model: DataModel
-) -> tuple[Expression, dict[Key, tuple[Leaf, ...]]]:
-    """The expression with computed counts like `(1 << 12) - 1` as single constants.
-
-    Returns also the constants inside each, by the key of the constant that stands for it.
-    """
-    folder = Folder(model)
-    rebuilt: dict[int, Expression] = {}
-    inside: dict[Key, tuple[Leaf, ...]] = {}
-    for node in walk(expression):
-        rebuilt[id(node)] = _rebuilt(node, rebuilt)
-        if isinstance(node, Binary) and _is_count(node):
-            value, leaves = folder.constant(node), _leaves(node)
-            if isinstance(value, int) and value > 1 and leaves:
-                leaf = replace(max(leaves, key=_weight), text=str(value))
-                inside[leaf_key(leaf)] = leaves
-                rebuilt[id(node)] = Literal(value=value, type=node.type, leaf=leaf)
-    return rebuilt[id(expression)], inside
-
-
-def _is_count(node: Binary) -> bool:
-    """Whether the operator makes a full-scale count: a shift, or one more or less than a value."""
-    if node.operator == "<<":
-        return True
-    right = _bare(node.right)
-    return node.operator in ("+", "-") and isinstance(right, Literal) and right.value == 1
-
-
-def _leaves(node: Expression) -> tuple[Leaf, ...]:
-    """The spelled constants below a node; empty where it holds anything but constants."""
-    found: dict[Leaf, None] = {}
-    for below in walk(node):
-        if isinstance(below, Code | Unknown):
-            return ()
-        if isinstance(below, Literal) and below.leaf is not None:
-            found[below.leaf] = None
-    return tuple(found)
-
-
-def _weight(leaf: Leaf) -> tuple[bool, int]:
-    """The constant that speaks for a group: a named one, else the largest."""
-    return leaf.name is not None, int(exact_value(leaf.text) or 0)
-
-
-def _rebuilt(node: Expression, rebuilt: dict[int, Expression]) -> Expression:
-    """The node over rebuilt operands; the node itself where none of them changed."""
-    if all(rebuilt[id(child)] is child for child in children(node)):
-        return node
-    match node:
-        case Literal() | Code() | Unknown():
-            return node
-        case Default() | Convert() | Unary():
-            return replace(node, operand=rebuilt[id(node.operand)])
-        case Binary():
-            return replace(node, left=rebuilt[id(node.left)], right=rebuilt[id(node.right)])
-        case Choose():
-            return replace(
-                node,
-                condition=rebuilt[id(node.condition)],
-                then=rebuilt[id(node.then)],
-                other=rebuilt[id(node.other)],
-            )
-
-
-def steadied(expression: Expression, channel: str, others: Mapping[str, int]) -> Expression:
-    """The expression with readings of other channels as constants, at their steady words."""
-    rebuilt: dict[int, Expression] = {}
-    for node in walk(expression):
-        if isinstance(node, Code) and node.channels and channel not in node.channels:
-            word = next((others[name] for name in node.channels if name in others), 0)
-            rebuilt[id(node)] = Literal(value=_fitting(word, node.type), type=node.type)
-        else:
-            rebuilt[id(node)] = _rebuilt(node, rebuilt)
-    return rebuilt[id(expression)]
-
-
-def _fitting(word: int, type_: CType) -> int | float:
-    return wrap(word, type_) if type_.is_integer else float(word)
-
-
-def replaced(expression: Expression, literals: dict[Key, Literal]) -> Expression:
-    """The expression with other constants in the places of some."""
-    rebuilt: dict[int, Expression] = {}
-    for node in walk(expression):
-        if isinstance(node, Literal) and node.leaf is not None:
-            rebuilt[id(node)] = literals.get(leaf_key(node.leaf), node)
-        else:
-            rebuilt[id(node)] = _rebuilt(node, rebuilt)
-    return rebuilt[id(expression)]
 
 
 _WORD = re.compile(r"[A-Z]+(?![a-z])\d*|[A-Z]?[a-z]+\d*|\d+")

@@ -13,6 +13,7 @@ from bitweight.arithmetic.expressions import Binary, Convert, Expression, walk
 from bitweight.judge.evaluations import Array, Evaluation, Mask
 from bitweight.judge.rewrites import realised
 
+_ROUNDING = 1 + 1e-9
 _MOST = 64
 """Dividing operators tried in one conversion; each costs an evaluation."""
 
@@ -22,12 +23,14 @@ class Loss:
     """What truncation on the way costs: `counts` of the result, signed, at most (at `index`).
 
     `lost` is the loss at each code, 0 where it is not looked at; `node` is the operator to blame.
+    `at_end` says that nothing is lost on the way: the counts of the result itself are too coarse.
     """
 
     node: Expression
     index: int
     counts: float
     lost: Array
+    at_end: bool = False
 
 
 def truncation_loss(computed: Evaluation, ignored: Mask, tolerance: float) -> Loss | None:
@@ -44,6 +47,28 @@ def truncation_loss(computed: Evaluation, ignored: Mask, tolerance: float) -> Lo
     if node is None:
         return None
     return Loss(node=node, index=index, counts=float(lost[index]), lost=lost)
+
+
+def coarse_end(computed: Evaluation, ignored: Mask, wanted: Array, allowed: Array) -> Loss | None:
+    """The loss of the last truncation, where it alone takes a right value out of what is allowed.
+
+    `wanted` is what the board delivers and `allowed` the allowed error, both in counts.
+    """
+    looked_at = computed.in_range & ~ignored
+    with np.errstate(invalid="ignore"):
+        leaves = looked_at & (np.abs(computed.held - wanted) > allowed)
+        meant_well = (np.abs(computed.real - wanted) <= allowed * _ROUNDING)[looked_at].all()
+    if not leaves.any() or not meant_well:
+        return None
+    lost = np.where(looked_at, computed.held - computed.real, 0.0)
+    index = int(np.abs(lost).argmax())
+    return Loss(
+        node=next(iter(_dividing(computed.expression)), computed.expression),
+        index=index,
+        counts=float(lost[index]),
+        lost=lost,
+        at_end=True,
+    )
 
 
 def _lost(computed: Evaluation, held: Array, looked_at: Mask) -> Array:

@@ -131,11 +131,16 @@ def _harmless(fault: Fault) -> bool:
 
 
 def _harm(computed: Evaluation, fault: Fault) -> Mask:
-    """The codes at which the result would be nearer to what is meant without the reduction."""
+    """The codes at which the result would be nearer to what is meant without the reduction.
+
+    One count is no harm: modular arithmetic may come back exactly but for the way it rounds.
+    """
     without = computed.of(widened(computed.expression, [fault.node]))
     with np.errstate(invalid="ignore"):
-        better = np.abs(without - computed.meant) < np.abs(computed.held - computed.meant)
-    return np.asarray(fault.mask & better, dtype=np.bool_)
+        off = np.abs(computed.held - computed.meant)
+        better = np.abs(without - computed.meant) < off
+    counts = 1.0 if computed.expression.type.is_integer else 0.0
+    return np.asarray(fault.mask & better & (off > counts), dtype=np.bool_)
 
 
 _Below = dict[int, frozenset[int]]

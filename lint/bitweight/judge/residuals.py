@@ -37,10 +37,8 @@ def residual(question: Question, view: View) -> str | None:
         return None
     at = _sample(question)
     codes = question.codes[at].astype(np.float64)
-    wanted = codes * nearest(view.board.gain, 64) + nearest(view.board.offset, 64)
-    value = (codes * nearest(line.gain, 64) + nearest(line.offset, 64)) * nearest(
-        view.scale, 64
-    ) + float(question.zero)
+    wanted = _along(view.board, codes)
+    value = _along(line, codes) * nearest(view.scale, 64) + nearest(question.zero, 64)
     if not _leaves(question, view.scale, at, value - wanted):
         return None
     if same(line.gain, target.gain):
@@ -49,6 +47,10 @@ def residual(question: Question, view: View) -> str | None:
     tilt = abs(line.gain - target.gain) * span
     moved = abs(line.offset - target.offset)
     return "offset" if tilt <= target.tolerance < moved else "gain"
+
+
+def _along(line: RealLine | BoardLine, codes: Array) -> Array:
+    return codes * nearest(line.gain, 64) + nearest(line.offset, 64)
 
 
 def _is_missed_coding(
@@ -75,11 +77,16 @@ def curve_leaves(question: Question) -> bool:
     return _leaves(question, scale, at, error)
 
 
+def is_level(question: Question) -> bool:
+    """Whether the code means the same value for every code."""
+    return bool(np.unique(_real_values(question, _sample(question))).size == 1)
+
+
 def bends(question: Question, view: View) -> bool:
     """Whether the code leaves its own straight stretch otherwise than by a clamp or a jump."""
     at = _sample(question)
     value = _real_values(question, at)
-    line = question.codes[at] * nearest(view.line.gain, 64) + nearest(view.line.offset, 64)
+    line = _along(view.line, question.codes[at].astype(np.float64))
     distance = value - line
     size = max(1.0, float(np.abs(line).max()))
     off = np.isfinite(value) & (np.abs(distance) > _STRAIGHT * size)
@@ -113,7 +120,7 @@ def _sample(question: Question) -> NDArray[np.int64]:
 
 def _leaves(question: Question, scale: Fraction, at: NDArray[np.int64], error: Array) -> bool:
     whole = question.conversion.expression.type.is_integer
-    step = float(abs(scale)) if whole else 0.0
+    step = nearest(abs(scale), 64) if whole else 0.0
     allowed = np.broadcast_to(question.allowed(step), question.codes.shape)[at]
     return bool((np.abs(error) > allowed * (1 + 1e-9)).any())
 

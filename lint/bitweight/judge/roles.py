@@ -9,14 +9,17 @@ from dataclasses import replace
 from fractions import Fraction
 from itertools import combinations, islice
 
+import numpy as np
+
 from bitweight.arithmetic.expressions import Leaf
 from bitweight.judge.effects import Bench, bench
 from bitweight.judge.explanations import EffectPoint, Explanation, WrongConstant
-from bitweight.judge.knobs import Knob, is_power, steadied
+from bitweight.judge.knobs import Knob, is_power
 from bitweight.judge.meanings import Scaling, nearest, snaps
 from bitweight.judge.questions import BoardLine, Question, StatedRole
 from bitweight.judge.repairs import Repair, fact_repair
-from bitweight.judge.residuals import bends, culprit, curve_leaves, residual
+from bitweight.judge.residuals import bends, culprit, curve_leaves, is_level, residual
+from bitweight.judge.substitutions import steadied
 from bitweight.judge.views import Answer, View, smallest_answer, views
 from bitweight.judge.wordings import cancelling_constants, wrong_constants
 
@@ -40,10 +43,14 @@ def explain(question: Question) -> Explanation:
     """
     if not question.lines:
         return Explanation()
-    question = _steadied(question)
+    with np.errstate(all="ignore"):
+        return _explained(_steadied(question))
+
+
+def _explained(question: Question) -> Explanation:
     ways = tuple(views(question))
     if not ways:
-        return Explanation(residual="curve" if curve_leaves(question) else None)
+        return _without_line(question)
     answer = smallest_answer(ways)
     if answer is not None and answer.repairs:
         return _wrong(question, answer)
@@ -51,6 +58,16 @@ def explain(question: Question) -> Explanation:
     if bends(question, view):
         return _with_line(question, view, Explanation(residual="curve"))
     return _kept(question, view, explained=answer is not None)
+
+
+def _without_line(question: Question) -> Explanation:
+    """The code is no straight line, or a level one."""
+    if not curve_leaves(question):
+        return Explanation()
+    if is_level(question):
+        wanted = question.lines[0].gain
+        return Explanation(residual="gain", gain=Fraction(0), wanted_gain=wanted)
+    return Explanation(residual="curve")
 
 
 def _steadied(question: Question) -> Question:

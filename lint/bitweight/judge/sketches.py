@@ -9,15 +9,18 @@ from dataclasses import dataclass
 from fractions import Fraction
 from itertools import pairwise
 
+import numpy as np
+
 from bitweight.arithmetic.expressions import Expression
 from bitweight.arithmetic.reals import RealForm, real_form
 from bitweight.judge.knobs import Key
 
 Values = Mapping[Key, Fraction]
 _PROBES = 9
-_MOST_NODES = 400_000
+_MOST_NODES = 150_000
+_MOST_EXACT_NODES = 3_000
 _FEWEST_LINES = 12
-"""Nodes evaluated for one sketch, about a second; a search beyond has no explanation to offer."""
+"""Nodes evaluated for one sketch, half a second at most; a search beyond explains nothing."""
 RELATIVE = Fraction(1, 10**9)
 """Two exact numbers closer than this are one: room for constants that are themselves rounded."""
 
@@ -57,18 +60,28 @@ class Sketch:
 
     def _drawn(self, values: Values) -> RealLine | None:
         (first, first_word), (last, last_word) = self._ends
-        low, high = self._form.exact(first_word, values), self._form.exact(last_word, values)
+        low, high = _values(self._form, (first_word, last_word), values)
         if low is None or high is None:
             return None
         gain = (high - low) / (last - first)
         return RealLine(gain, low - gain * first)
 
 
+def _values(form: RealForm, words: Sequence[int], values: Values) -> list[Fraction | None]:
+    """The real values at some words: exact, or in binary64 where exact numbers would grow long."""
+    if len(form.order) <= _MOST_EXACT_NODES:
+        return [form.exact(word, values) for word in words]
+    column = np.array(words, dtype=np.int64)
+    found = np.broadcast_to(form.floats(lambda _: column, values), column.shape)
+    return [Fraction(float(value)) if np.isfinite(value) else None for value in found]
+
+
 def sketch(expression: Expression, codes: Sequence[int], words: Sequence[int]) -> Sketch | None:
     """The sketch of an expression over its longest straight stretch; None without one."""
     form = real_form(expression)
     chosen = sorted({index * (len(codes) - 1) // (_PROBES - 1) for index in range(_PROBES)})
-    points = [(codes[i], words[i], form.exact(words[i])) for i in chosen if codes]
+    at = [words[i] for i in chosen] if codes else []
+    points = zip((codes[i] for i in chosen), at, _values(form, at, {}), strict=False)
     known = [(code, word, value) for code, word, value in points if value is not None]
     stretch = _longest_straight(known)
     if stretch is None:

@@ -75,6 +75,8 @@ def _decimal(match: re.Match[str], value: Fraction) -> str | None:
     written = len(match["part"] or "")
     decimals = _decimals(mantissa, written)
     digits = _fixed(mantissa, decimals)
+    if value and not digits.strip("0."):
+        return None
     if not decimals and match["point"]:
         digits += "."
     mark = f"{match['mark']}{match['exponent']}" if match["mark"] else ""

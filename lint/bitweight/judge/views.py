@@ -11,13 +11,15 @@ from fractions import Fraction
 import numpy as np
 
 from bitweight.arithmetic.expressions import Expression, Leaf
-from bitweight.judge.knobs import Key, Knob, decades, grouped, knobs
+from bitweight.judge.knobs import Key, Knob, decades, knobs
 from bitweight.judge.meanings import terms
 from bitweight.judge.questions import BoardLine, Question
 from bitweight.judge.repairs import Layout, Repair, rank
 from bitweight.judge.roots import Target
-from bitweight.judge.searches import Search, smallest
+from bitweight.judge.searches import smallest
 from bitweight.judge.sketches import RealLine, Sketch, sketch
+from bitweight.judge.substitutions import grouped
+from bitweight.judge.trials import Search
 
 _MOST_WRONG = 3
 _PROBES = 9

@@ -83,6 +83,14 @@ CASES = [
     case(
         "100 % absolute", CONVERTER + CHANNEL + "[reference.a]\nvoltage=¦'2 V ± 2 V'\n", "reaches 0"
     ),
+    case(
+        "same name",
+        REFERENCE.replace("vref", "¦vref")
+        + "[supply.vref]\nvoltage = '5 V'\n"
+        + CONVERTER
+        + CHANNEL,
+        "'vref' is another supply already",
+    ),
     # Converters
     case("0 bits", REFERENCE + "[converter.adc]\nbits = ¦0\n" + CHANNEL, "from 1 to 32, found 0"),
     case(
@@ -342,6 +350,13 @@ def test_lists_and_chains_of_a_variant_replace() -> None:
     """A chain in a variant stands in place of the base's, stage for stage."""
     text = SMALLEST + "[variant.bare.channel.battery]\nchain = []\n"
     assert board_from_text(text, file="b", variant="bare").channels[0].chain == ()
+
+
+def test_a_reference_may_be_named_like_its_supply() -> None:
+    """A supply that serves as reference needs no second name."""
+    text = "[supply.avcc]\nvoltage = '5 V'\n[reference.avcc]\nsupply = 'avcc'\n"
+    board = board_from_text(text + CONVERTER + CHANNEL, file="b")
+    assert board.converters[0].reference.supply == board.supplies[0]
 
 
 def test_an_unknown_variant_is_a_usage_error() -> None:

@@ -35,6 +35,15 @@ def test_a_circle_of_copies_is_a_mistake_of_each() -> None:
     assert all("copies itself" in mistake.message for mistake in mistakes)
 
 
+def test_endless_copying_is_refused() -> None:
+    """A chain of copies longer than anybody writes is a mistake, and costs little."""
+    names = "".join(f"[channel.c{n}]\nlike = 'c{n + 1}'\n" for n in range(40))
+    mistakes = mistakes_of(BOARD + names + "[channel.c40]\n")
+    assert {mistake.message for mistake in mistakes} == {
+        "like: copied through more than 16 channels"
+    }
+
+
 def test_a_mistake_in_a_copied_channel_is_said_once() -> None:
     """Copies do not multiply the mistakes of what they copy."""
     mistakes = mistakes_of(BOARD + "input = -1\n[channel.b]\nlike = 'tank'\n")

@@ -71,6 +71,7 @@ def test_a_unit_says_what_one_count_is() -> None:
         ("X = { is = 'gain', value = 3 }", "is and value are both given"),
         ("X = { unit = 'mV' }", "missing key 'is' or 'value'"),
         ("X = { is = 'code x' }", "missing key 'at'"),
+        ("X = { is = 'code x', at = '1 A' }", "at is in A but the channel's unit is V"),
         ("X = true", "expected a role like"),
         ("' @ motor.c' = 'gain'", "expected a C expression as the key"),
     ],

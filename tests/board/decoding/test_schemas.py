@@ -2,6 +2,7 @@
 
 import json
 from importlib.resources import files
+from pathlib import Path
 
 import jsonschema
 import pytest
@@ -9,6 +10,7 @@ import tomli
 
 from bitweight.board.decoding.boards import TABLES
 from bitweight.board.decoding.schemas import board_schema, schema_text
+from board.mistaken import mistakes_of
 from board.samples import HATCHERY, SMALLEST
 
 
@@ -52,3 +54,14 @@ def test_wrong_board_files_do_not_fit(old: str, new: str) -> None:
     data = json.loads(json.dumps(tomli.loads(HATCHERY.replace(old, new, 1)), default=str))
     with pytest.raises(jsonschema.ValidationError):
         jsonschema.validate(data, board_schema())
+
+
+def test_the_corpus_fits_the_schema() -> None:
+    """Every board file of the corpus without mistakes is accepted by the published schema."""
+    validator = jsonschema.Draft202012Validator(board_schema())
+    corpus = Path(__file__).parents[3] / "corpus"
+    texts = [path.read_text(encoding="utf-8") for path in sorted(corpus.glob("*/*/board.toml"))]
+    right = [text for text in texts if not mistakes_of(text)]
+    assert right
+    for text in right:
+        validator.validate(json.loads(json.dumps(tomli.loads(text), default=str)))

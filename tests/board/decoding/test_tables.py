@@ -8,6 +8,7 @@ from bitweight.board.decoding.tables import (
     Mistakes,
     described,
     nearest,
+    printable,
     read_all,
     read_table,
     shortened,
@@ -118,6 +119,12 @@ def test_long_texts_are_cut_and_names_are_matched() -> None:
     assert len(shortened("x" * 500)) == 60
     assert nearest("refrence", ["reference", "bits"]) == ", did you mean 'reference'?"
     assert nearest("zzz", ["reference"]) == ""
+
+
+def test_messages_show_control_characters_escaped() -> None:
+    """Escape sequences and direction marks in names reach no terminal; length is bounded."""
+    assert printable("a\x1b[31m\u202e é\n") == "a\\x1b[31m\\u202e é\\n"
+    assert len(printable("x" * 10_000)) < 500
 
 
 def test_wrong_is_one_mistake() -> None:

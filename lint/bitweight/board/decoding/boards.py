@@ -24,7 +24,9 @@ from bitweight.board.hardware import (
     Board,
     Channel,
     Deviation,
+    Reference,
     Source,
+    Supply,
     Target,
     Variant,
 )
@@ -116,10 +118,8 @@ def _board(root: Table, file: str, mistakes: Mistakes) -> Board:
             mistakes.add(key.place, f"unknown table '{shortened(key.name)}'{hint}")
     rails = supplies(root, mistakes)
     known = references(root, rails, mistakes)
-    sources: dict[str, Source | None] = {**rails, **known}
-    for name in sorted(rails.keys() & known.keys()):
-        place = read_all(root.get("reference"), "reference", mistakes)[name][0]
-        mistakes.add(place, f"'{shortened(name)}' is a supply already; give it another name")
+    sources: dict[str, Source | None] = {**known, **rails}
+    _check_names(rails, known, mistakes)
     devices = converters(root, known, mistakes)
     found = channels(root, devices, sources, mistakes)
     _check_designators(found, mistakes)
@@ -146,6 +146,17 @@ def _board(root: Table, file: str, mistakes: Mistakes) -> Board:
         deviations=_deviations(root, mistakes),
         place=facts.table.place,
     )
+
+
+def _check_names(
+    rails: Mapping[str, Supply | None], known: Mapping[str, Reference | None], mistakes: Mistakes
+) -> None:
+    """A reference may share its supply's name, but not that of another one."""
+    for name, reference in known.items():
+        rail = rails.get(name)
+        if reference is not None and rail is not None and reference.supply != rail:
+            message = f"'{shortened(name)}' is another supply already; give it another name"
+            mistakes.add(reference.place, message)
 
 
 def _section(

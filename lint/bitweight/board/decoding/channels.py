@@ -84,6 +84,8 @@ class ChannelFields:
 
 
 _F = ChannelFields
+_LONGEST_COPY = 16
+"""Channels that copy channels; each one costs a merge for every channel."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -130,6 +132,10 @@ def _with_copied(
         if base_name not in tables:
             hint = nearest(base_name, tables)
             message = f"like: no channel '{shortened(base_name)}' is defined{hint}"
+            mistakes.add(like.place, message)
+            return whole
+        if len(seen) > _LONGEST_COPY:
+            message = f"like: copied through more than {_LONGEST_COPY} channels"
             mistakes.add(like.place, message)
             return whole
         seen.add(base_name)

@@ -18,6 +18,7 @@ from bitweight.board.parts import Part
 from bitweight.board.stages import parts_of
 from bitweight.documents import Key, Scalar, Table, Value
 from bitweight.places import Place
+from bitweight.units import named
 
 ROLES = (
     "full-scale",
@@ -51,7 +52,7 @@ def constants(
     for expression, (place, value) in read_all(
         root.get("constants"), "constants", mistakes
     ).items():
-        fact = _constant(expression, place, value, names, mistakes)
+        fact = _constant(expression, place, value, found, names, mistakes)
         if fact is not None:
             facts.append(fact)
     return tuple(facts)
@@ -83,6 +84,7 @@ def _constant(
     expression: str,
     place: Place,
     value: Value,
+    found: Mapping[str, Channel | None],
     names: Mapping[str, frozenset[str]],
     mistakes: Mistakes,
 ) -> ConstantFact | None:
@@ -92,6 +94,7 @@ def _constant(
         mistakes.add(place, "expected a C expression as the key, in quotes where it is no name")
     role, name = _role(decoded, names, mistakes)
     _check(decoded, role, mistakes)
+    _check_at(decoded, found.get(name or ""), mistakes)
     return ConstantFact(
         expression=text.strip(),
         where=where.strip() or None,
@@ -150,3 +153,11 @@ def _check(decoded: Decoded, role: str | None, mistakes: Mistakes) -> None:
         mistakes.add(place, message)
     if role == "code" and not decoded.given(_F.AT):
         mistakes.add(place, f"missing key 'at' in {decoded.where}: the quantity of the code")
+
+
+def _check_at(decoded: Decoded, owner: Channel | None, mistakes: Mistakes) -> None:
+    """The quantity of a code is of the kind of its channel."""
+    at = decoded.get(_F.AT)
+    if at is not None and owner is not None and not at.unit.fits(owner.unit):
+        message = f"at is in {named(at.unit)} but the channel's unit is {named(owner.unit)}"
+        mistakes.add(decoded.place(_F.AT), message)

@@ -112,30 +112,35 @@ def _divider(maker: StageMaker, decoded: Decoded) -> Stage:
 
 
 def _amplifier(maker: StageMaker, decoded: Decoded) -> Stage:
-    gain = maker.part(decoded, _F.GAIN)
-    topology, other_field = _wiring(decoded)
-    feedback = other = None
-    if not decoded.given(_F.GAIN):
-        if topology is None:
-            message = "missing gain, or topology with feedback and ground or input"
-            maker.mistakes.add(decoded.table.place, f"{message}, in an amplifier stage")
-        else:
-            what = f"{topology.value} amplifier"
-            feedback = maker.needed(decoded, _F.FEEDBACK, f"an {what}".replace("an non", "a non"))
-            other = maker.needed(decoded, other_field, f"an {what}".replace("an non", "a non"))
-            if topology is Topology.INVERTING and not feedback.quantity.value:
-                maker.mistakes.add(feedback.place, "feedback of 0 ohm makes the gain 0")
-    else:
+    topology, other = _wiring(decoded)
+    if decoded.given(_F.GAIN):
         _only_gain(maker, decoded)
+    elif topology is None:
+        message = "missing gain, or topology with feedback and ground or input"
+        maker.mistakes.add(decoded.table.place, f"{message}, in an amplifier stage")
+    by_parts = topology is not None and not decoded.given(_F.GAIN)
     return Amplifier(
-        gain=gain,
+        gain=maker.part(decoded, _F.GAIN),
         topology=topology,
-        feedback=feedback,
-        other=other,
+        feedback=_feedback(maker, decoded, topology) if by_parts else None,
+        other=maker.needed(decoded, other, _amplifier_kind(topology)) if by_parts else None,
         offset=maker.offset(decoded),
         ratiometric=maker.source(decoded, _F.RATIOMETRIC),
         place=decoded.table.place,
     )
+
+
+def _feedback(maker: StageMaker, decoded: Decoded, topology: Topology | None) -> Part:
+    """The feedback resistor; 0 ohm makes a follower, but turns an inverting amplifier off."""
+    part = maker.needed(decoded, _F.FEEDBACK, _amplifier_kind(topology))
+    if topology is Topology.INVERTING and not part.quantity.value:
+        maker.mistakes.add(part.place, "feedback of 0 ohm makes the gain 0")
+    return part
+
+
+def _amplifier_kind(topology: Topology | None) -> str:
+    inverting = topology is Topology.INVERTING
+    return "an inverting amplifier stage" if inverting else "a non-inverting amplifier stage"
 
 
 def _wiring(decoded: Decoded) -> tuple[Topology | None, Field[Quantity]]:
