@@ -189,6 +189,15 @@ def coherent(dimension: Dimension) -> Unit:
     return Unit(text=_spelled(dimension), dimension=dimension)
 
 
+def under_bar(unit: Unit) -> Unit:
+    """What stands under the bar of a unit: degC for "mV/degC", with its own zero."""
+    _, _, below = unit.text.partition("/")
+    try:
+        return parse_unit(below.strip("() "))
+    except UnitError:
+        return coherent(unit.below)
+
+
 def takes_prefix(unit: Unit) -> bool:
     """Whether the unit is a known one without a prefix, so that it can be shown with any."""
     return unit.text in _PREFIXABLE and unit == _KNOWN[unit.text] and unit.text not in ("degC", "K")

@@ -47,7 +47,8 @@ def test_a_comment_speaks_where_the_name_does_not() -> None:
 def test_a_constant_used_twice_is_one() -> None:
     """A constant is one knob however often it is used."""
     volts = const("5000", "VREF_MV")
-    assert len(knobs((raw() * volts / const("1024") + volts).node)) == 1
+    found = knobs((raw() * volts / const("1024") + volts).node)
+    assert [knob.leaf.text for knob in found] == ["5000", "1024"]
 
 
 def test_bits_of_shifts_and_constants_at_the_reading_are_told_apart() -> None:

@@ -12,7 +12,7 @@ from typing import ClassVar
 from bitweight.board.parts import Part, Share, Source, Values, nominal
 from bitweight.places import Place
 from bitweight.quantities import Quantity
-from bitweight.units import Unit
+from bitweight.units import Unit, under_bar
 
 
 @dataclass(frozen=True, slots=True)
@@ -140,7 +140,8 @@ class Shunt:
 class Linear:
     """A sensor with a straight line: `offset` at the quantity `at`, `sensitivity` from there.
 
-    All three in coherent units; the output follows `ratiometric`.
+    All three in coherent units; the output follows `ratiometric`. Without `at` the line starts at
+    the zero of the scale that the sensitivity is stated in: 0 degC for "10 mV/degC".
     """
 
     KIND: ClassVar[str] = "linear"
@@ -154,7 +155,8 @@ class Linear:
         """The measured quantity in to what the sensor gives."""
         follow = relative(self.ratiometric, values)
         slope = values(self.sensitivity) * follow
-        start = values(self.at) if self.at is not None else Fraction(0)
+        zero = under_bar(self.sensitivity.quantity.unit).zero
+        start = values(self.at) if self.at is not None else zero
         return Affine(slope, offset_volts(self.offset, values, follow) - slope * start)
 
 

@@ -230,15 +230,19 @@ def _inferred(frame: Frame, computed: Evaluation, explanation: Explanation) -> F
 
 
 def rough_scale(quantity: Array, held: Array) -> Fraction:
-    """The power of ten that brings the slope of one curve nearest to that of the other.
-
-    Slopes are medians from code to code, so that clamps do not count.
-    """
-    with np.errstate(invalid="ignore"):
-        wanted, found = (float(np.median(np.abs(np.diff(one)))) for one in (quantity, held))
-    if not (wanted > 0 and math.isfinite(found) and found > 0):
+    """The power of ten that brings the slope of one curve nearest to that of the other."""
+    wanted, found = _slope(quantity), _slope(held)
+    if not (wanted > 0 and found > 0):
         return Fraction(1)
     return Fraction(10) ** round(math.log10(wanted / found))
+
+
+def _slope(curve: Array) -> float:
+    """The median change from code to code where there is one: clamps do not count."""
+    with np.errstate(invalid="ignore"):
+        changes = np.abs(np.diff(curve))
+    moving = changes[np.isfinite(changes) & (changes > 0)]
+    return float(np.median(moving)) if moving.size else 0.0
 
 
 def _unknown(computed: Evaluation) -> str | None:
@@ -287,7 +291,7 @@ def _judged(
         ),
         worst_index=worst,
         points=_points(computed, allowed.quantity, value),
-        explanation=_unblamed(explanation) if coding else explanation,
+        explanation=_told(explanation, found, coding, outside=outside),
         operations=found.operations,
         loss=found.loss,
         clamps=found.clamps,
@@ -302,6 +306,12 @@ class _Faults:
     operations: tuple[WrongOperation, ...] = ()
     loss: Loss | None = None
     clamps: tuple[Clamp, ...] = ()
+
+    @property
+    def explains(self) -> bool:
+        """Whether the arithmetic goes wrong for codes in range."""
+        wrong = any(operation.in_range for operation in self.operations)
+        return wrong or self.loss is not None or bool(self.clamps)
 
 
 def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
@@ -330,9 +340,32 @@ def wrong_mask(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
     return reduce(np.logical_or, (one.mask for one in operations), np.array([False]))
 
 
-def _unblamed(explanation: Explanation) -> Explanation:
-    """An explanation that blames no constant: the coding explains the difference."""
-    return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
+def _told(
+    explanation: Explanation, found: _Faults, coding: Coding | None, *, outside: bool
+) -> Explanation:
+    """The explanation as it is reported.
+
+    A missed coding explains the difference alone: no constant is blamed. An error that leaves what
+    is allowed and that nothing else explains is never passed in silence.
+    """
+    if coding is not None:
+        return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
+    explained = explanation.wrong or explanation.residual or found.explains
+    if not outside or explained:
+        return explanation
+    return replace(explanation, residual=_residual(explanation))
+
+
+def _residual(explanation: Explanation) -> str:
+    """By what the lines differ, where they are known: "gain" or "offset", else "curve"."""
+    gain, wanted = explanation.gain, explanation.wanted_gain
+    if gain is None or wanted is None:
+        return "curve"
+    return "offset" if math.isclose(gain, wanted, rel_tol=_ALIKE) else "gain"
+
+
+_ALIKE = 1e-6
+"""Relative difference of two gains that no converter of 24 bits tells apart over its range."""
 
 
 def _worst_ratio(error: Array, allowed: Array, in_range: NDArray[np.bool_]) -> float:

@@ -29,7 +29,9 @@ def spelled(text: str, value: Fraction) -> str | None:
     if match := _whole_match(text):
         return _whole(match, round(value))
     match = _DECIMAL.fullmatch(text)
-    return None if match is None else _decimal(match, value)
+    if match is None or not (match["whole"] or match["part"]):
+        return None
+    return _decimal(match, value)
 
 
 def replacement(text: str, value: Fraction, model: DataModel) -> str | None:

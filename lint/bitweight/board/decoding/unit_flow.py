@@ -25,11 +25,11 @@ from bitweight.units import (
     VOLT,
     Dimension,
     Unit,
-    UnitError,
     coherent,
     named,
     parse_unit,
     product,
+    under_bar,
 )
 
 
@@ -60,7 +60,11 @@ def default_unit(stages: tuple[Stage, ...], *, to_pin: bool) -> Unit:
             return coherent(VOLT)
     match stages[:1]:
         case (Linear() as linear,):
-            return linear.at.quantity.unit if linear.at is not None else _under_bar(linear)
+            return (
+                linear.at.quantity.unit
+                if linear.at is not None
+                else under_bar(linear.sensitivity.quantity.unit)
+            )
         case (Thermistor() | Rtd(),):
             return parse_unit("degC")
         case (Table() as table,):
@@ -71,16 +75,6 @@ def default_unit(stages: tuple[Stage, ...], *, to_pin: bool) -> Unit:
             return coherent(_takes(first))
         case _:
             return coherent(VOLT)
-
-
-def _under_bar(stage: Linear) -> Unit:
-    """What stands under the bar of a sensitivity: degC for "10 mV/degC"."""
-    unit = stage.sensitivity.quantity.unit
-    _, _, below = unit.text.partition("/")
-    try:
-        return parse_unit(below.strip("() "))
-    except UnitError:
-        return coherent(unit.below)
 
 
 def _through(stages: tuple[Stage, ...], kind: Dimension) -> Dimension:
