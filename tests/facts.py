@@ -5,7 +5,6 @@ parsed; a test says only what matters to it and the rest stands as here.
 """
 
 from collections.abc import Callable, Sequence
-from dataclasses import replace
 from fractions import Fraction
 from typing import Any
 
@@ -394,8 +393,3 @@ def findings_of(
     """What a channel rule says about some cases."""
     run = facts(*cases, **changes)
     return tuple(found for one in cases for view in one.each for found in check(view, run))
-
-
-def with_model(one: Board, model: DataModel) -> Board:
-    """The board on another target."""
-    return replace(one, target=replace(one.target, model=model))

@@ -18,7 +18,8 @@ from bitweight.firmware.constants import Conflict, conflicts
 from bitweight.firmware.files import SourceTree
 from bitweight.firmware.outlines import line_text
 from bitweight.firmware.predefined import predefined
-from bitweight.firmware.symbols import Program, Unit
+from bitweight.firmware.symbols import Program
+from bitweight.firmware.units import Unit
 from bitweight.judge.aims import aim, givens, limit_aims
 from bitweight.judge.cases import Case, Facts, judge_case
 from bitweight.judge.deviations import Remark, remarks_in

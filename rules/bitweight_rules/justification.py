@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 
+from bitweight.judge.alignments import alignment_findings
 from bitweight.judge.cases import Case, Facts
 from bitweight.judge.corrections import constant_findings
 from bitweight.judge.explanations import WrongConstant
@@ -10,8 +11,9 @@ from bitweight.judge.rules import ChannelRule
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:
-    """One finding where the code is taken to stand elsewhere in its word."""
-    return constant_findings(case, RULE.name, _say)
+    """Where the code is taken to stand elsewhere in its word, or is configured to."""
+    yield from constant_findings(case, RULE.name, _say)
+    yield from alignment_findings(case, facts, RULE.name)
 
 
 def _say(wrong: WrongConstant) -> str:

@@ -88,3 +88,22 @@ def test_constant_ratio_in_integers() -> None:
     loss = _loss(c.op(c.op(c.op(c.code(), "*", "5000"), "/", "1024"), "*", ratio), tank)
     assert loss is not None
     assert loss.node is ratio
+
+
+@pytest.mark.parametrize(("allowed", "found"), [("10 mV", True), ("500 mV", True), ("1 V", False)])
+def test_coarse_end(allowed: str, found: bool) -> None:
+    """Whole counts that alone leave a stated allowed error are told, at the last division."""
+    c = C()
+    scaled = c.op(c.op(c.code(), "*", "5"), "/", "1024")
+    loss = _loss(scaled, facts.channel(count="1 V", allowed=allowed))
+    assert (loss is not None) == found
+    if loss is not None:
+        assert loss.at_end
+        assert loss.node is scaled
+
+
+def test_coarse_end_is_not_blamed_for_a_wrong_constant() -> None:
+    """Where the real value is outside already, the last division is not to blame."""
+    c = C()
+    scaled = c.op(c.op(c.code(), "*", "4"), "/", "1024")
+    assert _loss(scaled, facts.channel(count="1 V", allowed="100 mV")) is None

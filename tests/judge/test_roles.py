@@ -6,10 +6,14 @@ from fractions import Fraction
 import pytest
 
 from bitweight.arithmetic.building import binary, choose
+from bitweight.arithmetic.expressions import Leaf, Literal
+from bitweight.arithmetic.literals import literal
 from bitweight.board.converters import Coding
 from bitweight.board.facts import Role
 from bitweight.judge.findings import Level
+from bitweight.judge.knobs import leaf_key
 from bitweight.judge.roles import Explanation, StatedRole, explain
+from bitweight.judge.substitutions import replaced
 from operands import HOST, Board, Operand, const, fact, number, question, raw, stored
 
 MILLI = Fraction(1, 1000)
@@ -354,6 +358,33 @@ def test_wrong_constants_are_named(
 ) -> None:
     """Exactly the constants that contradict the board are named, each under its rule."""
     assert sorted(found(explain(question(board, code, scale)))) == sorted(expected)
+
+
+@pytest.mark.parametrize(("board", "code", "scale", "expected"), WRONG.values(), ids=WRONG.keys())
+def test_replacements_make_the_channel_right(
+    board: Board, code: Operand, scale: Fraction, expected: list[tuple[str, str, str]]
+) -> None:
+    """With every offered replacement written, the same question finds nothing wrong."""
+    wrong = explain(question(board, code, scale)).wrong
+    assert len(wrong) == len(expected)
+    edits = {leaf_key(one.leaf): one for one in wrong if one.leaf and one.replacement}
+    if len(edits) < len(wrong):
+        assert not all(one.replacement for one in wrong)
+        return
+    literals = {
+        key: rewritten(one.leaf, one.replacement)
+        for key, one in edits.items()
+        if one.leaf and one.replacement
+    }
+    again = explain(question(board, Operand(replaced(code.node, literals)), scale))
+    assert not again.wrong
+    assert again.residual is None
+
+
+def rewritten(leaf: Leaf, text: str) -> Literal:
+    """A constant spelled anew at its place."""
+    value, type_ = literal(text, HOST)
+    return Literal(value=value, type=type_, leaf=replace(leaf, text=text))
 
 
 @pytest.mark.parametrize("count", ["4096", "4095"])

@@ -86,3 +86,15 @@ def test_wrong_product_is_not_its_matter() -> None:
     c = C(facts.AVR)
     scaled = c.op(c.op(c.code("int16_t"), "*", "5000"), "/", "1024")
     assert findings_of(RULE.check, facts.case(scaled, model=facts.AVR)) == ()
+
+
+def test_counts_too_coarse_for_the_stated_error() -> None:
+    """A result cut to whole volts leaves a stated 10 mV by itself."""
+    c = C()
+    scaled = c.op(c.op(c.code(), "*", "5"), "/", "1024")
+    (found,) = _found(scaled, facts.channel(count="1 V", allowed="10 mV"))
+    assert found.message == (
+        "tank_held is cut to whole counts: up to 999 mV lost, at code 819, leaves the allowed "
+        "error by itself"
+    )
+    assert (found.level, found.expected) == (Level.ERROR, "finer counts of the result")

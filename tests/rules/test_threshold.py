@@ -1,5 +1,6 @@
 """Rule `threshold`."""
 
+from dataclasses import replace
 from typing import Any
 
 import pytest
@@ -32,7 +33,7 @@ def _found(
 ) -> tuple[Finding, ...]:
     c = C()
     base = facts.channel() if tank is None else tank
-    limited = facts.replace(base, limits=(facts.limit("relief", quantity, **changes),))
+    limited = replace(base, limits=(facts.limit("relief", quantity, **changes),))
     case = facts.case(c.op(c.op(c.code(), "*", "5000"), "/", "1024"), of=limited)
     return findings_of(RULE.check, case, thresholds=(_threshold(text),))
 

@@ -1,11 +1,13 @@
 """Rule `transfer-gain`: a slope that no single constant explains."""
 
+from dataclasses import replace
+
 import pytest
 
 from bitweight.arithmetic.expressions import Expression
 from bitweight.judge.findings import Level
 from bitweight_rules.transfer_gain import RULE
-from facts import C, case, channel, findings_of
+from facts import C, case, channel, findings_of, linear, part, shunt
 
 
 def folded(gain: str) -> Expression:
@@ -40,3 +42,16 @@ def test_several_unexplained_constants_get_no_replacement() -> None:
     (one,) = findings_of(RULE.check, case(value))
     assert one.replacement is None
     assert one.place.line == 29
+
+
+def test_constants_that_are_no_board_facts_are_not_made_into_some() -> None:
+    """A span that the board file does not state is told by the line, not as a wild explanation."""
+    c = C()
+    volts = c.op(c.op(c.cast("long", c.code()), "*", c.number("5000", "VREF_MV")), "/", "1024")
+    current = c.op(c.op(volts, "*", "1000"), "/", c.number("150", "LOOP_R"))
+    above = c.op(current, "-", c.number("4000", "LOOP_ZERO_UA"))
+    level = c.op(c.op(above, "*", c.number("400", "LEVEL_CM")), "/", c.number("20000", "SPAN_UA"))
+    sensor = replace(linear("40 uA/cm"), offset=part("offset", "4 mA"), at=part("at", "0 cm"))
+    judged = channel(unit="cm", chain=(sensor, shunt("150 ohm")), ends=None, count="cm")
+    (one,) = findings_of(RULE.check, case(level, of=judged))
+    assert one.expected == "0.8138 cm per count"

@@ -5,7 +5,8 @@ from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 
 from bitweight.firmware.macros import Macro
-from bitweight.firmware.symbols import Program, Unit
+from bitweight.firmware.symbols import Program
+from bitweight.firmware.units import Unit
 from bitweight.places import Place
 
 Evaluate = Callable[[Unit, str], int | float | None]

@@ -37,7 +37,7 @@ class Record:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
-class Callable_:
+class FunctionType:
     """A function."""
 
     returns: "ObjectType"
@@ -50,7 +50,7 @@ class Strange:
     name: str
 
 
-ObjectType = Arithmetic | Pointer | Array | Record | Callable_ | Strange
+ObjectType = Arithmetic | Pointer | Array | Record | FunctionType | Strange
 
 
 @dataclass(frozen=True, slots=True)

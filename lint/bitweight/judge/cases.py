@@ -15,7 +15,8 @@ from bitweight.board.hardware import Board, Channel
 from bitweight.firmware.constants import Conflict
 from bitweight.judge.ends import agree, without_bare_copies
 from bitweight.judge.evaluations import Frame, steady_words
-from bitweight.judge.judgements import Judgement, Point, Side, judge_conversion
+from bitweight.judge.judgements import Judgement, judge_conversion
+from bitweight.judge.sides import Point, Side
 from bitweight.limits import Limits
 from bitweight.places import Place
 from bitweight.trace.conversions import Conversion, Trace

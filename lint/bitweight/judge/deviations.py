@@ -16,7 +16,6 @@ from bitweight.judge.findings import Finding, Level
 from bitweight.places import Place
 
 RULE = "deviation"
-CommentLines = Callable[[Place], tuple[str, ...]]
 
 _REMARK = re.compile(
     r"(?:/\*|//|^\s*\*).*?\bdeviation\(\s*([A-Za-z-]+)\s*\)\s*:?\s*(.*?)\s*(?:\*/|$)"

@@ -7,7 +7,6 @@ for the user.
 import math
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
-from fractions import Fraction
 from functools import reduce
 
 import numpy as np
@@ -15,12 +14,9 @@ from numpy.typing import NDArray
 
 from bitweight.arithmetic.evaluation import Curve
 from bitweight.arithmetic.expressions import Unknown
-from bitweight.arithmetic.lines import fit, is_straight
 from bitweight.arithmetic.values import FaultKind
 from bitweight.board.chains import Ideal
 from bitweight.board.converters import Coding
-from bitweight.board.facts import chain_facts
-from bitweight.board.hardware import Board
 from bitweight.judge.allowances import Allowance, allowance
 from bitweight.judge.clamps import Clamp, clamps_in_range
 from bitweight.judge.codings import ResultScale, other_coding
@@ -32,32 +28,19 @@ from bitweight.judge.evaluations import (
     evaluated,
     presented,
 )
+from bitweight.judge.findings import Level
+from bitweight.judge.inquiries import accepted_line, question
 from bitweight.judge.losses import Loss, coarse_end, truncation_loss
 from bitweight.judge.operations import WrongOperation, wrong_operations
-from bitweight.judge.roles import BoardLine, Explanation, Question, StatedRole, explain
+from bitweight.judge.roles import Explanation, explain
+from bitweight.judge.scalings import inferred_scale, rough_scale
 from bitweight.judge.scans import with_scanned
+from bitweight.judge.sides import Point, Side, firmware_side, range_points
 from bitweight.judge.suffixes import suffix_for
 from bitweight.judge.units import ResultUnit, result_unit
 from bitweight.trace.conversions import Conversion
 
 Array = NDArray[np.float64]
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Point:
-    """The reading at one code: what the board delivers and what the firmware reports."""
-
-    at_count: int
-    hardware: float
-    firmware: float
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Side:
-    """Gain (channel units per count) and offset of a side's line; None where it is no line."""
-
-    gain: float | None
-    offset: float | None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -121,8 +104,8 @@ def judge_conversion(frame: Frame) -> Judgement | str:
     if reason is not None:
         return reason
     explanation = explain(question(frame, unit, computed))
-    accepted = replace(frame, side=_accepted(frame.side, explanation.count))
-    scale = unit.scale if unit.scale is not None else _inferred(frame, computed, explanation)
+    accepted = replace(frame, side=accepted_line(frame.side, explanation.count))
+    scale = unit.scale if unit.scale is not None else inferred_scale(frame, computed, explanation)
     result = ResultScale(
         scale=float(scale),
         zero=float(unit.zero),
@@ -130,72 +113,6 @@ def judge_conversion(frame: Frame) -> Judgement | str:
     )
     computed = with_scanned(accepted, result, computed)
     return _judged(accepted, result, computed, explanation, unit.unit_from)
-
-
-def question(frame: Frame, unit: ResultUnit, computed: Evaluation) -> Question:
-    """What the search for wrong constants is asked about a conversion."""
-    channel = frame.side.channel
-    converter = channel.converter
-    allowed = allowance(frame.side, computed.codes, frame.board.coverage)
-    return Question(
-        conversion=frame.conversion,
-        model=frame.model,
-        lines=board_lines(frame.side),
-        facts=chain_facts(channel),
-        scale=unit.scale,
-        zero=unit.zero,
-        unit=channel.unit.text,
-        codes=computed.codes,
-        words=computed.words,
-        in_range=computed.in_range,
-        quantity=allowed.quantity,
-        allowed=allowed.at_step,
-        lsb=allowed.lsb,
-        bits=converter.width,
-        coding=converter.coding,
-        shift=converter.shift,
-        word_bits=converter.word_bits,
-        count_stated=converter.full_scale_stated or converter.family is not None,
-        word_stated=converter.justified_stated or converter.word_bits_stated,
-        stated=stated_roles(frame.board),
-        others=frame.others,
-    )
-
-
-def board_lines(side: Ideal) -> tuple[BoardLine, ...]:
-    """The ideal line once for each full-scale count that the board file accepts."""
-    converter = side.channel.converter
-    return tuple(_line(side, count) for count in converter.accepted_full_scales)
-
-
-def _line(side: Ideal, count: Fraction) -> BoardLine:
-    """A larger full-scale count makes every count worth less; the chain's own offset stays."""
-    converter = side.channel.converter
-    gain = side.gain * converter.full_scale / count
-    chain = side.offset - side.gain * converter.code_shift
-    return BoardLine(count=count, gain=gain, offset=chain + gain * converter.code_shift)
-
-
-def _accepted(side: Ideal, count: Fraction | None) -> Ideal:
-    """The ideal line under the full-scale count by which the firmware is right."""
-    if count is None or count not in side.channel.converter.accepted_full_scales:
-        return side
-    line = _line(side, count)
-    return replace(side, gain=line.gain, offset=line.offset)
-
-
-def stated_roles(board: Board) -> tuple[StatedRole, ...]:
-    """What the board file's [constants] say that constants stand for."""
-    return tuple(
-        StatedRole(
-            name=fact.expression,
-            role=fact.role,
-            subject=fact.name,
-            unit=None if fact.unit is None else fact.unit.scale,
-        )
-        for fact in board.constants
-        if fact.role is not None and fact.role != "code"
-    )
 
 
 def _likeliest(frame: Frame, unit: ResultUnit, codes: Codes) -> Evaluation:
@@ -221,30 +138,6 @@ def _rough_error(frame: Frame, unit: ResultUnit, computed: Evaluation) -> float:
     return float(error.max()) if np.isfinite(error).all() else math.inf
 
 
-def _inferred(frame: Frame, computed: Evaluation, explanation: Explanation) -> Fraction:
-    """The power of ten under which the explanation holds, or the likeliest where it has no line."""
-    if explanation.gain is not None:
-        return Fraction(10) ** explanation.decade
-    inside = computed.in_range
-    return rough_scale(frame.side.quantity(computed.codes)[inside], computed.real[inside])
-
-
-def rough_scale(quantity: Array, held: Array) -> Fraction:
-    """The power of ten that brings the slope of one curve nearest to that of the other."""
-    wanted, found = _slope(quantity), _slope(held)
-    if not (wanted > 0 and found > 0):
-        return Fraction(1)
-    return Fraction(10) ** round(math.log10(wanted / found))
-
-
-def _slope(curve: Array) -> float:
-    """The median change from code to code where there is one: clamps do not count."""
-    with np.errstate(invalid="ignore"):
-        changes = np.abs(np.diff(curve))
-    moving = changes[np.isfinite(changes) & (changes > 0)]
-    return float(np.median(moving)) if moving.size else 0.0
-
-
 def _unknown(computed: Evaluation) -> str | None:
     """Why the value is not known for codes in range."""
     for fault in computed.curve.faults:
@@ -266,6 +159,8 @@ def _judged(
     error = value - allowed.quantity
     outside = _worst_ratio(error, limit, computed.in_range) > 1
     coding = other_coding(computed, frame, result) if outside else None
+    meant = computed.real * result.scale + result.zero - allowed.quantity
+    meant_ill = _worst_ratio(meant, limit, computed.in_range) > _ROUNDING
     found = _Faults() if coding else _faults(computed, result, allowed)
     worst = _worst_index(error, computed.in_range)
     return Judgement(
@@ -286,12 +181,14 @@ def _judged(
         lsb=allowed.lsb,
         unit_from=unit_from,
         hardware=Side(gain=float(frame.side.gain), offset=float(frame.side.offset)),
-        firmware=_side(
+        firmware=firmware_side(
             computed, value, wrong_mask(found.operations), allowed.resolution(result.step)
         ),
         worst_index=worst,
-        points=_points(computed, allowed.quantity, value),
-        explanation=_told(explanation, found, coding, outside=outside),
+        points=range_points(computed, allowed.quantity, value),
+        explanation=_unblamed(explanation)
+        if coding
+        else _completed(explanation, meant_ill=meant_ill and not found.clamps),
         operations=found.operations,
         loss=found.loss,
         clamps=found.clamps,
@@ -306,12 +203,6 @@ class _Faults:
     operations: tuple[WrongOperation, ...] = ()
     loss: Loss | None = None
     clamps: tuple[Clamp, ...] = ()
-
-    @property
-    def explains(self) -> bool:
-        """Whether the arithmetic goes wrong for codes in range."""
-        wrong = any(operation.in_range for operation in self.operations)
-        return wrong or self.loss is not None or bool(self.clamps)
 
 
 def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
@@ -340,18 +231,15 @@ def wrong_mask(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
     return reduce(np.logical_or, (one.mask for one in operations), np.array([False]))
 
 
-def _told(
-    explanation: Explanation, found: _Faults, coding: Coding | None, *, outside: bool
-) -> Explanation:
-    """The explanation as it is reported.
+def _unblamed(explanation: Explanation) -> Explanation:
+    """An explanation that blames no constant: the coding explains the difference."""
+    return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
 
-    A missed coding explains the difference alone: no constant is blamed. An error that leaves what
-    is allowed and that nothing else explains is never passed in silence.
-    """
-    if coding is not None:
-        return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
-    explained = explanation.wrong or explanation.residual or found.explains
-    if not outside or explained:
+
+def _completed(explanation: Explanation, *, meant_ill: bool) -> Explanation:
+    """An explanation that does not pass in silence what the code means outside what is allowed."""
+    blamed = any(wrong.level is not Level.NOTE for wrong in explanation.wrong)
+    if not meant_ill or blamed or explanation.residual:
         return explanation
     return replace(explanation, residual=_residual(explanation))
 
@@ -378,42 +266,3 @@ def _worst_index(error: Array, in_range: NDArray[np.bool_]) -> int:
     """The index of the largest error in range, that of the lowest code on a tie."""
     size = np.where(in_range, np.nan_to_num(np.abs(error), nan=np.inf), -1.0)
     return int(size.argmax())
-
-
-def _points(computed: Evaluation, quantity: Array, value: Array) -> tuple[Point, ...]:
-    """Bottom, middle and top of the range, from the smallest quantity to the largest."""
-    inside = np.flatnonzero(computed.in_range)
-    first, last = int(inside[0]), int(inside[-1])
-    if quantity[first] > quantity[last]:
-        first, last = last, first
-    middle = int(inside[(len(inside) - 1) // 2])
-    return tuple(
-        Point(
-            at_count=int(computed.codes[index]),
-            hardware=float(quantity[index]),
-            firmware=float(value[index]),
-        )
-        for index in (first, middle, last)
-    )
-
-
-def _side(computed: Evaluation, value: Array, wrong: NDArray[np.bool_], tolerance: float) -> Side:
-    """The least-squares line of the firmware through the codes in range that do not overflow.
-
-    Where a clamp bends the curve, the codes held at its ends are left out.
-    """
-    usable = computed.in_range & ~wrong & np.isfinite(value)
-    for chosen in (usable, usable & ~_held(value, usable)):
-        codes, values = computed.codes[chosen], value[chosen]
-        if len(codes) and is_straight(codes, values, tolerance * _ROUNDING):
-            line = fit(codes, values)
-            return Side(gain=line.gain, offset=line.offset)
-    return Side(gain=None, offset=None)
-
-
-def _held(value: Array, usable: NDArray[np.bool_]) -> NDArray[np.bool_]:
-    """The codes at which the curve stays at its lowest or highest value."""
-    if not usable.any():
-        return usable
-    ends = (value[usable].min(), value[usable].max())
-    return np.isin(value, ends)

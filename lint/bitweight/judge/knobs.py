@@ -58,6 +58,11 @@ class Knob:
         return not self.named and (is_power(self.value, 10) or is_power(self.value, 2))
 
     @property
+    def is_count(self) -> bool:
+        """Whether it is 2**n or 2**n - 1."""
+        return is_power(self.value, 2) or is_power(self.value + 1, 2)
+
+    @property
     def is_coarse(self) -> bool:
         """Whether its rounding is so coarse that it fits some fact by chance."""
         return self.half > abs(self.value) * _COARSE

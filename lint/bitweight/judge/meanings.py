@@ -29,8 +29,8 @@ class Scaling(Enum):
 class Term:
     """A positive number of the board, in the coherent unit.
 
-    Its unit is `unit` if that takes prefixes; else 10**`shown_exponent` of it (None: no power of
-    ten) in the coherent unit are one of the unit shown.
+    `unit` names the coherent unit; `prefixed` says that it takes prefixes. One coherent unit is
+    10**`shown_exponent` of `shown_unit`, the one in the board file (None: no power of ten).
     """
 
     role: Role
@@ -39,6 +39,7 @@ class Term:
     value: Fraction
     scaling: Scaling
     unit: str = ""
+    shown_unit: str = ""
     shown_exponent: int | None = None
     prefixed: bool = False
 
@@ -68,11 +69,11 @@ class Meaning:
             return f"/ 2**{self.doublings}"
         if term.scaling is not Scaling.QUANTITY:
             return ""
+        if self.exponent == term.shown_exponent:
+            return term.shown_unit
         if term.prefixed and self.exponent in _PREFIXES:
             return _PREFIXES[self.exponent] + term.unit
-        if self.exponent == term.shown_exponent or not self.exponent:
-            return term.unit
-        return f"* 1e{-self.exponent} {term.unit}"
+        return f"* 1e{(term.shown_exponent or 0) - self.exponent} {term.shown_unit}"
 
 
 _PREFIXES = {-6: "M", -3: "k", 0: "", 3: "m", 6: "u", 9: "n"}
@@ -123,13 +124,15 @@ def _term(fact: BoardFact, value: Fraction) -> Term:
     unit = coherent(fact.unit.dimension)
     prefixed = takes_prefix(unit)
     plain = not fact.unit.dimension
+    middle = fact.role is Role.REFERENCE and fact.name.startswith("half of ")
     return Term(
-        role=fact.role,
+        role=Role.OFFSET if middle else fact.role,
         rule=fact.rule,
         name=fact.name,
         value=value,
         scaling=_SCALINGS.get(fact.role, Scaling.QUANTITY) if plain else Scaling.QUANTITY,
-        unit=unit.text if prefixed else fact.unit.text,
+        unit=unit.text,
+        shown_unit=fact.unit.text,
         shown_exponent=_power(1 / fact.unit.scale),
         prefixed=prefixed,
     )
@@ -165,7 +168,8 @@ def nearest(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
         powers = _nearest_powers(knob, term, ratio)
         for exponent, doublings in powers:
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
-            if abs(decades(knob.value / exact)) < farthest:
+            far = _FAR_WITH_UNIT if term.scaling is Scaling.COUNT and knob.is_count else farthest
+            if abs(decades(knob.value / exact)) < far:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
 
 
@@ -230,7 +234,12 @@ def _nearest_powers(knob: Knob, term: Term, ratio: Fraction) -> Iterator[tuple[i
     if knob.exponent is not None and term.scaling is Scaling.QUANTITY:
         yield knob.exponent, 0
         return
-    yield from _powers(term.scaling, ratio)
+    if term.scaling is Scaling.COUNT and ratio < 2:
+        yield 0, 0
+    else:
+        yield from _powers(term.scaling, ratio)
+        if term.scaling is Scaling.COUNT and knob.is_count:
+            yield 0, 0
 
 
 def composites(knob: Knob, all_terms: Sequence[Term]) -> tuple[Fraction, ...]:

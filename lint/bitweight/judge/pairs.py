@@ -4,21 +4,22 @@ A search enters; sets of corrections leave, each tried on the line itself.
 """
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from itertools import combinations
 
 from bitweight.board.facts import Role
-from bitweight.judge.knobs import Key, Knob, is_power
+from bitweight.judge.knobs import Key, Knob
 from bitweight.judge.meanings import nearest
 from bitweight.judge.repairs import (
     Repair,
     fact_repair,
     is_likely,
+    is_unusual,
     shift_repairs,
 )
 from bitweight.judge.sketches import RealLine, Values, same
-from bitweight.judge.trials import Search, gain_repairs, offset_repairs
+from bitweight.judge.trials import Search, gain_repairs, is_settled, offset_repairs
 
 _MOST_TRIES = 300
 _FEW_DIGITS = 3
@@ -54,8 +55,20 @@ def _plausible(search: Search, knob: Knob) -> Iterator[Repair]:
         return
     for meaning in nearest(knob, search.terms):
         repair = fact_repair(knob, meaning, search.layout)
-        if repair is not None and (is_likely(repair) or _speaks_for_itself(knob)):
-            yield repair
+        if repair is not None and _is_plausible(search, knob, repair):
+            yield replace(repair, settled=is_settled(search, knob))
+
+
+def _is_plausible(search: Search, knob: Knob, repair: Repair) -> bool:
+    """Whether name or value speak for a correction that only together with others mends the line.
+
+    A constant that is a fact already, or whose name speaks of others, is left alone.
+    """
+    if is_likely(repair):
+        return True
+    if knob.hints or is_unusual(repair) or not _speaks_for_itself(knob):
+        return False
+    return not is_settled(search, knob)
 
 
 def _speaks_for_itself(knob: Knob) -> bool:
@@ -63,7 +76,7 @@ def _speaks_for_itself(knob: Knob) -> bool:
 
     Otherwise any two constants folded by hand would do for a wrong reference and a wrong count.
     """
-    if is_power(knob.value, 2) or is_power(knob.value + 1, 2):
+    if knob.is_count:
         return True
     if knob.is_round or not knob.value:
         return False
@@ -72,7 +85,7 @@ def _speaks_for_itself(knob: Knob) -> bool:
 
 
 def doubles(search: Search, starts: Sequence[Values]) -> Iterator[tuple[Repair, ...]]:
-    for values in starts:
+    for values in starts[:2]:
         line = search.line(values)
         if line is None:
             continue
@@ -148,7 +161,7 @@ def _interact(chosen: Sequence[_Option]) -> bool:
 
 
 def triples(search: Search, starts: Sequence[Values]) -> Iterator[tuple[Repair, ...]]:
-    for values in starts[:4]:
+    for values in starts[:1]:
         line = search.line(values)
         if line is None:
             continue

@@ -24,13 +24,15 @@ RULE_ORDER = (
 class Repair:
     """A constant takes the value `exact`. `knob` is None for a correction that no constant carries.
 
-    `meaning` is the board fact it then is, None for a power of ten.
+    `meaning` is the board fact it then is, None for a power of ten. `settled` says that the
+    constant is another fact of the board already, as far as name and value tell.
     """
 
     rule: str
     knob: Knob | None = None
     meaning: Meaning | None = None
     exact: Fraction = Fraction(0)
+    settled: bool = False
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -56,7 +58,7 @@ class Layout:
 
 def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
     """The constant takes the value of a fact; None where that says nothing against the constant."""
-    if knob.holds(meaning.exact) or _contradicts_unit(knob, meaning):
+    if knob.holds(meaning.exact) or _contradicts_name(knob, meaning):
         return None
     if _holds_already(knob, meaning):
         names_unit = knob.exponent is not None and knob.exponent == meaning.exponent
@@ -97,10 +99,18 @@ def divisor_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None
     return Repair(rule="justification", knob=knob, exact=exact)
 
 
-def _contradicts_unit(knob: Knob, meaning: Meaning) -> bool:
-    """Whether the constant's own unit word says another scaling."""
-    quantity = meaning.term.scaling is Scaling.QUANTITY
-    return quantity and knob.exponent is not None and knob.exponent != meaning.exponent
+def _contradicts_name(knob: Knob, meaning: Meaning) -> bool:
+    """Whether the name says another unit, or nothing that speaks for an unusual scaling."""
+    if knob.stated is not None:
+        return False
+    scaling, hinted = meaning.term.scaling, meaning.term.role in knob.hints
+    if scaling is Scaling.QUANTITY and knob.exponent is not None:
+        return knob.exponent != meaning.exponent
+    if scaling in (Scaling.COUNT, Scaling.PLAIN) and knob.exponent is not None:
+        return not hinted
+    if meaning.is_natural or hinted:
+        return False
+    return bool(knob.hints) or (knob.named and scaling is Scaling.QUANTITY)
 
 
 def _holds_already(knob: Knob, meaning: Meaning) -> bool:
@@ -147,10 +157,11 @@ def rank(repairs: Iterable[Repair]) -> Rank:
     """Sorts explanations of one size: the better one is smaller."""
     chosen = tuple(repairs)
     return (
-        sum(_is_doubtful(repair) for repair in chosen),
-        sum(_is_unusual(repair) for repair in chosen),
+        sum(is_doubtful(repair) for repair in chosen),
+        sum(is_unusual(repair) for repair in chosen),
         sorted(RULE_ORDER.index(repair.rule) for repair in chosen),
         sum(repair.knob is None for repair in chosen),
+        sum(repair.settled for repair in chosen),
         sum(not is_likely(repair) for repair in chosen),
         round(sum(_distance(repair) for repair in chosen), 9),
         sum(repair.knob is not None and not repair.knob.named for repair in chosen),
@@ -158,7 +169,7 @@ def rank(repairs: Iterable[Repair]) -> Rank:
     )
 
 
-def _is_doubtful(repair: Repair) -> bool:
+def is_doubtful(repair: Repair) -> bool:
     """Whether the constant's name, or its being a bare scale factor, speaks against the meaning."""
     knob, meaning = repair.knob, repair.meaning
     if knob is None or meaning is None or knob.stated is not None:
@@ -169,7 +180,7 @@ def _is_doubtful(repair: Repair) -> bool:
     return knob.is_round and not (counts and is_power(knob.value, 2))
 
 
-def _is_unusual(repair: Repair) -> bool:
+def is_unusual(repair: Repair) -> bool:
     """Whether the constant would be in a scaling that is no everyday one."""
     if repair.meaning is None or repair.rule == "justification":
         return False

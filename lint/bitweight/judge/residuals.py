@@ -147,6 +147,6 @@ def _is_recognised(view: View, knob: Knob) -> bool:
     if knob.is_round or knob.counts_bits:
         return True
     return any(
-        not knob.hints or meaning.term.role in knob.hints
+        meaning.term.role in knob.hints or (meaning.is_natural and not knob.hints)
         for meaning in snaps(knob, view.search.terms)
     )

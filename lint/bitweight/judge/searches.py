@@ -11,6 +11,7 @@ from bitweight.judge.folds import is_folded, roundings_explain
 from bitweight.judge.pairs import doubles, triples
 from bitweight.judge.repairs import (
     Repair,
+    is_doubtful,
     rank,
 )
 from bitweight.judge.sketches import Values, same
@@ -29,22 +30,25 @@ class Solution:
 def smallest(search: Search, most: int) -> Solution | None:
     """The solution of fewest repairs, at most `most`; None where there is none.
 
-    A rounded constant is believed only after single corrections have failed: a coarse one (5.0)
-    would excuse much else.
+    A single correction that the constant's name speaks against counts as two. A rounded constant is
+    believed only after single corrections have failed: a coarse one (5.0) would excuse much else.
     """
     nothing = Solution()
     starts = baselines(search)
     if any(search.fits(values) for values in starts):
         return _exact_offset(search, most) or nothing
-    if most >= 1 and (found := _best(_singles(search, starts))):
+    singles = tuple(_singles(search, starts)) if most >= 1 else ()
+    if found := _best(one for one in singles if not is_doubtful(*one)):
         return found
     if is_folded(search, starts, _FINE_FOLD):
         return nothing
-    if most >= 2 and (found := _best(doubles(search, starts))):
+    if most >= 2 and (found := _best(doubles(search, starts)) or _best(iter(singles))):
         return found
+    if most < 3:
+        return None
     if is_folded(search, starts, Fraction(1)) or roundings_explain(search):
         return nothing
-    return _best(triples(search, starts)) if most >= 3 else None
+    return _best(triples(search, starts))
 
 
 def _best(solutions: Iterator[tuple[Repair, ...]]) -> Solution | None:

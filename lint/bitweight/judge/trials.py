@@ -4,7 +4,7 @@ A sketch, constants, board facts and the wanted line enter; candidate correction
 """
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from itertools import combinations, islice, product
 
@@ -22,7 +22,7 @@ from bitweight.judge.repairs import (
 from bitweight.judge.roots import Target, gain_root, offset_root
 from bitweight.judge.sketches import RealLine, Sketch, Values
 
-_MOST_BASELINES = 24
+_MOST_BASELINES = 8
 _MOST_ROUNDED = 3
 _MOST_OPTIONS = 3
 _NEAR = 0.2
@@ -64,9 +64,21 @@ def baselines(search: Search) -> tuple[Values, ...]:
     return tuple(islice(chosen, _MOST_BASELINES))
 
 
+def is_settled(search: Search, knob: Knob) -> bool:
+    """Whether name and value agree that the constant is a certain fact of the board."""
+    return any(
+        meaning.is_natural and (meaning.term.role in knob.hints or not knob.hints)
+        for meaning in snaps(knob, search.terms)
+    )
+
+
 def _exact_values(search: Search, knob: Knob) -> tuple[Fraction, ...]:
     """What a constant that is a rounded number may be exactly, board facts first."""
     if knob.is_round or knob.counts_bits:
+        return ()
+    if is_settled(search, knob) and any(
+        one.exact == knob.value for one in snaps(knob, search.terms)
+    ):
         return ()
     facts = _rounded_facts(search, knob)
     found = dict.fromkeys((*facts, *composites(knob, search.terms)))
@@ -110,10 +122,11 @@ def offset_repairs(search: Search, knob: Knob, values: Values) -> Iterator[Repai
 
 
 def _repairs_at(search: Search, knob: Knob, root: Fraction) -> Iterator[Repair]:
+    settled = is_settled(search, knob)
     special = divisor_repair(knob, root, search.layout)
     power = power_repair(knob, root, search.layout)
     yield from (repair for repair in (special, power) if repair is not None)
     for meaning in matches(knob, root, search.terms):
         repair = fact_repair(knob, meaning, search.layout)
         if repair is not None:
-            yield repair
+            yield replace(repair, settled=settled)

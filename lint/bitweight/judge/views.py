@@ -14,7 +14,7 @@ from bitweight.arithmetic.expressions import Expression, Leaf
 from bitweight.judge.knobs import Key, Knob, decades, knobs
 from bitweight.judge.meanings import terms
 from bitweight.judge.questions import BoardLine, Question
-from bitweight.judge.repairs import Layout, Repair, rank
+from bitweight.judge.repairs import Layout, Repair, is_doubtful, rank
 from bitweight.judge.roots import Target
 from bitweight.judge.searches import smallest
 from bitweight.judge.sketches import RealLine, Sketch, sketch
@@ -82,11 +82,14 @@ def _answer(view: View, most: int) -> Answer | None:
 
 
 def _cost(repairs: Sequence[Repair]) -> int:
-    """How many wrong constants: a prefix that no constant carries counts twice.
+    """How many wrong constants: a doubtful one, or a prefix without a constant, counts twice.
 
     Named constants that contradict the board go before it.
     """
-    return sum(2 if repair.rule == "unit-prefix" and not repair.knob else 1 for repair in repairs)
+    return sum(
+        2 if is_doubtful(repair) or (repair.rule == "unit-prefix" and not repair.knob) else 1
+        for repair in repairs
+    )
 
 
 def _order(answer: Answer) -> tuple[object, ...]:

@@ -10,8 +10,9 @@ from bitweight.arithmetic.literals import literal
 from bitweight.arithmetic.types import CType, DataModel
 from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, Root
 from bitweight.firmware.outlines import line_comment
-from bitweight.firmware.symbols import Function, Program, Unit
+from bitweight.firmware.symbols import Program
 from bitweight.firmware.syntax import Expr
+from bitweight.firmware.units import Function, Unit
 from bitweight.limits import Limits
 from bitweight.places import Place
 from bitweight.trace.families import Family

@@ -15,14 +15,13 @@ from bitweight.firmware.mentions import nodes
 from bitweight.firmware.objects import (
     Arithmetic,
     Array,
-    Callable_,
+    FunctionType,
     Location,
     ObjectType,
     Pointer,
     Record,
     Root,
 )
-from bitweight.firmware.symbols import Function, Unit
 from bitweight.firmware.syntax import (
     Block,
     Call,
@@ -43,6 +42,7 @@ from bitweight.firmware.syntax import (
     Stmt,
     Switch,
 )
+from bitweight.firmware.units import Function, Unit
 from bitweight.trace.contexts import Context, Declared, Reading
 from bitweight.trace.initialisers import element_count
 from bitweight.trace.lowering import Frame, Lowering
@@ -171,7 +171,7 @@ class Execution(Lowering):
         if "extern" in storage or not one.name:
             return
         type_ = self.resolved(one.type)
-        if isinstance(type_, Callable_):
+        if isinstance(type_, FunctionType):
             return
         if isinstance(type_, Array) and type_.length is None and one.value is not None:
             from_text = element_count(one.value, self.subscript_in(self.unit))
@@ -678,7 +678,7 @@ class Execution(Lowering):
 
     def _result(self, function: Function, returns: list[Exit], falls: bool, frame: Frame) -> Value:
         type_ = function.unit.type_of(function.syntax.type)
-        declared = type_.returns if isinstance(type_, Callable_) else None
+        declared = type_.returns if isinstance(type_, FunctionType) else None
         result: Value | None = None
         if falls or not returns:
             result = self.context.unknown(f"{function.name}() returns nothing here", function.key)

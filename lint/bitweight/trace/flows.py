@@ -12,8 +12,8 @@ from bitweight.arithmetic.expressions import Code, Expression, walk
 from bitweight.errors import LimitReached
 from bitweight.firmware.mentions import nodes
 from bitweight.firmware.objects import Location
-from bitweight.firmware.symbols import Function, Unit
 from bitweight.firmware.syntax import Call, Member, Name
+from bitweight.firmware.units import Function, Unit
 from bitweight.limits import Deadline
 from bitweight.trace.contexts import Context, Reading
 from bitweight.trace.memory import is_number

@@ -14,7 +14,7 @@ from bitweight.errors import LimitReached
 from bitweight.firmware.objects import (
     Arithmetic,
     Array,
-    Callable_,
+    FunctionType,
     Location,
     ObjectType,
     Pointer,
@@ -22,7 +22,6 @@ from bitweight.firmware.objects import (
     Root,
     Strange,
 )
-from bitweight.firmware.symbols import Enumeration, Function, Unit, Variable
 from bitweight.firmware.syntax import (
     Assign,
     Braces,
@@ -47,6 +46,7 @@ from bitweight.firmware.syntax import (
     Text,
     TypeSyntax,
 )
+from bitweight.firmware.units import Enumeration, Function, Unit, Variable
 from bitweight.places import Place
 from bitweight.trace.contexts import Context, Given, Reading, Wanted, named, shown
 from bitweight.trace.initialisers import component, element_count
@@ -391,11 +391,11 @@ class Lowering:
         program = self.context.program
         for function in program.function(name, self.unit):
             type_ = function.unit.type_of(function.syntax.type)
-            return type_.returns if isinstance(type_, Callable_) else None
+            return type_.returns if isinstance(type_, FunctionType) else None
         for unit in (self.unit, *program.units.values()):
             if name in unit.prototypes:
                 type_ = unit.type_of(unit.prototypes[name].type)
-                return type_.returns if isinstance(type_, Callable_) else None
+                return type_.returns if isinstance(type_, FunctionType) else None
         for family in self.context.families:
             if name in family.types:
                 known = self.model.named(tuple(family.types[name].split()))
@@ -599,7 +599,7 @@ class Lowering:
             return known
         if isinstance(type_, Array):
             return Address(target=location.part(0), type=type_.of)
-        if isinstance(type_, Callable_):
+        if isinstance(type_, FunctionType):
             return Routine(name=location.root.name, function=None)
         if isinstance(type_, Record):
             return Copy(

@@ -15,7 +15,7 @@ from bitweight.arithmetic.expressions import (
     Unknown,
 )
 from bitweight.firmware.objects import Location, ObjectType
-from bitweight.firmware.symbols import Function
+from bitweight.firmware.units import Function
 from bitweight.places import Place
 
 

@@ -7,7 +7,6 @@ import re
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
-from bitweight.firmware.symbols import Function, Unit
 from bitweight.firmware.syntax import (
     Call,
     Cast,
@@ -22,6 +21,7 @@ from bitweight.firmware.syntax import (
     Pair,
     Text,
 )
+from bitweight.firmware.units import Function, Unit
 from bitweight.places import Place
 
 ANY = "bitweight_any_"

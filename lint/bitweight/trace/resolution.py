@@ -24,7 +24,7 @@ from bitweight.arithmetic.expressions import (
     walk,
 )
 from bitweight.firmware.objects import Arithmetic, Location, Strange
-from bitweight.firmware.symbols import Function
+from bitweight.firmware.units import Function
 from bitweight.trace.contexts import Context, named, shown
 from bitweight.trace.execution import Execution
 from bitweight.trace.initialisers import component

@@ -13,7 +13,7 @@ from bitweight.firmware.objects import (
     Record,
     Root,
 )
-from bitweight.firmware.symbols import Function
+from bitweight.firmware.units import Function
 from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution

@@ -20,7 +20,7 @@ from bitweight.arithmetic.expressions import (
     walk,
 )
 from bitweight.firmware.objects import Location
-from bitweight.firmware.symbols import Function, Unit
+from bitweight.firmware.units import Function, Unit
 from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 from bitweight.arithmetic.expressions import Expression, Leaf, Literal, walk
 from bitweight.errors import LimitReached
-from bitweight.firmware.symbols import Unit
+from bitweight.firmware.units import Unit
 from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution

@@ -8,7 +8,7 @@
 #define BATT_STOP_MV    14400u      /* charger off */
 
 /* pump: compared with the raw code, every millisecond; 1.0 A forward */
-#define PUMP_TRIP_CODE  3618u
+#define PUMP_TRIP_CODE  3413u
 
 enum {
     ALARM_TANK_LOW   = 1 << 0,

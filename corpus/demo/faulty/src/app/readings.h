@@ -6,7 +6,7 @@
 
 struct readings {
     uint32_t tank_mm;
-    uint16_t sump_cm;
+    uint8_t  sump_cm;
     uint32_t oxygen_kpa_x100;
     int16_t  ph_x100;
     float    turbidity_ntu;

@@ -11,7 +11,7 @@
 
 int16_t ph_x100(void)
 {
-    int32_t code = (int16_t)(acq_diff() << 4) >> 4;
+    int32_t code = acq_diff() & ACQ_CODE_MASK;
     int32_t dmv = code * (ACQ_VREF_MV * 10) / ACQ_DIFF_COUNTS;
 
     return (int16_t)(PH_NEUTRAL_X100 + dmv * 10000 / (PH_UV_PER_PH * PH_AMP_GAIN));

@@ -2,7 +2,7 @@
 #include "drivers.h"
 #include "../hal/acq.h"
 
-static const float ref_volts = 3.0f;
+static const float ref_volts = 3.3f;
 
 static float input_volts(uint16_t code)
 {

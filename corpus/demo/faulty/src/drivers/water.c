@@ -7,14 +7,14 @@
 
 #define INFLOW_ZERO_DMV     2500
 #define INFLOW_DMV_PER_KPA  250
-#define INFLOW_PER_KPA      10      /* counts of the result */
+#define INFLOW_PER_KPA      100     /* counts of the result */
 
 #define LIGHT_MV_PER_LX     2
 
 /* 0.1 degC a count, which is 1 mV */
 int16_t water_temp_x10(uint16_t code)
 {
-    uint32_t mv = (uint32_t)(code * ACQ_VREF_MV) / ACQ_COUNTS;
+    uint32_t mv = (uint16_t)(code * ACQ_VREF_MV) / ACQ_COUNTS;
 
     return (int16_t)mv - TEMP_ZERO_MV;
 }

@@ -1,0 +1,119 @@
+"""What the declarations of one unit mean: its typedef names, records and types."""
+
+from collections.abc import Iterator, Mapping
+from functools import cached_property
+
+from bitweight.arithmetic.types import CType, DataModel, Kind
+from bitweight.firmware.objects import (
+    Arithmetic,
+    Array,
+    FunctionType,
+    ObjectType,
+    Pointer,
+    Record,
+    Strange,
+)
+from bitweight.firmware.parsing import UnitSyntax
+from bitweight.firmware.syntax import (
+    ArrayOf,
+    Field,
+    FunctionOf,
+    Number,
+    PointerTo,
+    Specifiers,
+    TypeSyntax,
+)
+
+_TYPE_DEPTH = 64
+
+
+class Declarations:
+    """Types of one unit. `path` is the scope of its tags."""
+
+    def __init__(self, syntax: UnitSyntax, model: DataModel, path: str) -> None:
+        self._syntax = syntax
+        self._model = model
+        self._path = path
+        self._typedefs: Mapping[str, TypeSyntax] = {one.name: one.type for one in syntax.typedefs}
+
+    @cached_property
+    def records(self) -> Mapping[str, tuple[Field, ...]]:
+        """Members by tag, of every struct and union that is declared with a body."""
+        found: dict[str, tuple[Field, ...]] = {}
+        pending = [*self._syntax.specifiers]
+        pending += [one.type.specifiers for one in self._syntax.variables]
+        while pending:
+            one = pending.pop()
+            if one.fields is not None and one.tag is not None and one.tag not in found:
+                found[one.tag] = one.fields
+                pending.extend(member.type.specifiers for member in one.fields)
+        return found
+
+    def specifiers(self) -> Iterator[Specifiers]:
+        """Every specifier list of the unit, those of members included."""
+        yield from self._syntax.specifiers
+        for fields in self.records.values():
+            for member in fields:
+                yield member.type.specifiers
+
+    def type_of(self, syntax: TypeSyntax, depth: int = 0) -> ObjectType:
+        """The type that declarations mean; array sizes are left to whoever can compute them."""
+        if depth > _TYPE_DEPTH:
+            return Strange(name="a type nested too deeply")
+        made = self._base(syntax.specifiers, depth)
+        for one in reversed(syntax.derivations):
+            match one:
+                case PointerTo():
+                    made = Pointer(to=made)
+                case ArrayOf():
+                    made = Array(of=made, length=None)
+                case FunctionOf():
+                    made = FunctionType(returns=made)
+        return made
+
+    def _base(self, specifiers: Specifiers, depth: int) -> ObjectType:
+        if specifiers.record == "enum":
+            return Arithmetic(type=self._model.unsigned)
+        if specifiers.record is not None:
+            return Record(kind=specifiers.record, tag=specifiers.tag or "", scope=self._path)
+        words = specifiers.words
+        if len(words) == 1 and words[0] in self._typedefs:
+            return self.type_of(self._typedefs[words[0]], depth + 1)
+        if words == ("void",):
+            return Strange(name="")
+        known = self._model.named(words)
+        if known is not None:
+            return Arithmetic(type=known)
+        if not words and specifiers.storage | specifiers.qualifiers:
+            return Arithmetic(type=self._model.int_)
+        return Strange(name=" ".join(words))
+
+    def member(self, record: Record, name: str) -> ObjectType | None:
+        """The type of a member, looked for in unnamed inner records too."""
+        for one in self.records.get(record.tag, ()):
+            type_ = self.type_of(one.type)
+            if one.name == name:
+                return _bit_field(one, type_)
+            if not one.name and isinstance(type_, Record):
+                within = self.member(type_, name)
+                if within is not None:
+                    return within
+        return None
+
+
+def _bit_field(member: Field, type_: ObjectType) -> ObjectType:
+    """The type of a member with the width that the declaration gives it (C11 6.7.2.1p10)."""
+    width = member.bits.text if isinstance(member.bits, Number) else ""
+    if not isinstance(type_, Arithmetic) or not width.isdigit():
+        return type_
+    if not 0 < int(width) <= type_.type.bits:
+        return type_
+    return Arithmetic(
+        type=CType(
+            name=f"{type_.type.name}:{width}",
+            kind=Kind.INTEGER,
+            bits=int(width),
+            signed=type_.type.signed,
+            rank=0,
+        )
+    )

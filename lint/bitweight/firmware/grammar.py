@@ -1,0 +1,112 @@
+"""The C grammar's own tree of one text, and what every part of its conversion shares.
+
+With `documents.py` the only importer of tree-sitter. Recursion is bounded: what nests deeper becomes `Opaque`.
+"""
+
+from collections.abc import Callable, Mapping
+from typing import TypedDict
+
+import tree_sitter
+import tree_sitter_c
+
+from bitweight.firmware.syntax import Block, Expr, Name, Opaque
+
+Branch = tree_sitter.Node
+"""A node of the grammar's tree."""
+Marks = Mapping[tuple[int, int], str]
+"""Stretches of text that are a macro's whole expansion, with the macro's name."""
+
+_LANGUAGE = tree_sitter.Language(tree_sitter_c.language())
+
+
+class Span(TypedDict):
+    """The stretch of text that a node covers, as keywords for a `syntax.Node`."""
+
+    start: int
+    end: int
+
+
+class Grammar:
+    """The tree of one text. `is_type` answers for names; `marks` are macro expansions to be named."""
+
+    def __init__(
+        self,
+        text: str,
+        *,
+        is_type: Callable[[str], bool],
+        marks: Marks | None = None,
+        depth: int = 200,
+    ) -> None:
+        # One byte a character keeps every offset: what is not ASCII stands in comments and strings.
+        self.bytes = text.encode("ascii", "replace")
+        self.types: set[str] = set()
+        self.marks = marks or {}
+        self.depth = depth
+        self.level = 0
+        self.root = tree_sitter.Parser(_LANGUAGE).parse(self.bytes).root_node
+        self._known = is_type
+
+    def is_type(self, name: str) -> bool:
+        """Whether the name is a type here: declared by the unit or known to the target."""
+        return name in self.types or self._known(name)
+
+    def text(self, node: Branch) -> str:
+        """The source of a node."""
+        return self.bytes[node.start_byte : node.end_byte].decode("ascii")
+
+    # --- converted by the classes built on this one -------------------------------------------
+
+    def expr(self, node: Branch) -> Expr:
+        """The expression of a node."""
+        raise NotImplementedError
+
+    def block(self, node: Branch) -> Block:
+        """The statements of a compound statement."""
+        raise NotImplementedError
+
+    # --- shared -------------------------------------------------------------------------------
+
+    def optional(self, node: Branch | None) -> Expr | None:
+        """The expression of a node that may be absent."""
+        return self.expr(node) if node is not None else None
+
+    def required(self, node: Branch, field: str) -> Expr:
+        """The expression in a field that C asks for."""
+        child = node.child_by_field_name(field)
+        return self.expr(child) if child is not None else broken(node)
+
+
+def span(node: Branch) -> Span:
+    """Where a node starts and ends."""
+    return {"start": node.start_byte, "end": node.end_byte}
+
+
+def inner(node: Branch) -> list[Branch]:
+    """The named nodes directly below, comments left out."""
+    return [child for child in node.named_children if child.type != "comment"]
+
+
+def broken(node: Branch) -> Opaque:
+    """What is no C."""
+    return Opaque(**span(node), kind="broken C")
+
+
+def strange(node: Branch) -> Opaque:
+    """What is C, or an extension of it, but is not followed."""
+    return broken(node) if node.type == "ERROR" else Opaque(**span(node), kind=plain(node.type))
+
+
+def plain(kind: str) -> str:
+    """A kind of node in plain words."""
+    return kind.replace("_", " ")
+
+
+def operator_at(node: Branch) -> int:
+    """The offset of a node's operator."""
+    operator = node.child_by_field_name("operator")
+    return operator.start_byte if operator is not None else node.start_byte
+
+
+def named(node: Branch, text: str) -> Name:
+    """A name that stands at a node."""
+    return Name(**span(node), text=text)

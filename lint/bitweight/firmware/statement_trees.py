@@ -1,0 +1,160 @@
+"""Statements of the grammar's tree."""
+
+from collections.abc import Callable, Mapping, Sequence
+
+from bitweight.firmware.expression_trees import ExpressionTrees
+from bitweight.firmware.grammar import Branch, broken, inner, span, strange
+from bitweight.firmware.syntax import (
+    Block,
+    Case,
+    Declare,
+    Evaluate,
+    If,
+    Jump,
+    Label,
+    Loop,
+    Opaque,
+    Return,
+    Stmt,
+    Switch,
+)
+
+
+class StatementTrees(ExpressionTrees):
+    """Converts statements."""
+
+    def block(self, node: Branch) -> Block:
+        """The statements of a compound statement."""
+        return Block(**span(node), items=self._statements(node.named_children))
+
+    def stmt(self, node: Branch) -> Stmt:
+        """The statement of a node, `Opaque` where it is not followed."""
+        if self.level > self.depth:
+            return Opaque(**span(node), kind="statements nested too deeply")
+        self.level += 1
+        try:
+            convert = _STATEMENTS.get(node.type)
+            return convert(self, node) if convert is not None else strange(node)
+        finally:
+            self.level -= 1
+
+    def _statements(self, nodes: Sequence[Branch]) -> tuple[Stmt, ...]:
+        return tuple(self.stmt(node) for node in nodes if node.type != "comment")
+
+    def _body(self, node: Branch, field: str) -> Stmt:
+        child = node.child_by_field_name(field)
+        return self.stmt(child) if child is not None else broken(node)
+
+    def _evaluate(self, node: Branch) -> Stmt:
+        below = inner(node)
+        if not below:
+            return _nothing(node)
+        return Evaluate(**span(node), expression=self.expr(below[0]))
+
+    def _declare(self, node: Branch) -> Stmt:
+        return Declare(**span(node), declarators=self.declaration(node))
+
+    def _if(self, node: Branch) -> Stmt:
+        alternative = node.child_by_field_name("alternative")
+        if alternative is not None and alternative.type == "else_clause":
+            alternative = next(iter(inner(alternative)), None)
+        return If(
+            **span(node),
+            condition=self.required(node, "condition"),
+            then=self._body(node, "consequence"),
+            other=self.stmt(alternative) if alternative is not None else None,
+        )
+
+    def _for(self, node: Branch) -> Stmt:
+        before = node.child_by_field_name("initializer")
+        first: Stmt | None = None
+        if before is not None and before.type == "declaration":
+            first = self._declare(before)
+        elif before is not None:
+            first = Evaluate(**span(before), expression=self.expr(before))
+        return Loop(
+            **span(node),
+            before=first,
+            condition=self.optional(node.child_by_field_name("condition")),
+            step=self.optional(node.child_by_field_name("update")),
+            body=self._body(node, "body"),
+            first=False,
+        )
+
+    def _while(self, node: Branch) -> Stmt:
+        return Loop(
+            **span(node),
+            before=None,
+            condition=self.required(node, "condition"),
+            step=None,
+            body=self._body(node, "body"),
+            first=node.type == "do_statement",
+        )
+
+    def _switch(self, node: Branch) -> Stmt:
+        return Switch(
+            **span(node),
+            subject=self.required(node, "condition"),
+            body=self._body(node, "body"),
+        )
+
+    def _case(self, node: Branch) -> Stmt:
+        value = node.child_by_field_name("value")
+        items = [child for child in inner(node) if value is None or child.id != value.id]
+        last = None
+        if items and any(child.type == "..." for child in node.children):
+            last = self.expr(items.pop(0))
+        return Case(
+            **span(node), value=self.optional(value), last=last, items=self._statements(items)
+        )
+
+    def _return(self, node: Branch) -> Stmt:
+        below = inner(node)
+        return Return(**span(node), value=self.expr(below[0]) if below else None)
+
+    def _jump(self, node: Branch) -> Stmt:
+        return Jump(**span(node), kind=node.type.removesuffix("_statement"))
+
+    def _label(self, node: Branch) -> Stmt:
+        label = node.child_by_field_name("label")
+        rest = [child for child in inner(node) if label is None or child.id != label.id]
+        return Label(
+            **span(node),
+            name=self.text(label) if label else "",
+            body=self.stmt(rest[0]) if rest else _nothing(node),
+        )
+
+    def _attributed(self, node: Branch) -> Stmt:
+        below = [one for one in node.named_children if not one.type.startswith("attribute")]
+        return self.stmt(below[-1]) if below else _nothing(node)
+
+    def _type_only(self, node: Branch) -> Stmt:
+        return _nothing(node)
+
+
+def _nothing(node: Branch) -> Block:
+    return Block(**span(node), items=())
+
+
+_STATEMENTS: Mapping[str, Callable[[StatementTrees, Branch], Stmt]] = {
+    "compound_statement": StatementTrees.block,
+    "expression_statement": StatementTrees._evaluate,
+    "declaration": StatementTrees._declare,
+    "if_statement": StatementTrees._if,
+    "for_statement": StatementTrees._for,
+    "while_statement": StatementTrees._while,
+    "do_statement": StatementTrees._while,
+    "switch_statement": StatementTrees._switch,
+    "case_statement": StatementTrees._case,
+    "return_statement": StatementTrees._return,
+    "break_statement": StatementTrees._jump,
+    "continue_statement": StatementTrees._jump,
+    "goto_statement": StatementTrees._jump,
+    "labeled_statement": StatementTrees._label,
+    "attributed_statement": StatementTrees._attributed,
+    "type_definition": StatementTrees._type_only,
+    "struct_specifier": StatementTrees._type_only,
+    "union_specifier": StatementTrees._type_only,
+    "enum_specifier": StatementTrees._type_only,
+    ";": StatementTrees._type_only,
+}
