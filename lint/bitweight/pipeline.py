@@ -57,8 +57,8 @@ class _Traced:
 def verify(request: Request, progress: Progress) -> Outcome:
     """Verify the firmware of a request against its board.
 
-    Raises `BoardError` with every mistake of the board file, `SourceError` when there is nothing to read,
-    `UsageError` for a name that the board file lacks, `RuleError` for a broken rule.
+    Raises `BoardError` with every mistake of the board file, `SourceError` when there is nothing to
+    read, `UsageError` for a name that the board file lacks, `RuleError` for a broken rule.
     """
     rules = load_rules()
     path = Path(request.board)
@@ -202,7 +202,7 @@ def _conflicts(context: Context, traces: tuple[Trace, ...]) -> tuple[Conflict, .
     def evaluate(unit: Unit, text: str) -> int | float | None:
         tree = parsed(text, unit)
         value = Execution(context, unit).value(tree) if tree is not None else None
-        return context.constant(value) if value is not None and is_number(value) else None  # type: ignore[arg-type]
+        return context.constant(value) if value is not None and is_number(value) else None
 
     ordered = [(name, tuple(channels)) for name, channels in sorted(users.items())]
     return conflicts(context.program, ordered, evaluate)

@@ -1,7 +1,6 @@
 """Rows of published figures: a converter as its document describes it, and what that prints."""
 
-from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from fractions import Fraction
 from pathlib import Path
 
@@ -51,8 +50,7 @@ class Firmware:
     """C that a part's document asks for, and a mistake people make with it.
 
     `code` is one file of C that reads `reading` and ends in `result`, one count of which is
-    `count`; `slip` is what is written for what; `rules` are the rules that may name it, the first
-    being the one by which the board file is mended.
+    `count`; `slip` is what is right and what is written for it; `rules` may name the slip.
     """
 
     part: Part
@@ -61,15 +59,14 @@ class Firmware:
     rules: tuple[str, ...]
     count: str = "1 mV"
     reading: str = "part_read()"
-    channel: str = ""
-    more: Mapping[str, str] = field(default_factory=dict)
+    result: str = "result"
 
     @property
     def board(self) -> str:
         """The whole board file."""
         return (
-            f"{self.part.board}{self.channel}\n[channel.x.firmware]\n"
-            f'reading = "{self.reading}"\nvalue = "result"\nunit = "{self.count}"\n'
+            f"{self.part.board}[channel.x.firmware]\n"
+            f'reading = "{self.reading}"\nvalue = "{self.result}"\nunit = "{self.count}"\n'
         )
 
     @property

@@ -1,7 +1,7 @@
 """Expressions of the grammar's tree.
 
-The grammar cannot know which names are types, so `(name)(x)` and `(name) - x` are read again here with
-the types that the unit declares.
+The grammar cannot know which names are types, so `(name)(x)` and `(name) - x` are read again here
+with the types that the unit declares.
 """
 
 from collections.abc import Callable, Mapping

@@ -1,9 +1,11 @@
 """The C grammar's own tree of one text, and what every part of its conversion shares.
 
-With `documents.py` the only importer of tree-sitter. Recursion is bounded: what nests deeper becomes `Opaque`.
+With `documents.py` the only importer of tree-sitter. Recursion is bounded: what nests deeper
+becomes `Opaque`.
 """
 
-from collections.abc import Callable, Mapping
+import re
+from collections.abc import Callable, Iterator, Mapping
 from typing import TypedDict
 
 import tree_sitter
@@ -17,6 +19,9 @@ Marks = Mapping[tuple[int, int], str]
 """Stretches of text that are a macro's whole expansion, with the macro's name."""
 
 _LANGUAGE = tree_sitter.Language(tree_sitter_c.language())
+_CASTS = tree_sitter.Query(_LANGUAGE, "(cast_expression type: (type_descriptor) @type)")
+_MAY_LOOK_LIKE_A_CAST = re.compile(rb"[)\]]\s*\)\s*[-+*&(]")
+_ABSTRACT = ("abstract_function_declarator", "abstract_array_declarator")
 
 
 class Span(TypedDict):
@@ -27,7 +32,7 @@ class Span(TypedDict):
 
 
 class Grammar:
-    """The tree of one text. `is_type` answers for names; `marks` are macro expansions to be named."""
+    """The tree of one text. `is_type` answers for names, `marks` are expansions to be named."""
 
     def __init__(
         self,
@@ -43,7 +48,7 @@ class Grammar:
         self.marks = marks or {}
         self.depth = depth
         self.level = 0
-        self.root = tree_sitter.Parser(_LANGUAGE).parse(self.bytes).root_node
+        self.root = _parsed(self.bytes)
         self._known = is_type
 
     def is_type(self, name: str) -> bool:
@@ -74,6 +79,33 @@ class Grammar:
         """The expression in a field that C asks for."""
         child = node.child_by_field_name(field)
         return self.expr(child) if child is not None else broken(node)
+
+
+def _parsed(source: bytes) -> Branch:
+    """The tree of a text, parenthesized calls taken for calls.
+
+    The grammar reads `(f()) * x` as a cast to the type `f()`. No cast leads to a function or an
+    array (C11 6.5.4p2), so these parentheses enclose a call, and it means the same without them.
+    """
+    root = tree_sitter.Parser(_LANGUAGE).parse(source).root_node
+    if _MAY_LOOK_LIKE_A_CAST.search(source) is None:
+        return root
+    bare = bytearray(source)
+    for start, end in _parentheses_of_calls(root):
+        bare[start : start + 1] = bare[end : end + 1] = b" "
+    return root if bare == source else tree_sitter.Parser(_LANGUAGE).parse(bytes(bare)).root_node
+
+
+def _parentheses_of_calls(root: Branch) -> Iterator[tuple[int, int]]:
+    """The offsets of both parentheses around each call that was read as a type."""
+    for written in tree_sitter.QueryCursor(_CASTS).captures(root).get("type", []):
+        declarator = written.child_by_field_name("declarator")
+        while declarator is not None and declarator.type in _ABSTRACT:
+            below = declarator.child_by_field_name("declarator")
+            opening, closing = written.prev_sibling, written.next_sibling
+            if below is None and opening is not None and closing is not None:
+                yield opening.start_byte, closing.start_byte
+            declarator = below
 
 
 def span(node: Branch) -> Span:

@@ -1,4 +1,4 @@
-"""Which names a function uses, writes and takes addresses of: a quick look before it is followed."""
+"""Which names a function uses, writes, takes the address of: a look before it is followed."""
 
 from collections.abc import Iterator
 from dataclasses import dataclass, fields

@@ -53,6 +53,10 @@ class Strange:
 ObjectType = Arithmetic | Pointer | Array | Record | FunctionType | Strange
 
 
+ANYWHERE = "*"
+"""The step of a path that stands for a subscript that is not constant."""
+
+
 @dataclass(frozen=True, slots=True)
 class Root:
     """Where an object lives. `scope` is empty for external linkage, a file for static objects,
@@ -78,6 +82,17 @@ class Location:
     def within(self, outer: "Location") -> bool:
         """Whether this is `outer` or a part of it."""
         return self.root == outer.root and self.path[: len(outer.path)] == outer.path
+
+    def may_be_in(self, outer: "Location") -> bool:
+        """Whether this may be `outer` or a part of it, unknown subscripts considered."""
+        return (
+            self.root == outer.root
+            and len(outer.path) <= len(self.path)
+            and all(
+                ANYWHERE in (mine, theirs) or mine == theirs
+                for mine, theirs in zip(self.path, outer.path, strict=False)
+            )
+        )
 
     def __str__(self) -> str:
         text = self.root.name

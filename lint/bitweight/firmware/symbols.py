@@ -53,7 +53,7 @@ class Program:
         return strong or tuple(found.values())
 
     def function(self, name: str, unit: Unit) -> tuple[Function, ...]:
-        """The function a call in `unit` reaches; several when the tree defines it more than once."""
+        """The function a call in `unit` reaches; several when the tree defines it so often."""
         own = unit.functions.get(name)
         if own is not None and not own.weak:
             return (own,)

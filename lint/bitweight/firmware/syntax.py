@@ -37,7 +37,7 @@ class Enumerator(Node):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Specifiers:
-    """The first part of a declaration: `words` for arithmetic and typedef names, or a tagged type."""
+    """The first part of a declaration: `words` (arithmetic, typedef names) or a tagged type."""
 
     words: tuple[str, ...] = ()
     record: str | None = None
@@ -296,7 +296,10 @@ class If(Node):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Loop(Node):
-    """for, while and do: `before; while (condition) { body; step }`; `first` runs the body before the test."""
+    """for, while and do: `before; while (condition) { body; step }`.
+
+    `first` runs the body before the test.
+    """
 
     before: "Stmt | None"
     condition: Expr | None
@@ -351,7 +354,7 @@ Stmt = Block | Declare | Evaluate | If | Loop | Switch | Case | Return | Jump | 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class FunctionSyntax(Node):
-    """A function definition; `start` is where its name stands, the body spans `body_start` to `end`."""
+    """A function definition: the name stands at `start`, the body from `body_start` to `end`."""
 
     name: str
     type: TypeSyntax

@@ -72,8 +72,17 @@ def coarse_end(computed: Evaluation, ignored: Mask, wanted: Array, allowed: Arra
 
 
 def _lost(computed: Evaluation, held: Array, looked_at: Mask) -> Array:
+    """What is held beyond one truncation of the real value, whichever way that goes.
+
+    C truncates toward zero: a negative term that is added to a positive one is rounded up.
+    """
+    exact = computed.real
+    if not computed.expression.type.is_integer:
+        low = high = computed.meant
+    else:
+        low, high = np.floor(exact), np.ceil(exact)
     with np.errstate(invalid="ignore"):
-        return np.where(looked_at & np.isfinite(held), held - computed.meant, 0.0)
+        return np.where(looked_at & np.isfinite(held), held - np.clip(held, low, high), 0.0)
 
 
 def _culprit(computed: Evaluation, looked_at: Mask, tolerance: float) -> Expression | None:

@@ -1,4 +1,4 @@
-"""What every run through the firmware shares: the program, the target, the patterns, the placeholders."""
+"""What all runs through the firmware share: program, target, patterns, placeholders."""
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
@@ -12,7 +12,7 @@ from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, 
 from bitweight.firmware.outlines import line_comment
 from bitweight.firmware.symbols import Program
 from bitweight.firmware.syntax import Expr
-from bitweight.firmware.units import Function, Unit
+from bitweight.firmware.units import Function, Unit, Variable
 from bitweight.limits import Limits
 from bitweight.places import Place
 from bitweight.trace.families import Family
@@ -22,7 +22,7 @@ from bitweight.trace.patterns import Pattern, head, parsed
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Reading:
-    """Where a channel's code enters. `type` is that of the raw word where the code declares none."""
+    """Where a channel's code enters. `type` is that of a raw word which the C does not declare."""
 
     pattern: Pattern
     channels: tuple[str, ...]
@@ -31,7 +31,7 @@ class Reading:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Given:
-    """A C expression whose value the board file states. `channel` where it is an ideal code of that channel."""
+    """A C expression whose value the board file states."""
 
     pattern: Pattern
     value: float | int
@@ -98,7 +98,8 @@ class Context:
         """The board file's expressions as this unit reads them, by their head."""
         if unit.path not in self._wanted:
             found: dict[tuple[str, str], list[Wanted]] = {}
-            for source in (*self.readings, *self.givens):
+            sources: tuple[Reading | Given, ...] = (*self.readings, *self.givens)
+            for source in sources:
                 tree = parsed(source.pattern.text, unit)
                 if tree is not None:
                     found.setdefault(head(tree), []).append(Wanted(tree=tree, source=source))
@@ -136,16 +137,7 @@ class Context:
                     ),
                     None,
                 )
-            self._declared[root] = variable and Declared(
-                name=variable.name,
-                type=variable.type,
-                value=variable.value,
-                unit=variable.unit,
-                function=None,
-                constant=variable.constant,
-                declared_only=variable.declared_only,
-                key=variable.key,
-            )
+            self._declared[root] = _declared(variable) if variable is not None else None
         return self._declared[root]
 
     def is_fixed(self, root: Root, declared: Declared) -> bool:
@@ -168,9 +160,8 @@ class Context:
     def _touches(self, function: Function, root: Root, whole: bool) -> bool:
         seen = function.mentions
         name = root.name
-        if name not in seen.writes and name not in seen.addressed:
-            if not (whole and name in seen.passes):
-                return False
+        if name not in seen.writes | seen.addressed | (seen.passes if whole else frozenset()):
+            return False
         if root in self.statics or root.kind != "object":
             return True
         variable = self.program.variable(name, function.unit)
@@ -210,7 +201,7 @@ class Context:
     # --- constants as written ----------------------------------------------------------------
 
     def literal(self, unit: Unit, start: int, text: str) -> Expression:
-        """A constant with the place it is spelled at; a placeholder where it is no constant of C."""
+        """A constant with the place it is spelled at; a placeholder where it is none of C."""
         key = (start, text)
         if key not in unit.literals:
             unit.literals[key] = self._literal(unit, start, text)
@@ -250,6 +241,19 @@ class Context:
             file = self.program.tree.file(place.file)
             self._comments[key] = line_comment(file, place.line) if file is not None else ""
         return self._comments[key]
+
+
+def _declared(variable: Variable) -> Declared:
+    return Declared(
+        name=variable.name,
+        type=variable.type,
+        value=variable.value,
+        unit=variable.unit,
+        function=None,
+        constant=variable.constant,
+        declared_only=variable.declared_only,
+        key=variable.key,
+    )
 
 
 def named(value: Expression, name: str, use: Place) -> Expression:

@@ -8,7 +8,7 @@ from bitweight.firmware.objects import Location
 from bitweight.firmware.syntax import Call, Expr, Index, Marked, Member, Name, Number, Operation
 from bitweight.places import Place
 from bitweight.trace.contexts import Context, shown
-from bitweight.trace.lowering import Event
+from bitweight.trace.machines import Event
 from bitweight.trace.memory import is_number
 from bitweight.trace.runs import Run
 
@@ -19,7 +19,8 @@ _OUTLIVING = frozenset({"object", "register", "pointee", "address"})
 class End:
     """One place where a result may end, its expression still with placeholders.
 
-    `kind` is "object", "return", "local", "macro", "argument" or "call"; `location` is that of an object.
+    `kind` is "object", "return", "local", "macro", "argument" or "call"; `location` is that of an
+    object; `run` the run that noted it, if one did.
     """
 
     kind: str
@@ -30,7 +31,7 @@ class End:
     file: str
     location: Location | None = None
     tree: Call | None = None
-    run: Run
+    run: Run | None = None
 
 
 def object_ends(runs: Iterable[Run]) -> Iterator[End]:
@@ -45,7 +46,7 @@ def object_ends(runs: Iterable[Run]) -> Iterator[End]:
                     yield End(
                         kind="object",
                         result=shown(location),
-                        value=value,  # type: ignore[arg-type]
+                        value=value,
                         place=place,
                         function=function,
                         file=run.function.key.file,
@@ -80,20 +81,18 @@ def _of_event(event: Event, run: Run) -> End:
 
 def flow_ends(runs: tuple[Run, ...], context: Context) -> tuple[End, ...]:
     """Every end of the flow: objects that outlive, results and arguments that leave the tree."""
-    found = [*object_ends(runs)]
-    for end in event_ends(runs, frozenset({"return", "argument"})):
-        if end.kind == "argument":
-            found.append(end)
-        elif end.result == end.run.function.name and not _called(end.run, context):
-            found.append(end)
-    return tuple(found)
+    noted = event_ends(runs, frozenset({"return", "argument"}))
+    return (*object_ends(runs), *(end for end in noted if _leaves(end, context)))
 
 
-def _called(run: Run, context: Context) -> bool:
-    name = run.function.name
-    return any(
-        one.key != run.function.key and name in one.mentions.names
-        for one in context.program.all_functions(name)
+def _leaves(end: End, context: Context) -> bool:
+    """Whether an argument or result leaves the tree: nobody in it uses the result."""
+    if end.kind == "argument" or end.run is None:
+        return True
+    function = end.run.function
+    return end.result == function.name and not any(
+        one.key != function.key and function.name in one.mentions.names
+        for one in context.program.all_functions(function.name)
     )
 
 

@@ -1,6 +1,7 @@
 """What registers and names of a microcontroller family mean: data files, read here.
 
-Each file of the entry-point group `bitweight.families` is one family; nothing here knows a register.
+Each file of the entry-point group `bitweight.families` is one family; nothing here knows a
+register.
 """
 
 from collections.abc import Mapping
@@ -21,8 +22,8 @@ GROUP = "bitweight.families"
 class RegisterField:
     """Some bits of a register. `subject` is what they select.
 
-    `choices` are the selections by the bits' value, shifted down; with no choices the value itself is
-    the selection (an input number). `caution` is the data sheet's hazard for a wrong selection.
+    `choices` are the selections by the bits' value, shifted down; with no choices the value itself
+    is the selection (an input number). `caution` is the data sheet's hazard for a wrong selection.
     """
 
     register: str
@@ -41,7 +42,8 @@ class RegisterField:
 class Family:
     """One family: bit names with their positions, types of registers and calls, register fields.
 
-    `document` is what it was written from. A target of its `architecture` that names no family gets it.
+    `document` is what it was written from. A target of its `architecture` that names no family gets
+    it.
     """
 
     name: str

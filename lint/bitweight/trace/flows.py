@@ -1,7 +1,7 @@
 """From the board's readings through the whole tree: which functions matter, and what they do.
 
-Functions that mention a reading or a wanted result are followed; what their results reach is followed in
-turn, until nothing new carries a reading.
+Functions that mention a reading or a wanted result are followed; what their results reach is
+followed in turn, until nothing new carries a reading.
 """
 
 import re
@@ -16,9 +16,9 @@ from bitweight.firmware.syntax import Call, Member, Name
 from bitweight.firmware.units import Function, Unit
 from bitweight.limits import Deadline
 from bitweight.trace.contexts import Context, Reading
+from bitweight.trace.measures import measures
 from bitweight.trace.memory import is_number
 from bitweight.trace.patterns import ANY, CODE
-from bitweight.trace.resolution import measures
 from bitweight.trace.runs import Run, Runner
 
 _MOST_NAMES = 2_000
@@ -113,7 +113,7 @@ class Flows:
         if run.near:
             found.add(own)
         for location, values in run.writes.items():
-            if any(is_number(value) and self.carries(value) for value in values):  # type: ignore[arg-type]
+            if any(is_number(value) and self.carries(value) for value in values):
                 found.add(self._outlet(location, own))
         for event in run.events:
             if event.kind == "return" and event.name == own and self.carries(event.value):

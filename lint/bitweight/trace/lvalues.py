@@ -1,9 +1,9 @@
 """The object that an expression designates, and where pointers point."""
 
-from bitweight.firmware.objects import Location, ObjectType, Root, Strange
+from bitweight.firmware.objects import ANYWHERE, Location, ObjectType, Root, Strange
 from bitweight.firmware.syntax import Braces, Expr, Index, Marked, Member, Name, Operation
 from bitweight.trace.contexts import shown
-from bitweight.trace.memory import ANYWHERE, Address, Copy, Routine, is_number
+from bitweight.trace.memory import Address, Copy, is_number
 from bitweight.trace.names import Names
 
 

@@ -1,8 +1,9 @@
 """What every part of following a run shares: the state, the calls being followed, what was noted.
 
-The classes of this package that follow C are built on one another: `Machine`, then types (`shapes.py`),
-objects (`storage.py`), forks (`joins.py`), names, lvalues, the board file's expressions (`matching.py`), operators,
-expressions (`lowering.py`), functions, calls, branches, loops, and `Execution` on top.
+The classes of this package that follow C are built on one another: `Machine`, then types
+(`shapes.py`), objects (`storage.py`), forks (`joins.py`), names, lvalues, the board file's
+expressions (`matching.py`), operators, expressions (`lowering.py`), functions, calls, branches,
+loops, and `Execution` on top.
 """
 
 from dataclasses import dataclass, field
@@ -70,9 +71,9 @@ class Frame:
 class Event:
     """A value seen at a place that may be where a result ends.
 
-    `kind` is "return", "local", "macro", "argument", "call", or "register" for what one holds where a
-    reading of `channels` is taken; `name` the function, variable, macro; `function` where it happened;
-    `index` counts arguments from 1.
+    `kind` is "return", "local", "macro", "argument", "call", or "register" for what one holds where
+    a reading of `channels` is taken; `name` the function, variable, macro; `function` where it
+    happened; `index` counts arguments from 1.
     """
 
     kind: str

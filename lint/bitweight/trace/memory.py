@@ -1,19 +1,10 @@
-"""What the program knows of its objects at one point of a run: values by location, merged at joins."""
+"""What is known of the objects at one point of a run: values by location, merged at joins."""
 
 from collections.abc import Callable
 from dataclasses import dataclass, field
+from typing import TypeGuard
 
-from bitweight.arithmetic.expressions import (
-    Binary,
-    Choose,
-    Code,
-    Convert,
-    Default,
-    Expression,
-    Literal,
-    Unary,
-    Unknown,
-)
+from bitweight.arithmetic.expressions import Expression
 from bitweight.firmware.objects import Location, ObjectType
 from bitweight.firmware.units import Function
 from bitweight.places import Place
@@ -47,9 +38,9 @@ class Copy:
 Value = Expression | Address | Routine | Copy
 
 
-def is_number(value: Value) -> bool:
+def is_number(value: Value) -> TypeGuard[Expression]:
     """Whether a value is an expression rather than a pointer or a struct."""
-    return isinstance(value, Literal | Code | Unknown | Default | Convert | Unary | Binary | Choose)
+    return isinstance(value, Expression)
 
 
 @dataclass(slots=True)
@@ -94,7 +85,7 @@ def merged(
     join: Join,
     initial: Callable[[Location], Value | None],
 ) -> State:
-    """The state after both arms; `initial` gives the value an arm that never wrote a location sees."""
+    """The state after both arms; `initial` is what an arm sees that never wrote a location."""
     if then.values == other.values:
         return then
     result: dict[Location, Value] = {}
@@ -116,8 +107,8 @@ def merged(
 class Input:
     """What a placeholder in an expression stands for until the whole tree is known.
 
-    `kind` is "object" (its value when the function starts), "parameter", or "unknown", whose `reason`
-    is for the user. `function` is the parameter's.
+    `kind` is "object" (its value when the function starts), "parameter", or "unknown", whose
+    `reason` is for the user. `function` is the parameter's.
     """
 
     kind: str

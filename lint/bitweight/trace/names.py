@@ -37,7 +37,7 @@ class Names(Joins):
         number = self._well_known(node.text)
         if number is not None:
             return Literal(value=number, type=self.model.int_)
-        return self.read(Location(Root("register", node.text)), Strange(name=""), node)
+        return self.read(*self._register(node.text), node)
 
     def designated(self, node: Name) -> tuple[Location, ObjectType]:
         """The object a name designates: a register of that name where nothing declares it."""
@@ -47,7 +47,11 @@ class Names(Joins):
         variable = self.context.program.variable(node.text, self.unit)
         if variable is not None:
             return variable.location, self.object_type(variable)
-        return Location(Root("register", node.text)), Strange(name="")
+        return self._register(node.text)
+
+    def _register(self, name: str) -> tuple[Location, ObjectType]:
+        type_ = self.vendor_type(name)
+        return Location(Root("register", name)), type_ or Strange(name="")
 
     def _well_known(self, name: str) -> int | None:
         if name in _TRUTHS:

@@ -1,6 +1,7 @@
 """The board file's C expressions, matched by structure after macro expansion.
 
-`$any` stands for any expression, `$code` for where the code is delivered, `EXPR @ WHERE` limits the place.
+`$any` stands for any expression, `$code` for where the code is delivered, `EXPR @ WHERE` limits the
+place.
 """
 
 import re
@@ -77,8 +78,8 @@ def head(tree: Expr) -> tuple[str, str]:
     match tree:
         case Name():
             return ("name", tree.text)
-        case Call(function=Name()):
-            return ("call", tree.function.text)
+        case Call(function=Name(text=name)):
+            return ("call", name)
         case Member():
             return ("member", tree.name)
         case Index():

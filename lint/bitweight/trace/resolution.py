@@ -1,7 +1,8 @@
 """Placeholders replaced by what the whole tree says of them.
 
-An expression with placeholders enters; closed expressions leave, one for each way that the program may take
-where that is not decided by the code. Ways that carry no reading drop out beside ways that do.
+An expression with placeholders enters; closed expressions leave, one for each way that the program
+may take where that is not decided by the code. Ways that carry no reading drop out beside ways that
+do.
 """
 
 from collections.abc import Iterable, Mapping
@@ -23,42 +24,23 @@ from bitweight.arithmetic.expressions import (
     children,
     walk,
 )
-from bitweight.firmware.objects import Arithmetic, Location, Strange
-from bitweight.firmware.units import Function
+from bitweight.firmware.objects import Location
 from bitweight.trace.contexts import Context, named, shown
 from bitweight.trace.execution import Execution
 from bitweight.trace.initialisers import component
-from bitweight.trace.lowering import ANYWHERE
-from bitweight.trace.memory import Copy, Input, Value, is_number
+from bitweight.trace.measures import measures
+from bitweight.trace.memory import Input, is_number
 from bitweight.trace.runs import Runner
+from bitweight.trace.structures import structure
+from bitweight.trace.writings import Writings
 
 _MOST_WAYS = 12
-_CALLER_ROUNDS = 8
-_COMPARISONS = building.COMPARISONS | building.LOGICAL
+_NONE_YET = 1 << 30
+_ITSELF = "\0"
+"""Marks an unknown that is an object's own earlier value."""
 
-
-def measures(root: Expression, tainted: Mapping[int, frozenset[str]]) -> frozenset[str]:
-    """The channels whose code the value is made from; what only decides between values does not count.
-
-    `tainted` says which unknowns were made from which codes.
-    """
-    found: dict[int, frozenset[str]] = {}
-    for node in walk(root):
-        match node:
-            case Code():
-                here = frozenset(node.channels) | tainted.get(id(node), frozenset())
-            case Unknown() | Literal():
-                here = tainted.get(id(node), frozenset())
-            case Binary(operator=operator) if operator in _COMPARISONS:
-                here = frozenset()
-            case Unary(operator="!"):
-                here = frozenset()
-            case Choose():
-                here = found[id(node.then)] | found[id(node.other)]
-            case _:
-                here = frozenset().union(*(found[id(child)] for child in children(node)))
-        found[id(node)] = here
-    return found[id(root)]
+Ways = tuple[Expression, ...]
+"""Closed expressions for one value, one for each way that is decided at run time."""
 
 
 @dataclass(kw_only=True)
@@ -68,29 +50,32 @@ class Resolver:
     context: Context
     runner: Runner
     tainted: dict[int, frozenset[str]] = field(default_factory=dict)
-    used: dict[int, set[Location]] = field(default_factory=dict)
-    _objects: dict[Location, tuple[Expression, ...]] = field(default_factory=dict)
+    writings: Writings = field(init=False)
+    _objects: dict[Location, Ways] = field(default_factory=dict)
     _stack: list[Location] = field(default_factory=list)
-    _lowest: int = 1 << 30
+    _lowest: int = _NONE_YET
+    """The outermost object of the stack that one being resolved came back to."""
     _kept: list[object] = field(default_factory=list)
+    """Expressions known by identity live as long as the resolver."""
+
+    def __post_init__(self) -> None:
+        self.writings = Writings(context=self.context, runner=self.runner)
 
     def measures(self, expression: Expression) -> frozenset[str]:
         """The channels a closed expression is made from."""
         return measures(expression, self.tainted)
 
-    def alternatives(self, root: Expression) -> tuple[Expression, ...]:
+    def alternatives(self, root: Expression) -> Ways:
         """Every closed expression that the value may be."""
-        memo: dict[int, tuple[Expression, ...]] = {}
+        memo: dict[int, Ways] = {}
         for node in walk(root):
             memo[id(node)] = self._ways(node, memo)
         self._kept.append((root, memo))
         return memo[id(root)]
 
-    # --- one node --------------------------------------------------------------------------
+    # --- one node -----------------------------------------------------------------------------
 
-    def _ways(
-        self, node: Expression, memo: Mapping[int, tuple[Expression, ...]]
-    ) -> tuple[Expression, ...]:
+    def _ways(self, node: Expression, memo: Mapping[int, Ways]) -> Ways:
         match node:
             case Literal() | Unknown():
                 return (node,)
@@ -101,20 +86,15 @@ class Resolver:
                 return self._choice(node, memo)
             case Default() | Convert() | Unary() | Binary():
                 below = [memo[id(child)] for child in children(node)]
-                if all(
-                    len(some) == 1 and some[0] is child
-                    for some, child in zip(below, children(node), strict=True)
-                ):
+                if all(map(_unchanged, below, children(node))):
                     return (node,)
                 made = [self._rebuilt(node, parts) for parts in product(*below)]
                 return self._distinct(made, node)
 
-    def _rebuilt(self, node: Expression, parts: tuple[Expression, ...]) -> Expression:
+    def _rebuilt(self, node: Expression, parts: Ways) -> Expression:
         for part in parts:
             if isinstance(part, Unknown):
-                reason = part.reason
-                if reason.startswith(_ITSELF):
-                    reason = reason.removeprefix(_ITSELF)
+                reason = part.reason.removeprefix(_ITSELF)
                 made = Unknown(reason=reason, type=node.type, place=part.place)
                 self._taint(made, parts)
                 return made
@@ -127,41 +107,36 @@ class Resolver:
                 return node
 
     def _taint(self, made: Unknown, parts: Iterable[Expression]) -> None:
-        channels = frozenset().union(*(self.measures(part) for part in parts))
+        """Remember the channels that an unknown was made from."""
+        channels = frozenset[str]().union(*(self.measures(part) for part in parts))
         self._kept.append(made)
         if channels:
             self.tainted[id(made)] = channels
 
-    def _choice(
-        self, node: Choose, memo: Mapping[int, tuple[Expression, ...]]
-    ) -> tuple[Expression, ...]:
+    def _choice(self, node: Choose, memo: Mapping[int, Ways]) -> Ways:
         conditions = memo[id(node.condition)]
         then, other = memo[id(node.then)], memo[id(node.other)]
-        if len(conditions) == 1 and not isinstance(conditions[0], Unknown):
-            condition = conditions[0]
-            known = self.context.constant(condition)
-            if known is not None:
-                return then if known else other
-            if (
-                (condition,) == (node.condition,)
-                and then == (node.then,)
-                and other == (node.other,)
-            ):
-                return (node,)
-            made = [
-                replace(node, condition=condition, then=one, other=two)
-                for one, two in product(then, other)
-            ]
-            return self._distinct(made, node)
-        return self._preferred((*then, *other), node)
+        if len(conditions) > 1 or isinstance(conditions[0], Unknown):
+            return self._preferred((*then, *other), node)
+        condition = conditions[0]
+        known = self.context.constant(condition)
+        if known is not None:
+            return then if known else other
+        if all(map(_unchanged, (conditions, then, other), children(node))):
+            return (node,)
+        made = [
+            replace(node, condition=condition, then=one, other=two)
+            for one, two in product(then, other)
+        ]
+        return self._distinct(made, node)
 
-    def _preferred(self, ways: tuple[Expression, ...], node: Expression) -> tuple[Expression, ...]:
-        """Ways that carry a reading, if some do; an object's own earlier value is no way of its own."""
+    def _preferred(self, ways: Ways, node: Expression) -> Ways:
+        """Ways that carry a reading, if some do; an object's own earlier value is no way."""
         others = tuple(one for one in ways if not _is_itself(one)) or ways[:1]
         carrying = tuple(one for one in others if self.measures(one))
         return self._distinct(carrying or others, node)
 
-    def _distinct(self, ways: Iterable[Expression], node: Expression) -> tuple[Expression, ...]:
+    def _distinct(self, ways: Iterable[Expression], node: Expression) -> Ways:
         found: dict[str, Expression] = {}
         for one in ways:
             found.setdefault(structure(one), one)
@@ -174,22 +149,17 @@ class Resolver:
                 return (made,)
         return tuple(found.values())
 
-    # --- placeholders ----------------------------------------------------------------------
+    # --- placeholders -------------------------------------------------------------------------
 
-    def _input(self, node: Code, known: Input) -> tuple[Expression, ...]:
-        match known.kind:
-            case "object":
-                assert known.location is not None
-                found = self.object(known.location, node)
-                return tuple(self._as(one, node) for one in found)
-            case "parameter":
-                assert known.function is not None
-                reason = (
-                    f"{node.text} is a parameter of {known.function.name}(), "
-                    "and no call that gives it is followed"
-                )
-            case _:
-                reason = known.reason
+    def _input(self, node: Code, known: Input) -> Ways:
+        if known.location is not None:
+            return tuple(self._as(one, node) for one in self.object(known.location, node))
+        reason = known.reason
+        if known.function is not None:
+            reason = (
+                f"{node.text} is a parameter of {known.function.name}(), "
+                "and no call that gives it is followed"
+            )
         return (self._unknown(reason, node),)
 
     def _unknown(self, reason: str, node: Code) -> Unknown:
@@ -198,13 +168,11 @@ class Resolver:
         return made
 
     def _as(self, value: Expression, node: Code) -> Expression:
-        if _is_itself(value):
-            made = Unknown(reason=value.reason, type=node.type, place=node.place)  # type: ignore[union-attr]
-            self._kept.append(made)
-            return made
+        if isinstance(value, Unknown) and _is_itself(value):
+            return self._unknown(value.reason, node)
         return building.convert(value, node.type, Purpose.STORE, node.place)
 
-    def object(self, location: Location, node: Code) -> tuple[Expression, ...]:
+    def object(self, location: Location, node: Code) -> Ways:
         """Every value an object may hold where it is read."""
         if location in self._objects:
             return self._objects[location]
@@ -225,13 +193,15 @@ class Resolver:
             self._stack.pop()
         if self._lowest >= depth:
             self._objects[location] = found
-            self._lowest = 1 << 30
+            self._lowest = _NONE_YET
         return found
 
-    def _held(self, location: Location, node: Code) -> tuple[Expression, ...]:
-        written: list[Expression] = []
-        for function in self._writing(location):
-            written.extend(self._written(function, location, node))
+    def _held(self, location: Location, node: Code) -> Ways:
+        written = [
+            way
+            for value in self.writings.values(location, node)
+            for way in self.alternatives(value)
+        ]
         if not written and location.root.kind != "object":
             return (self._unknown(_undefined(location), node),)
         others = [one for one in written if not _is_itself(one)]
@@ -240,143 +210,61 @@ class Resolver:
             return self._distinct(carrying, node)
         return self._settled(location, others, node)
 
-    def _settled(
-        self, location: Location, written: list[Expression], node: Code
-    ) -> tuple[Expression, ...]:
-        """An object that no reading reaches: a constant, or a default that something may overwrite."""
+    # --- objects that no reading reaches ------------------------------------------------------
+
+    def _settled(self, location: Location, written: list[Expression], node: Code) -> Ways:
+        """A constant, or a default that something may overwrite; else a reason."""
         values = {self.context.constant(one) for one in written}
         initial = self._initialiser(location, node)
         if len(values) == 1 and None not in values:
             value = self.context.constant(initial) if initial is not None else None
             if value is None or value in values or value == 0:
                 return (written[0],)
+        if initial is not None and not written:
+            return (initial,)
         if initial is not None:
-            place = node.place
-            made = Default(name=shown(location), operand=initial, type=initial.type, place=place)
-            return (made,) if written else (initial,)
-        declared = self.context.declared(location, None)
+            name = shown(location)
+            return (Default(name=name, operand=initial, type=initial.type, place=node.place),)
         if written and None not in values:
             return self._distinct(written, node)
+        return (self._unknown(self._why_unknown(location, written), node),)
+
+    def _why_unknown(self, location: Location, written: list[Expression]) -> str:
+        declared = self.context.declared(location, None)
         if declared is None or declared.declared_only:
-            return (self._unknown(_undefined(location), node),)
+            return _undefined(location)
         if not written:
-            reason = (
+            return (
                 f"nothing in the sources writes {shown(location)}; "
                 "give its value in [constants] or name it as a reading"
             )
-            return (self._unknown(reason, node),)
         unknowns = [one.reason for one in written if isinstance(one, Unknown)]
         because = f" ({unknowns[0]})" if unknowns else ""
-        reason = f"{shown(location)} is set at run time{because}; give its value in [constants]"
-        return (self._unknown(reason, node),)
+        return f"{shown(location)} is set at run time{because}; give its value in [constants]"
 
     def _initialiser(self, location: Location, node: Code) -> Expression | None:
+        """The constant that an object's declaration gives it."""
         declared = self.context.declared(location, None)
         if declared is None or declared.value is None:
             return None
-        lowering = Execution(self.context, declared.unit, declared.function)
+        execution = Execution(self.context, declared.unit, declared.function)
         found = component(
             declared.value,
             location.path,
             declared.type,
-            lowering.field_names,
-            lowering.subscript_in(declared.unit),
+            execution.field_names,
+            execution.subscript_in(declared.unit),
         )
-        if found is None:
+        value = execution.value(found) if found is not None else None
+        if value is None or not is_number(value):
             return None
-        value = lowering.value(found)
-        if not is_number(value):
-            return None
-        made = building.convert(
-            named(value, shown(location), node.place),
-            node.type,
-            Purpose.STORE,
-            node.place,  # type: ignore[arg-type]
-        )
+        value = named(value, shown(location), node.place)
+        made = building.convert(value, node.type, Purpose.STORE, node.place)
         return made if self.context.constant(made) is not None else None
 
-    # --- who writes an object ----------------------------------------------------------------
 
-    def _writing(self, location: Location) -> tuple[Function, ...]:
-        root = location.root
-        if root.kind not in ("object", "register"):
-            return ()
-        return self.context.writers(root, self.context.declared(location, None))
-
-    def _written(self, function: Function, location: Location, node: Code) -> list[Expression]:
-        """What a function writes there; where that is its parameter, what its callers give."""
-        found: list[Expression] = []
-        seen = {function.key}
-        pending = [function]
-        rounds = 0
-        while pending and rounds < _CALLER_ROUNDS * 8:
-            rounds += 1
-            one = pending.pop()
-            values = self._values(one, location, node)
-            callers = self._callers(one) if any(self._waits_for(v, one) for v in values) else ()
-            if callers:
-                for caller in callers:
-                    if caller.key not in seen:
-                        seen.add(caller.key)
-                        pending.append(caller)
-                values = [value for value in values if not self._waits_for(value, one)]
-            for value in values:
-                found.extend(self.alternatives(value))
-        return found
-
-    def _waits_for(self, value: Expression, function: Function) -> bool:
-        """Whether a value hangs on a parameter of the function itself."""
-        return any(
-            known.kind == "parameter" and known.function is function
-            for node in walk(value)
-            if isinstance(node, Code) and (known := self.context.inputs.get(id(node))) is not None
-        )
-
-    def _callers(self, function: Function) -> tuple[Function, ...]:
-        return tuple(
-            one
-            for one in self.context.program.all_functions(function.name)
-            if one is not function and function.name in one.mentions.calls
-        )
-
-    def _values(self, function: Function, location: Location, node: Code) -> list[Expression]:
-        run = self.runner.run(function)
-        found: list[Expression] = []
-        for written, values in run.writes.items():
-            if written.root != location.root:
-                continue
-            for value in values:
-                part = self._part(written, location, value, node)
-                if part is not None:
-                    found.append(part)
-        return found
-
-    def _part(
-        self, written: Location, location: Location, value: Value, node: Code
-    ) -> Expression | None:
-        """What a write to `written` leaves at `location`."""
-        if len(written.path) > len(location.path):
-            return None
-        same = all(
-            ANYWHERE in (mine, theirs) or mine == theirs
-            for mine, theirs in zip(written.path, location.path, strict=False)
-        )
-        if not same:
-            return None
-        rest = location.path[len(written.path) :]
-        if not rest:
-            return value if is_number(value) else None  # type: ignore[return-value]
-        if isinstance(value, Copy):
-            source = Location(value.source.root, (*value.source.path, *rest))
-            if source == location:
-                return None
-            type_ = Arithmetic(type=node.type) if node.type is not None else Strange(name="")
-            return self.context.object(source, type_, node.place)
-        return None
-
-
-_ITSELF = "\0"
-"""Marks an unknown that is an object's own earlier value."""
+def _unchanged(ways: Ways, node: Expression) -> bool:
+    return len(ways) == 1 and ways[0] is node
 
 
 def _is_itself(expression: Expression) -> bool:
@@ -388,28 +276,3 @@ def _undefined(location: Location) -> str:
         f"{shown(location)} is not defined in the given sources; "
         "define it, or give its value in [constants]"
     )
-
-
-def structure(root: Expression) -> str:
-    """A text that two expressions share when they compute the same in the same way."""
-    texts: dict[int, str] = {}
-    numbers: dict[str, str] = {}
-    for node in walk(root):
-        below = " ".join(texts[id(child)] for child in children(node))
-        match node:
-            case Literal():
-                text = f"{node.value!r}:{node.type.name}@{node.leaf.place if node.leaf else ''}"
-            case Code():
-                text = f"code {node.channels} {node.text}:{node.type.name}"
-            case Unknown():
-                text = f"unknown {node.reason}"
-            case Default():
-                text = f"default {node.name} {below}"
-            case Convert():
-                text = f"to {node.type.name} {below}"
-            case Unary() | Binary():
-                text = f"{node.operator}:{node.type.name} {below}"
-            case Choose():
-                text = f"choose:{node.type.name} {below}"
-        texts[id(node)] = numbers.setdefault(text, f"#{len(numbers)}")
-    return ";".join(f"{number}={text}" for text, number in numbers.items())

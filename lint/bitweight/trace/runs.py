@@ -17,7 +17,7 @@ from bitweight.firmware.units import Function
 from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution
-from bitweight.trace.lowering import Event
+from bitweight.trace.machines import Event
 from bitweight.trace.memory import Address, Copy, Value
 
 

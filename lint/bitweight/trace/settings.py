@@ -39,9 +39,9 @@ class Setting:
     """One selection that configuration code makes.
 
     `subject` is what is selected ("reference", "justification", "input"); `value` the selection in
-    the family's words ("supply", "external", "internal", "left", "3"); `text` is the code; `caution` the data
-    sheet's hazard of a wrong selection; `target` the register. `channels` are those for whose reading the
-    setting was seen to hold; empty where it is made for all.
+    the family's words ("supply", "external", "internal", "left", "3"); `text` is the code;
+    `caution` the data sheet's hazard of a wrong selection; `target` the register. `channels` are
+    those for whose reading the setting was seen to hold; empty where it is made for all.
     """
 
     subject: str
@@ -183,10 +183,10 @@ def _written(
     for value in run.writes.get(location, ()):
         if not is_number(value):
             continue
-        bits = known_bits(value, context)  # type: ignore[arg-type]
+        bits = known_bits(value, context)
         for one in fields:
             if one.subject != "input":
-                yield from _selected(one, bits, formula(value), place, ())  # type: ignore[arg-type]
+                yield from _selected(one, bits, formula(value), place, ())
 
 
 def _read(

@@ -71,8 +71,8 @@ class Shapes(Machine):
         if not isinstance(type_, Record):
             return None
         units = self.context.program.units
-        own = units.get(type_.scope)
-        for unit in (*((own,) if own is not None else ()), *units.values()):
+        own = [units[type_.scope]] if type_.scope in units else []
+        for unit in [*own, *units.values()]:
             found = unit.member(type_, name)
             if found is not None:
                 return found
@@ -101,6 +101,10 @@ class Shapes(Machine):
         for unit in (self.unit, *program.units.values()):
             if name in unit.prototypes:
                 return _result(unit.type_of(unit.prototypes[name].type))
+        return self.vendor_type(name)
+
+    def vendor_type(self, name: str) -> ObjectType | None:
+        """The type that the family's data gives a register or call that nothing declares."""
         for family in self.context.families:
             if name in family.types:
                 known = self.model.named(tuple(family.types[name].split()))

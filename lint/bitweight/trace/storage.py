@@ -3,6 +3,7 @@
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Literal, Purpose
 from bitweight.firmware.objects import (
+    ANYWHERE,
     Arithmetic,
     Array,
     FunctionType,
@@ -18,7 +19,7 @@ from bitweight.places import Place
 from bitweight.trace.contexts import named, shown
 from bitweight.trace.initialisers import component, element_count
 from bitweight.trace.machines import Frame
-from bitweight.trace.memory import ANYWHERE, Address, Copy, Routine, Value, is_number
+from bitweight.trace.memory import Address, Copy, Routine, Value, is_number
 from bitweight.trace.shapes import Shapes
 
 _MOST_ELEMENTS = 4096
@@ -49,7 +50,7 @@ class Storage(Shapes):
         return self._read_within(location, type_, node)
 
     def _read_within(self, location: Location, type_: ObjectType, node: Node) -> Value:
-        """An object that was not written itself: part of what was written as a whole, or untouched."""
+        """An object not written itself: part of what was written as a whole, or untouched."""
         for depth in range(len(location.path) - 1, -1, -1):
             outer = self.state.values.get(Location(location.root, location.path[:depth]))
             if isinstance(outer, Copy):

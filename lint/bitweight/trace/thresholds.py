@@ -94,7 +94,7 @@ def _evaluated(context: Context, unit: Unit, pattern: Pattern) -> Expression | N
         value = Execution(context, text).value(tree)
     except LimitReached:
         return None
-    return value if is_number(value) else None  # type: ignore[return-value]
+    return value if is_number(value) else None
 
 
 def _definition(unit: Unit, pattern: Pattern) -> Place | None:
