@@ -2,14 +2,21 @@
 
 from collections.abc import Iterator
 
-from bitweight.arithmetic.expressions import Code
-from bitweight.judge.cases import Case, Facts, reads_another
-from bitweight.judge.findings import Finding, Level
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.selections import contradicting, selections
-from bitweight.judge.statements import listed, steps
-from bitweight.trace.conversions import Conversion
-from bitweight.trace.settings import Setting
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Code,
+    Conversion,
+    Facts,
+    Finding,
+    Level,
+    Setting,
+    contradicting,
+    listed,
+    reads_another,
+    selections,
+    steps,
+)
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:

@@ -2,11 +2,16 @@
 
 from collections.abc import Iterator
 
-from bitweight.firmware.constants import Conflict, Definition
-from bitweight.judge.cases import Facts
-from bitweight.judge.findings import Finding, Level, Related
-from bitweight.judge.rules import TreeRule
-from bitweight.judge.statements import listed
+from bitweight.api import (
+    Conflict,
+    Definition,
+    Facts,
+    Finding,
+    Level,
+    Related,
+    TreeRule,
+    listed,
+)
 
 
 def check(facts: Facts) -> Iterator[Finding]:

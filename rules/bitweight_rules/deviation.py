@@ -6,9 +6,11 @@ name.
 
 from collections.abc import Iterable
 
-from bitweight.judge.cases import Facts
-from bitweight.judge.findings import Finding
-from bitweight.judge.rules import TreeRule
+from bitweight.api import (
+    Facts,
+    Finding,
+    TreeRule,
+)
 
 
 def check(facts: Facts) -> Iterable[Finding]:

@@ -4,13 +4,19 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from bitweight.arithmetic.expressions import Binary
-from bitweight.judge.cases import Case, Facts, Judgement
-from bitweight.judge.findings import Finding
-from bitweight.judge.levels import stated_or_warning
-from bitweight.judge.losses import Loss
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import place_of, quantity, steps
+from bitweight.api import (
+    Binary,
+    Case,
+    ChannelRule,
+    Facts,
+    Finding,
+    Judgement,
+    Loss,
+    place_of,
+    quantity,
+    stated_or_warning,
+    steps,
+)
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:

@@ -3,12 +3,19 @@
 from collections.abc import Iterator
 from fractions import Fraction
 
-from bitweight.board.chains import Ideal, ideal, not_computed
-from bitweight.board.hardware import Channel
-from bitweight.judge.cases import Case, Facts
-from bitweight.judge.findings import Finding, Level
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import quantity, volts
+from bitweight.api import (
+    Case,
+    Channel,
+    ChannelRule,
+    Facts,
+    Finding,
+    Ideal,
+    Level,
+    ideal,
+    not_computed,
+    quantity,
+    volts,
+)
 
 Ends = tuple[Fraction, Fraction]
 

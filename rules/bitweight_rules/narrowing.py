@@ -2,14 +2,26 @@
 
 from collections.abc import Iterator
 
-from bitweight.arithmetic.expressions import Convert, Expression, Purpose
-from bitweight.judge.cases import Case, Facts, Judgement
-from bitweight.judge.clamps import Clamp
-from bitweight.judge.findings import Finding, Level
-from bitweight.judge.operations import WrongOperation
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import first_leaf, place_of, quantity, steps, uses
-from bitweight_rules.overflow import type_for
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Clamp,
+    Convert,
+    Expression,
+    Facts,
+    Finding,
+    Judgement,
+    Level,
+    Place,
+    Purpose,
+    WrongOperation,
+    first_leaf,
+    place_of,
+    quantity,
+    steps,
+    type_for,
+    uses,
+)
 
 _VERBS = {
     Purpose.CAST: "is cast to",
@@ -44,11 +56,20 @@ def _narrow(case: Case, judgement: Judgement, operation: WrongOperation) -> Find
         channels=(case.channel.name,),
         message=f"{judgement.conversion.result} {_verb(operation.node)} {type_.name}, which cannot "
         f"hold {furthest} ({shown}): first wrong at code {code}",
-        place=place_of(operation.node, judgement.conversion.place),
+        place=_type_place(operation, judgement),
         found=f"{type_.name}, {type_.low} to {type_.high}",
         expected=f"{type_for(low, high)}, for {low} to {high}",
         related=steps(judgement.conversion),
     )
+
+
+def _type_place(operation: WrongOperation, judgement: Judgement) -> Place:
+    """Where the type stands that is too narrow: the declaration of what is stored to."""
+    declared = judgement.conversion.declared
+    node = operation.node
+    if declared is not None and isinstance(node, Convert) and node.purpose is Purpose.STORE:
+        return declared
+    return place_of(node, judgement.conversion.place)
 
 
 def _verb(node: Expression) -> str:

@@ -2,13 +2,22 @@
 
 from collections.abc import Iterator
 
-from bitweight.arithmetic.expressions import Binary
-from bitweight.arithmetic.values import FaultKind
-from bitweight.judge.cases import Case, Facts, Judgement
-from bitweight.judge.findings import Finding, Level, Related
-from bitweight.judge.operations import WrongOperation
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import edit, place_of, steps
+from bitweight.api import (
+    Binary,
+    Case,
+    ChannelRule,
+    Facts,
+    FaultKind,
+    Finding,
+    Judgement,
+    Level,
+    Related,
+    WrongOperation,
+    edit,
+    place_of,
+    steps,
+    type_for,
+)
 
 _NOUNS = {"*": "product", "+": "sum", "-": "difference", "<<": "shifted value", "/": "quotient"}
 
@@ -104,14 +113,6 @@ def _expected(operation: WrongOperation) -> str:
     if operation.kind is FaultKind.SIGN and (operation.low or 0) < 0:
         wider = "a signed type"
     return f"{wider}, as {operation.suffix.text} gives" if operation.suffix else wider
-
-
-def type_for(low: int, high: int) -> str:
-    """The narrowest type of stdint.h that holds both (C11 7.20.1.1)."""
-    signed = low < 0
-    needed = max((-low - 1).bit_length() + 1 if signed else 0, high.bit_length() + signed)
-    bits = next((width for width in (8, 16, 32) if width >= needed), 64)
-    return f"int{bits}_t" if signed else f"uint{bits}_t"
 
 
 RULE = ChannelRule(

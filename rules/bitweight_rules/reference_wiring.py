@@ -2,12 +2,22 @@
 
 from collections.abc import Iterator, Sequence
 
-from bitweight.board.parts import Reference, ReferenceSource
-from bitweight.judge.cases import Case, Facts
-from bitweight.judge.findings import Finding, Level, Related
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.selections import Selections, contradicting, selected, selections, written
-from bitweight.trace.settings import Setting
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Facts,
+    Finding,
+    Level,
+    Reference,
+    ReferenceSource,
+    Related,
+    Selections,
+    Setting,
+    contradicting,
+    selected,
+    selections,
+    written,
+)
 
 _SOURCES = {source.value for source in ReferenceSource}
 _PHRASES = {

@@ -2,11 +2,14 @@
 
 from collections.abc import Iterator
 
-from bitweight.judge.cases import Case, Facts
-from bitweight.judge.corrections import constant_findings
-from bitweight.judge.explanations import WrongConstant
-from bitweight.judge.findings import Finding
-from bitweight.judge.rules import ChannelRule
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Facts,
+    Finding,
+    WrongConstant,
+    constant_findings,
+)
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:

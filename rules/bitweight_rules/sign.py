@@ -2,13 +2,20 @@
 
 from collections.abc import Iterator
 
-from bitweight.arithmetic.expressions import Code, walk
-from bitweight.board.converters import Coding
-from bitweight.judge.cases import Case, Facts, Judgement
-from bitweight.judge.findings import Finding, Level
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import quantity, steps
-from bitweight.places import Place
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Code,
+    Coding,
+    Facts,
+    Finding,
+    Judgement,
+    Level,
+    Place,
+    quantity,
+    steps,
+    walk,
+)
 
 _WORDS = {
     Coding.UNSIGNED: "unsigned",

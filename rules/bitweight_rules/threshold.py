@@ -6,16 +6,28 @@ from fractions import Fraction
 
 import numpy as np
 
-from bitweight.arithmetic.literals import exact_value, half_digit
-from bitweight.board.chains import Ideal, ideal, not_computed
-from bitweight.board.hardware import Channel, Limit, LimitMeasure
-from bitweight.judge.allowances import allowance
-from bitweight.judge.cases import Case, Facts, Judgement
-from bitweight.judge.findings import Finding, Level
-from bitweight.judge.rules import ChannelRule
-from bitweight.judge.statements import edit, quantity, uses
-from bitweight.judge.units import result_unit
-from bitweight.trace.thresholds import Threshold
+from bitweight.api import (
+    Case,
+    Channel,
+    ChannelRule,
+    Facts,
+    Finding,
+    Ideal,
+    Judgement,
+    Level,
+    Limit,
+    LimitMeasure,
+    Threshold,
+    allowance,
+    edit,
+    exact_value,
+    half_digit,
+    ideal,
+    not_computed,
+    quantity,
+    result_unit,
+    uses,
+)
 
 _HALF = Fraction(1, 2) + Fraction(1, 10**9)
 """Halfway between two counts either neighbour is the nearest."""

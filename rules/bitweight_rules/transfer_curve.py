@@ -2,10 +2,13 @@
 
 from collections.abc import Iterator
 
-from bitweight.judge.cases import Case, Facts
-from bitweight.judge.findings import Finding
-from bitweight.judge.residues import residual_findings
-from bitweight.judge.rules import ChannelRule
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Facts,
+    Finding,
+    residual_findings,
+)
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:

@@ -2,9 +2,15 @@
 
 from collections.abc import Iterator
 
-from bitweight.judge.cases import Case, Facts, reads_another
-from bitweight.judge.findings import Finding, Level, Related
-from bitweight.judge.rules import ChannelRule
+from bitweight.api import (
+    Case,
+    ChannelRule,
+    Facts,
+    Finding,
+    Level,
+    Related,
+    reads_another,
+)
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:

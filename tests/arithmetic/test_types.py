@@ -2,7 +2,7 @@
 
 import pytest
 
-from bitweight.arithmetic.types import MODELS, CType, DataModel, Kind
+from bitweight.arithmetic.types import MODELS, CType, DataModel, Kind, type_for
 
 AVR, HOST, DEFAULT = MODELS["avr"], MODELS["host"], DataModel()
 
@@ -170,3 +170,21 @@ def test_every_type_has_a_rank_of_its_kind() -> None:
     )
     assert [t.bits for t in types] == sorted(t.bits for t in types)
     assert AVR.long.rank == AVR.unsigned_long.rank
+
+
+@pytest.mark.parametrize(
+    ("low", "high", "name"),
+    [
+        (0, 255, "uint8_t"),
+        (0, 256, "uint16_t"),
+        (-1, 127, "int8_t"),
+        (-1, 128, "int16_t"),
+        (-32768, 0, "int16_t"),
+        (-32769, 0, "int32_t"),
+        (0, 5115000, "uint32_t"),
+        (0, 1 << 32, "uint64_t"),
+    ],
+)
+def test_type_for(low: int, high: int, name: str) -> None:
+    """The narrowest type of stdint.h that holds both ends is named (C11 7.20.1.1)."""
+    assert type_for(low, high) == name

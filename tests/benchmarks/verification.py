@@ -15,8 +15,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from pathlib import Path
 
-ROOT = Path(__file__).resolve().parents[2]
-sys.path.insert(0, str(ROOT / "tests"))
+sys.path.insert(0, str(Path(__file__).resolve().parents[1]))
 
 from benchmarks.arithmetic import CODES, best_of, in_c
 from benchmarks.firmware_trees import CHANNELS, board_text, write_tree
@@ -24,6 +23,7 @@ from bitweight.arithmetic.evaluation import evaluate
 from bitweight.arithmetic.types import MODELS
 from properties.conversions import CONVERSIONS
 
+ROOT = Path(__file__).resolve().parents[2]
 IMPORTS = "import numpy, rich, tree_sitter"
 """What a program on these libraries pays before it does anything."""
 PARSING = """\
@@ -35,6 +35,8 @@ for path in Path(sys.argv[1]).rglob("*.[ch]"):
     parser.parse(path.read_bytes())
 """
 """Parses every .c and .h below a folder once, and keeps nothing."""
+ENVIRONMENT = {key: os.environ[key] for key in os.environ if key != "PYTHONDONTWRITEBYTECODE"}
+"""Compiled modules are kept, as for anybody who runs a program twice."""
 SMALL = ROOT / "corpus" / "demo" / "clean"
 
 
@@ -60,7 +62,10 @@ class Row:
 def cost(*command: str) -> Cost:
     """The cost of one process of this interpreter, which must not fail to run."""
     process = subprocess.Popen(
-        [sys.executable, *command], stdout=subprocess.PIPE, stderr=subprocess.DEVNULL
+        [sys.executable, *command],
+        stdout=subprocess.PIPE,
+        stderr=subprocess.DEVNULL,
+        env=ENVIRONMENT,
     )
     assert process.stdout is not None
     printed = process.stdout.read()

@@ -69,7 +69,7 @@ def test_the_command_survives(case: CorpusCase, run: CaseRun) -> None:
         "two\nlines",
         "\x1b[31mred\x1b[0m",
         "tab\tbell\a",
-        "[bold]markup[/bold]",
+        "[bold]markup[red]",
         "\u202eturned",
         "-rf",
         "a:12:3: error",

@@ -24,9 +24,13 @@ WITHOUT_REPLACEMENT = {
     },
     "seeded/clamp-inside-the-range": {"narrowing": "what the clamp is for, only its author knows"},
     "seeded/conflicting-constant": {"conflicting-constant": "which value is meant is not known"},
+    "seeded/curve-where-the-chain-is-straight": {
+        "transfer-curve": "no constant makes a straight line of it"
+    },
     "seeded/deviation-matches-nothing": {"deviation": "the comment is the author's to withdraw"},
     "seeded/divided-first": {"early-division": ORDER},
     "seeded/divider-in-integers": {"early-division": ORDER},
+    "seeded/input-of-another-channel": {"channel-map": WIRING},
     "seeded/input-past-the-range": {"input-range": WIRING},
     "seeded/narrow-result": {"narrowing": TYPE},
     "seeded/offset-binary-missed": {"sign": DECODING},

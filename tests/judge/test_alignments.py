@@ -1,5 +1,6 @@
 """Justification as configuration code selects it."""
 
+from dataclasses import replace
 from typing import Any
 
 import pytest
@@ -7,7 +8,7 @@ import pytest
 import facts
 from bitweight.board.converters import Justification
 from bitweight.judge.findings import Finding, Level
-from bitweight.trace.conversions import Trace
+from bitweight.trace.conversions import Conversion, Trace
 from bitweight.trace.settings import Setting
 from bitweight_rules.justification import RULE
 from facts import C, at, findings_of
@@ -23,18 +24,31 @@ def _setting(value: str) -> Setting:
     )
 
 
-def _found(value: str, **changes: Any) -> tuple[Finding, ...]:
+def _register(text: str, bits: int) -> Conversion:
+    """A conversion that copies a register of so many bits."""
+    c = C()
+    word = replace(c.code(), text=text, type=c.model.integer(bits, signed=False))
+    return facts.conversion(word)
+
+
+def _found(value: str, conversions: tuple[Conversion, ...] = (), **changes: Any) -> tuple[Finding, ...]:
     tank = facts.channel(converter=facts.converter(**changes))
-    case = facts.case(of=tank, traced=Trace(channel="tank"))
+    case = facts.case(of=tank, traced=Trace(channel="tank", conversions=conversions))
     return findings_of(RULE.check, case, settings=(_setting(value),))
 
 
 @pytest.mark.parametrize(("stated", "level"), [(True, Level.ERROR), (False, Level.WARNING)])
 def test_other_justification(stated: bool, level: Level) -> None:
     """A selection of the other end is an error, a warning where the board file left it open."""
-    (found,) = _found("left", justified_stated=stated)
+    (found,) = _found("left", (_register("ADC", 16),), justified_stated=stated)
     assert (found.level, found.found, found.expected) == (level, "left", "right")
     assert ("assumed" in found.message) == (not stated)
+
+
+@pytest.mark.parametrize(("text", "bits"), [("ADCH", 8), ("adc_read(3)", 16)])
+def test_what_does_not_see_the_alignment_is_silent(text: str, bits: int) -> None:
+    """The high byte alone, or what a driver returns, says nothing of a justification left open."""
+    assert _found("left", (_register(text, bits),), justified_stated=False) == ()
 
 
 def test_same_justification_is_silent() -> None:

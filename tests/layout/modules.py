@@ -1,7 +1,7 @@
 """The program's own modules as syntax trees, and what they import."""
 
 import ast
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Set
 from dataclasses import dataclass, field
 from functools import cached_property
 from pathlib import Path
@@ -87,18 +87,33 @@ def body_lines(function: Function) -> int:
 
 
 def undocumented(tree: ast.Module) -> Iterator[str]:
-    """Public classes, functions and methods without a docstring."""
-    yield from _undocumented(tree, "")
+    """Public classes, functions and methods without a docstring.
+
+    A method needs none where a protocol of the module tells what it does.
+    """
+    told = {
+        method.name
+        for node in ast.walk(tree)
+        if isinstance(node, ast.ClassDef) and any(map(_is_protocol, node.bases))
+        for method in node.body
+        if isinstance(method, Function) and ast.get_docstring(method) is not None
+    }
+    yield from _undocumented(tree, "", told)
 
 
-def _undocumented(node: ast.Module | ast.ClassDef, prefix: str) -> Iterator[str]:
+def _undocumented(node: ast.Module | ast.ClassDef, prefix: str, told: Set[str]) -> Iterator[str]:
     for child in node.body:
         if not isinstance(child, ast.ClassDef | Function) or child.name.startswith("_"):
             continue
-        if ast.get_docstring(child) is None and not _overload(child):
+        is_told = bool(prefix) and child.name in told
+        if ast.get_docstring(child) is None and not is_told and not _overload(child):
             yield prefix + child.name
         if isinstance(child, ast.ClassDef):
-            yield from _undocumented(child, f"{prefix}{child.name}.")
+            yield from _undocumented(child, f"{prefix}{child.name}.", told)
+
+
+def _is_protocol(base: ast.expr) -> bool:
+    return ast.unparse(base).startswith("Protocol")
 
 
 def _overload(node: ast.ClassDef | Function) -> bool:

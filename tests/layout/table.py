@@ -27,9 +27,9 @@ ORDER = (
     "trace",
     "judge",
     "pipeline",
+    "report",
     "api",
     "bitweight_rules",
-    "report",
     "command",
     "__main__",
 )

@@ -260,6 +260,13 @@ def test_undocumented_names_are_seen() -> None:
     assert list(undocumented(ast.parse(text))) == ["A.m", "f"]
 
 
+def test_methods_of_a_protocol_are_told_once() -> None:
+    """What a documented method of a protocol says need not be said where it is implemented."""
+    text = "class P(Protocol):\n 'x'\n def m(self):\n  'y'\n def n(self): ...\n"
+    text += "class A:\n 'x'\n def m(self): ...\n def n(self): ...\n"
+    assert list(undocumented(ast.parse(text))) == ["P.n", "A.n"]
+
+
 @pytest.mark.parametrize(
     ("text", "is_found"),
     [

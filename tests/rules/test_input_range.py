@@ -19,12 +19,11 @@ def _found(**changes: Any) -> tuple[Finding, ...]:
 
 @pytest.mark.parametrize(("top", "pin"), [("5.001 V", "5.001 V"), ("6 V", "6 V"), ("50 V", "50 V")])
 def test_past_full_scale(top: str, pin: str) -> None:
-    """A range past full scale is a warning on the range, with where the reading stops."""
+    """A range past full scale stands at the channel, with where the reading stops."""
     (found,) = _found(ends=("0 V", top))
-    assert found.message == (
-        f"the range puts {pin} on the pin, adc ends at 5 V: the reading stops at 5 V"
-    )
-    assert (found.level, found.place.line) == (Level.WARNING, 16)
+    assert found.message.startswith(f"the range puts {pin} on the pin, adc ends at 5 V: ")
+    assert "the reading stops at 4.99" in found.message
+    assert (found.level, found.place) == (Level.WARNING, facts.channel().place)
     assert (found.found, found.expected) == (f"0 V to {pin}", "within 0 V to 5 V")
 
 
@@ -39,7 +38,19 @@ def test_behind_a_divider() -> None:
     divided = facts.divider("30k", "10k")
     assert _found(chain=(divided,), ends=("0 V", "20 V")) == ()
     (found,) = _found(chain=(divided,), ends=("0 V", "24 V"))
-    assert "puts 6 V on the pin, adc ends at 5 V: the reading stops at 20 V" in found.message
+    assert "puts 6 V on the pin, adc ends at 5 V: the reading stops at 19.9" in found.message
+
+
+@pytest.mark.parametrize(
+    ("top", "level"), [("5.001 V", Level.WARNING), ("5.2 V", Level.ERROR), ("9 V", Level.ERROR)]
+)
+def test_level_by_what_is_missed(top: str, level: Level) -> None:
+    """It is an error where a value of the range is read off by more than the allowed error."""
+    c = facts.C()
+    scaled = c.op(c.op(c.code(), "*", "5000"), "/", "1024")
+    tank = facts.channel(ends=("0 V", top), allowed="100 mV")
+    (found,) = findings_of(RULE.check, facts.case(scaled, of=tank))
+    assert found.level is level
 
 
 def test_below_zero() -> None:
@@ -56,7 +67,7 @@ def test_without_a_range() -> None:
 
 
 @pytest.mark.parametrize(
-    ("top", "level"), [("5.5 V", [Level.WARNING]), ("6 V", [Level.WARNING, Level.ERROR])]
+    ("top", "level"), [("5.5 V", [Level.WARNING]), ("6 V", [Level.ERROR])]
 )
 def test_pin_limit(top: str, level: list[Level]) -> None:
     """Past the pin's absolute limit it is an error that says what can happen."""
@@ -64,4 +75,4 @@ def test_pin_limit(top: str, level: list[Level]) -> None:
     found = _found(ends=("0 V", top), pin_limit=limit)
     assert [one.level for one in found] == level
     if Level.ERROR in level:
-        assert "absolute limit is 5.5 V: this can damage the part" in found[1].message
+        assert "absolute limit is 5.5 V: this can damage the part" in found[0].message

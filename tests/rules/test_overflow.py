@@ -7,7 +7,7 @@ from bitweight.arithmetic.expressions import Expression
 from bitweight.arithmetic.types import DataModel
 from bitweight.board.hardware import Channel
 from bitweight.judge.findings import Finding, Level
-from bitweight_rules.overflow import RULE, type_for
+from bitweight_rules.overflow import RULE
 from facts import C, findings_of
 
 
@@ -99,21 +99,3 @@ def test_store_of_the_result_is_not_its_matter() -> None:
     c = C()
     scaled = c.op(c.op(c.code(), "*", "5000"), "/", "1024")
     assert _found(c.store("uint8_t", scaled), facts.INT32) == ()
-
-
-@pytest.mark.parametrize(
-    ("low", "high", "name"),
-    [
-        (0, 255, "uint8_t"),
-        (0, 256, "uint16_t"),
-        (-1, 127, "int8_t"),
-        (-1, 128, "int16_t"),
-        (-32768, 0, "int16_t"),
-        (-32769, 0, "int32_t"),
-        (0, 5115000, "uint32_t"),
-        (0, 1 << 32, "uint64_t"),
-    ],
-)
-def test_type_for(low: int, high: int, name: str) -> None:
-    """The narrowest type of stdint.h that holds both ends is named (C11 7.20.1.1)."""
-    assert type_for(low, high) == name

@@ -21,14 +21,29 @@ _LONGEST_FRACTION = 20_000
 class Numbers(Protocol):
     """The operations that differ between one exact number and an array; NaN has no value."""
 
-    def literal(self, value: Fraction) -> Any: ...
-    def divide(self, left: Any, right: Any) -> Any: ...
-    def floor(self, value: Any) -> Any: ...
-    def bitwise(self, operate: Callable[[Any, Any], Any], left: Any, right: Any) -> Any: ...
-    def power(self, count: Any) -> Any: ...
-    def holds(self, condition: Any, *operands: Any) -> Any: ...
-    def select(self, condition: Any, then: Any, other: Any) -> Any: ...
-    def bounded(self, value: Any) -> Any: ...
+    def literal(self, value: Fraction) -> Any:
+        """The number, or an array of it alone."""
+
+    def divide(self, left: Any, right: Any) -> Any:
+        """The quotient; NaN for a division by zero."""
+
+    def floor(self, value: Any) -> Any:
+        """The largest whole number that is not above the value."""
+
+    def bitwise(self, operate: Callable[[Any, Any], Any], left: Any, right: Any) -> Any:
+        """`operate` on the whole parts of both, as integers."""
+
+    def power(self, count: Any) -> Any:
+        """2**count; NaN for a count that no shift has."""
+
+    def holds(self, condition: Any, *operands: Any) -> Any:
+        """1 where a comparison is true, else 0; NaN where an operand has no value."""
+
+    def select(self, condition: Any, then: Any, other: Any) -> Any:
+        """`then` where the condition is not 0, else `other`; NaN where it has no value."""
+
+    def bounded(self, value: Any) -> Any:
+        """The value, or NaN where it takes too many digits to go on with."""
 
 
 class ExactNumbers:

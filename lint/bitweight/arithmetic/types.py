@@ -329,3 +329,11 @@ MODELS: Mapping[str, DataModel] = MappingProxyType(
         "host": DataModel(long_bits=64, pointer_bits=64, char_signed=True),
     }
 )
+
+
+def type_for(low: int, high: int) -> str:
+    """The narrowest type of stdint.h that holds both (C11 7.20.1.1)."""
+    signed = low < 0
+    needed = max((-low - 1).bit_length() + 1 if signed else 0, high.bit_length() + signed)
+    bits = next((width for width in (8, 16, 32) if width >= needed), 64)
+    return f"int{bits}_t" if signed else f"uint{bits}_t"

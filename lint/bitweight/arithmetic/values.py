@@ -110,20 +110,24 @@ def choose(condition: Value, then: Value, other: Value) -> Value:
 
 
 def dtype_of(type_: CType) -> type[np.number[Any]]:
+    """The element type of arrays that hold values of a C type."""
     if not type_.is_integer:
         return np.float32 if type_.bits == 32 else np.float64
     return np.int64 if type_.signed or type_.bits < 64 else np.uint64
 
 
 def from_mask(mask: Mask) -> Value:
+    """1 where the mask is set, else 0, as the result of a comparison."""
     return Value(mask.astype(np.int64), 0, 1)
 
 
 def faults_at(*found: tuple[FaultKind, Mask]) -> Faults:
+    """The faults that occur at one code at least."""
     return tuple((kind, mask) for kind, mask in found if mask.any())
 
 
 def holds(type_: CType, low: int, high: int) -> bool:
+    """Whether an integer type holds both ends, and so all between them."""
     return type_.low <= low and high <= type_.high
 
 

@@ -88,14 +88,34 @@ class Declarations:
             return Arithmetic(type=self._model.int_)
         return Strange(name=" ".join(words))
 
+    def fields(self, record: Record) -> tuple[Field, ...]:
+        """The members of a record in order; none where its body is not in the unit."""
+        return self.records.get(record.tag, ())
+
+    def field_type(self, member: Field) -> ObjectType:
+        """The type of a member, with its width if it is a bit field."""
+        return _bit_field(member, self.type_of(member.type))
+
     def member(self, record: Record, name: str) -> ObjectType | None:
         """The type of a member, looked for in unnamed inner records too."""
-        for one in self.records.get(record.tag, ()):
-            type_ = self.type_of(one.type)
+        for one in self.fields(record):
+            type_ = self.field_type(one)
             if one.name == name:
-                return _bit_field(one, type_)
+                return type_
             if not one.name and isinstance(type_, Record):
                 within = self.member(type_, name)
+                if within is not None:
+                    return within
+        return None
+
+    def member_start(self, record: Record, name: str) -> int | None:
+        """Where the name of a member stands in the unit's text."""
+        for one in self.fields(record):
+            if one.name == name:
+                return one.start
+            inner = self.field_type(one) if not one.name else None
+            if isinstance(inner, Record):
+                within = self.member_start(inner, name)
                 if within is not None:
                     return within
         return None

@@ -1,8 +1,8 @@
 """Declarations of the grammar's tree: specifiers, declarators, members, enumerators, parameters."""
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
-from bitweight.firmware.grammar import Branch, Grammar, span
+from bitweight.firmware.grammar import Branch, Grammar, broken, span
 from bitweight.firmware.syntax import (
     ArrayOf,
     Declarator,
@@ -41,11 +41,13 @@ class Declarators(Grammar):
     """Converts declarations and type names."""
 
     def declaration(self, node: Branch) -> tuple[Declarator, ...]:
-        """What one declaration declares."""
+        """What one declaration declares; no value is trusted beside what is no C."""
         base = self.specifiers(node)
-        return tuple(
-            self.declarator(child, base) for child in node.children_by_field_name("declarator")
-        )
+        declarators = node.children_by_field_name("declarator")
+        made = tuple(self.declarator(child, base) for child in declarators)
+        if not made or not _is_broken_after(node, declarators[0]):
+            return made
+        return tuple(replace(one, value=broken(node)) for one in made)
 
     def type_name(self, node: Branch) -> TypeSyntax:
         """A type name, as in a cast."""
@@ -137,7 +139,7 @@ class Declarators(Grammar):
         if not declarators and base.fields is not None:
             return [Field(name="", type=TypeSyntax(specifiers=base))]
         made = [self.declarator(one, base) for one in declarators]
-        return [Field(name=one.name, type=one.type, bits=bits) for one in made]
+        return [Field(name=one.name, start=one.start, type=one.type, bits=bits) for one in made]
 
     # --- declarators --------------------------------------------------------------------------
 
@@ -196,6 +198,13 @@ def implicit_int(node: Branch, name: str) -> Declarator:
     """A name declared without a type, as in old-style definitions."""
     return Declarator(
         **span(node), name=name, type=TypeSyntax(specifiers=Specifiers(words=("int",)))
+    )
+
+
+def _is_broken_after(node: Branch, first: Branch) -> bool:
+    """Whether something that is no C stands behind the first declarator."""
+    return node.has_error and any(
+        child.type == "ERROR" and child.start_byte >= first.end_byte for child in node.children
     )
 
 

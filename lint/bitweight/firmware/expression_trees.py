@@ -11,6 +11,7 @@ from bitweight.firmware.grammar import (
     Branch,
     broken,
     inner,
+    is_broken,
     named,
     operator_at,
     span,
@@ -52,7 +53,10 @@ class ExpressionTrees(Declarators):
         self.level += 1
         try:
             convert = _EXPRESSIONS.get(node.type)
-            made = convert(self, node) if convert else strange(node)
+            if is_broken(node):
+                made: Expr = broken(node)
+            else:
+                made = convert(self, node) if convert else strange(node)
         finally:
             self.level -= 1
         mark = self.marks.get((node.start_byte, node.end_byte))
@@ -89,6 +93,8 @@ class ExpressionTrees(Declarators):
         function = node.child_by_field_name("function")
         arguments = node.child_by_field_name("arguments")
         if function is None or arguments is None:
+            return broken(node)
+        if is_broken(arguments):
             return broken(node)
         given = inner(arguments)
         cast = self._type_in_parentheses(function)
@@ -247,6 +253,8 @@ class ExpressionTrees(Declarators):
                 designators.append(self.text(part).lstrip(". \t\r\n"))
             elif part.type == "subscript_designator" and part.named_children:
                 designators.append(self.expr(part.named_children[0]))
+            elif part.type.endswith("designator"):
+                designators.append(strange(part))
         return Entry(designators=tuple(designators), value=self.required(node, "value"))
 
     def _compound(self, node: Branch) -> Expr:

@@ -123,6 +123,13 @@ def broken(node: Branch) -> Opaque:
     return Opaque(**span(node), kind="broken C")
 
 
+def is_broken(node: Branch) -> bool:
+    """Whether something stands in a node that C has no place for, or lacks what C asks for."""
+    return node.is_missing or (
+        node.has_error and any(child.type == "ERROR" for child in node.children)
+    )
+
+
 def strange(node: Branch) -> Opaque:
     """What is C, or an extension of it, but is not followed."""
     return broken(node) if node.type == "ERROR" else Opaque(**span(node), kind=plain(node.type))

@@ -6,6 +6,7 @@ from dataclasses import dataclass, fields
 from bitweight.firmware.syntax import (
     Assign,
     Call,
+    Declarator,
     Declare,
     Increment,
     Index,
@@ -19,7 +20,7 @@ from bitweight.firmware.syntax import (
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Mentions:
-    """Names in one function body; its own locals are left out of all but `names`.
+    """Names in one function body; its own locals, static ones aside, are only in `names`.
 
     `addressed` are objects whose address is taken, `passes` what stands as an argument.
     """
@@ -56,7 +57,7 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
                 for argument in node.arguments:
                     passes |= _root(argument)
             case Declare():
-                declared |= {one.name for one in node.declarators}
+                declared |= {one.name for one in node.declarators if not _is_static(one)}
             case Loop():
                 loops = True
             case _:
@@ -69,6 +70,10 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
         calls=frozenset(calls),
         loops=loops,
     )
+
+
+def _is_static(one: Declarator) -> bool:
+    return "static" in one.type.specifiers.storage
 
 
 def nodes(root: Node) -> Iterator[Node]:

@@ -57,6 +57,10 @@ ANYWHERE = "*"
 """The step of a path that stands for a subscript that is not constant."""
 
 
+Path = tuple[str | int, ...]
+"""Member names and subscripts, from an object inwards."""
+
+
 @dataclass(frozen=True, slots=True)
 class Root:
     """Where an object lives. `scope` is empty for external linkage, a file for static objects,
@@ -73,11 +77,27 @@ class Location:
     """An object or a part of it: member names and subscripts from the root inwards."""
 
     root: Root
-    path: tuple[str | int, ...] = ()
+    path: Path = ()
+
+    @property
+    def plain(self) -> "Location":
+        """The object without the type it is looked at through a cast pointer."""
+        for depth, step in enumerate(self.path):
+            if isinstance(step, str) and step.startswith("("):
+                return Location(self.root, self.path[:depth])
+        return self
 
     def part(self, step: str | int) -> "Location":
         """A member or element of this object."""
         return Location(self.root, (*self.path, step))
+
+    def at(self, path: Path) -> "Location":
+        """A part of a part of this object."""
+        return Location(self.root, (*self.path, *path))
+
+    def viewed(self, type_name: str) -> "Location":
+        """This object, looked at as another type than its own."""
+        return self.part(f"({type_name})")
 
     def within(self, outer: "Location") -> bool:
         """Whether this is `outer` or a part of it."""

@@ -3,7 +3,7 @@
 from collections.abc import Callable, Mapping, Sequence
 
 from bitweight.firmware.expression_trees import ExpressionTrees
-from bitweight.firmware.grammar import Branch, broken, inner, span, strange
+from bitweight.firmware.grammar import Branch, broken, inner, is_broken, span, strange
 from bitweight.firmware.syntax import (
     Block,
     Case,
@@ -47,6 +47,8 @@ class StatementTrees(ExpressionTrees):
 
     def _evaluate(self, node: Branch) -> Stmt:
         below = inner(node)
+        if is_broken(node):
+            return broken(node)
         if not below:
             return _nothing(node)
         return Evaluate(**span(node), expression=self.expr(below[0]))
@@ -110,10 +112,17 @@ class StatementTrees(ExpressionTrees):
 
     def _return(self, node: Branch) -> Stmt:
         below = inner(node)
+        if is_broken(node):
+            return Return(**span(node), value=broken(node))
         return Return(**span(node), value=self.expr(below[0]) if below else None)
 
     def _jump(self, node: Branch) -> Stmt:
-        return Jump(**span(node), kind=node.type.removesuffix("_statement"))
+        label = node.child_by_field_name("label")
+        return Jump(
+            **span(node),
+            kind=node.type.removesuffix("_statement"),
+            label=self.text(label) if label is not None else "",
+        )
 
     def _label(self, node: Branch) -> Stmt:
         label = node.child_by_field_name("label")

@@ -74,6 +74,7 @@ class Substitution:
         """Whether `__VA_OPT__` means something here: not inside another one."""
 
     def tokens(self) -> list[Token]:
+        """The replacement list, arguments in place and operators applied; not yet rescanned."""
         body = self._macro.body
         if not self._macro.operates:
             if not self._arguments:

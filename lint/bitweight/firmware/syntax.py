@@ -20,9 +20,13 @@ class Node:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Field:
-    """A member of a struct or union, in order; `bits` is the width of a bit field."""
+    """A member of a struct or union, in order; `bits` is the width of a bit field.
+
+    `start` is where the name stands.
+    """
 
     name: str
+    start: int = 0
     type: "TypeSyntax"
     bits: "Expr | None" = None
 
@@ -334,9 +338,10 @@ class Return(Node):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Jump(Node):
-    """`break`, `continue` or `goto`."""
+    """`break`, `continue` or `goto label`."""
 
     kind: str
+    label: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

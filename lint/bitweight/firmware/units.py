@@ -215,6 +215,11 @@ class Unit:
         """The type of a member, looked for in unnamed inner records too."""
         return self.declarations.member(record, name)
 
+    def member_place(self, record: Record, name: str) -> Place | None:
+        """Where a member is declared."""
+        start = self.declarations.member_start(record, name)
+        return self.spelled(start) if start is not None else None
+
 
 def _is_constant(type_: TypeSyntax) -> bool:
     """Whether an object of the type is const itself, not only what it points to."""

@@ -87,7 +87,7 @@ def judge_case(
 
 def reads_another(conversion: Conversion) -> tuple[Code, ...]:
     """The readings of a conversion, if none of them is its own channel's."""
-    codes = tuple(node for node in walk(conversion.expression) if isinstance(node, Code))
+    codes = _codes(conversion)
     if any(conversion.channel in code.channels or not code.channels for code in codes):
         return ()
     return codes
@@ -105,14 +105,20 @@ def _untraced(channel: Channel, trace: Trace) -> str | None:
 
 
 def _reads(conversion: Conversion) -> bool:
-    return any(isinstance(node, Code) for node in walk(conversion.expression))
+    return bool(_codes(conversion))
+
+
+def _codes(conversion: Conversion) -> tuple[Code, ...]:
+    """Every reading in a conversion."""
+    return tuple(node for node in walk(conversion.expression) if isinstance(node, Code))
 
 
 def _frames(
     channel: Channel, trace: Trace, board: Board, model: DataModel, limits: Limits
 ) -> Sequence[Frame]:
-    others = steady_words(other for other in board.channels if other.name != channel.name)
     own = [one for one in trace.conversions if _reads(one) and not reads_another(one)]
+    read = {name for one in own for code in _codes(one) for name in code.channels}
+    others = steady_words(one for one in board.channels if one.name in read - {channel.name})
     frames = [
         Frame(
             conversion=conversion,

@@ -35,8 +35,9 @@ class Knob:
 
     `counts_bits` is true for the right operand of a shift, `on_reading` for one that shifts or
     divides the bare reading. `hints` are the roles that its name (or comment) speaks of, `exponent`
-    the power of ten that its unit word says (3 for mV), None without one. `inside` are the
-    constants it is made of, where it is a computed one like `(1 << 12) - 1`.
+    the power of ten that its unit word says (3 for mV), None without one; `physical` is true where
+    that word is a unit and no plain multiple. `inside` are the constants it is made of, where it is
+    a computed one like `(1 << 12) - 1`.
     """
 
     key: Key
@@ -49,6 +50,7 @@ class Knob:
     hints: frozenset[Role] = frozenset()
     named: bool = False
     exponent: int | None = None
+    physical: bool = False
     stated: StatedRole | None = None
     inside: tuple[Leaf, ...] = ()
 
@@ -149,6 +151,8 @@ def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | Non
     words = [word for name in names for word in _words(name)]
     stated = next((roles[name] for name in names if name in roles), None)
     hints = _hints(words) or _hints(_words(leaf.comment))
+    if any(word in _OHMS for word in words):
+        hints = (hints & _RESISTIVE) or _RESISTIVE
     return Knob(
         key=leaf_key(leaf),
         leaf=leaf,
@@ -158,6 +162,7 @@ def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | Non
         hints=hints,
         named=leaf.name is not None,
         exponent=_exponent(words, hints) if stated is None else _stated_exponent(stated),
+        physical=stated is None and any(word in _OHMS for word in words),
         stated=stated,
     )
 
@@ -208,6 +213,9 @@ _EXPONENTS = {
     "milliohm": 3, "uohm": 6, "pct": 2, "percent": 2, "x10": 1, "x100": 2, "x1000": 3,
 }  # fmt: skip
 """Powers of ten that unit words in names stand for (common practice)."""
+_OHMS = frozenset({"ohm", "ohms", "kohm", "kohms", "mohm", "milliohm", "uohm"})
+_RESISTIVE = frozenset({Role.RESISTANCE, Role.SHUNT})
+"""What a constant in ohms may be, whatever else its name says (R_TOP_OHM is no full scale)."""
 
 
 def _words(name: str) -> list[str]:

@@ -85,6 +85,7 @@ def _speaks_for_itself(knob: Knob) -> bool:
 
 
 def doubles(search: Search, starts: Sequence[Values]) -> Iterator[tuple[Repair, ...]]:
+    """Two corrections at a time that make the line the wanted one, the likeliest first."""
     for values in starts[:2]:
         line = search.line(values)
         if line is None:
@@ -161,6 +162,7 @@ def _interact(chosen: Sequence[_Option]) -> bool:
 
 
 def triples(search: Search, starts: Sequence[Values]) -> Iterator[tuple[Repair, ...]]:
+    """Three corrections at a time that make the line the wanted one."""
     for values in starts[:1]:
         line = search.line(values)
         if line is None:

@@ -73,7 +73,8 @@ def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
 
 def power_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None:
     """A bare power of ten takes another one."""
-    if not layout.unit_stated or not (knob.is_round and is_power(knob.value, 10)):
+    speaks_of_part = knob.named and (knob.physical or knob.hints - {Role.SENSITIVITY})
+    if not layout.unit_stated or speaks_of_part or not is_power(knob.value, 10):
         return None
     if not is_power(exact, 10):
         return None
@@ -104,6 +105,8 @@ def _contradicts_name(knob: Knob, meaning: Meaning) -> bool:
     if knob.stated is not None:
         return False
     scaling, hinted = meaning.term.scaling, meaning.term.role in knob.hints
+    if knob.physical and scaling is not Scaling.QUANTITY:
+        return True
     if scaling is Scaling.QUANTITY and knob.exponent is not None:
         return knob.exponent != meaning.exponent
     if scaling in (Scaling.COUNT, Scaling.PLAIN) and knob.exponent is not None:

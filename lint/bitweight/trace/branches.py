@@ -5,9 +5,10 @@ from dataclasses import replace
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression
-from bitweight.firmware.syntax import Block, Case, Expr, If, Node, Stmt, Switch
+from bitweight.firmware.syntax import Block, Case, Expr, If, Label, Node, Stmt, Switch
 from bitweight.trace.calls import Calls
 from bitweight.trace.exits import Exit, Flow
+from bitweight.trace.memory import State
 
 
 class Branches(Calls):
@@ -24,13 +25,28 @@ class Branches(Calls):
     def sequence(self, items: Sequence[Stmt]) -> Flow:
         """Statements one after the other, as far as they fall through."""
         exits: list[Exit] = []
+        following: State | None = self.state
         for item in items:
+            if isinstance(item, Label):
+                arriving = [one for one in exits if one.label == item.name]
+                exits = [one for one in exits if one.label != item.name]
+                following = self.behind(arriving, following, item)
+            if following is None:
+                continue
+            self.state = following
             flow = self.flow(item)
             exits.extend(flow.exits)
-            if flow.next is None:
-                return Flow(next=None, exits=tuple(exits))
-            self.state = flow.next
-        return Flow(next=self.state, exits=tuple(exits))
+            following = flow.next
+        return Flow(next=following, exits=tuple(exits))
+
+    def behind(self, arriving: Sequence[Exit], following: State | None, node: Node) -> State | None:
+        """The state where exits lead to, and what falls through arrives as well."""
+        for one in reversed(arriving):
+            if following is None or one.condition is None:
+                following = one.state
+            else:
+                following = self.join(one.condition, one.state, following, node)
+        return following
 
     def branch(self, node: If) -> Flow:
         """`if` and `else`."""
@@ -67,13 +83,7 @@ class Branches(Calls):
         """A flow whose exits of this kind lead behind the statement."""
         inner = [one for one in flow.exits if one.kind == kind]
         outer = tuple(one for one in flow.exits if one.kind != kind)
-        following = flow.next
-        for one in reversed(inner):
-            if one.condition is None or following is None:
-                following = one.state
-            else:
-                following = self.join(one.condition, one.state, following, node)
-        return Flow(next=following, exits=outer)
+        return Flow(next=self.behind(inner, flow.next, node), exits=outer)
 
     # --- switch ---------------------------------------------------------------------------------
 

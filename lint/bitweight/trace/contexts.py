@@ -8,14 +8,15 @@ from bitweight.arithmetic.building import Folder
 from bitweight.arithmetic.expressions import Code, Expression, Leaf, Literal
 from bitweight.arithmetic.literals import literal
 from bitweight.arithmetic.types import CType, DataModel
-from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, Root
+from bitweight.firmware.objects import Arithmetic, Array, Location, ObjectType, Record, Root
 from bitweight.firmware.outlines import line_comment
 from bitweight.firmware.symbols import Program
-from bitweight.firmware.syntax import Expr
+from bitweight.firmware.syntax import Expr, TypeSyntax
 from bitweight.firmware.units import Function, Unit, Variable
 from bitweight.limits import Limits
 from bitweight.places import Place
 from bitweight.trace.families import Family
+from bitweight.trace.initialisers import Parts
 from bitweight.trace.memory import Input
 from bitweight.trace.patterns import Pattern, head, parsed
 
@@ -54,6 +55,7 @@ class Declared:
 
     name: str
     type: ObjectType
+    written: TypeSyntax
     value: Expr | None
     unit: Unit
     function: Function | None
@@ -78,6 +80,13 @@ class Context:
     _kept: list[Expression] = field(default_factory=list)
     _objects: dict[tuple[Location, ObjectType], Code] = field(default_factory=dict)
     statics: dict[Root, Declared] = field(default_factory=dict)
+    members: dict[Record, tuple[tuple[str, ObjectType], ...]] = field(default_factory=dict)
+    """Members of records with their types, in order."""
+    sharing: dict[Location, tuple[Location, ...]] = field(default_factory=dict)
+    """For members of unions, the members that share their storage."""
+    seen: dict[str, Place] = field(default_factory=dict)
+    """Where each channel's code was read first."""
+    initialisers: dict[int, tuple[Expr, Parts | None]] = field(default_factory=dict)
     in_progress: dict[Root, set[tuple[str | int, ...]]] = field(default_factory=dict)
     pattern_constants: dict[int, tuple[Expr, int | float | None]] = field(default_factory=dict)
     _declared: dict[Root, Declared | None] = field(default_factory=dict)
@@ -247,6 +256,7 @@ def _declared(variable: Variable) -> Declared:
     return Declared(
         name=variable.name,
         type=variable.type,
+        written=variable.syntax.type,
         value=variable.value,
         unit=variable.unit,
         function=None,

@@ -18,8 +18,9 @@ class Step:
 class Conversion:
     """One way from a channel's reading to one result.
 
-    `result` names the variable, member, function or macro that holds it; `result_type` is the type
-    it ends in (the type of `expression`); `assumed` says what had to be assumed, one sentence each.
+    `result` names the variable, member, function or macro that holds it; `declared` is where that is
+    declared with its type, if it is an object; `assumed` says what had to be assumed, one sentence
+    each.
     """
 
     channel: str
@@ -31,6 +32,7 @@ class Conversion:
     steps: tuple[Step, ...] = ()
     assumed: tuple[str, ...] = ()
     other_readings: tuple[str, ...] = ()
+    declared: Place | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

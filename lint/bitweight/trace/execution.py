@@ -24,7 +24,7 @@ from bitweight.firmware.units import Function
 from bitweight.trace.contexts import Declared
 from bitweight.trace.exits import Exit, ExitKind, Flow
 from bitweight.trace.loops import Loops
-from bitweight.trace.memory import Value
+from bitweight.trace.memory import State, Value
 
 _NOWHERE = Node(start=0, end=0)
 _KINDS: Mapping[str, ExitKind] = MappingProxyType({"break": "break", "continue": "continue"})
@@ -64,17 +64,14 @@ class Execution(Loops):
                 return self.sequence(node.items)
             case Return():
                 value = self.value(node.value) if node.value is not None else None
-                return self._exit("return", value, node)
+                return _exit("return", self.state, node, value)
             case Jump():
-                return self._exit(_KINDS.get(node.kind, "goto"), None, node)
+                return _exit(_KINDS.get(node.kind, "goto"), self.state, node, label=node.label)
             case Label():
                 return self.flow(node.body)
             case Opaque():
+                self.lose(node)
                 return Flow(next=self.state)
-
-    def _exit(self, kind: ExitKind, value: Value | None, node: Node) -> Flow:
-        done = Exit(kind=kind, condition=None, state=self.state, value=value, node=node)
-        return Flow(next=None, exits=(done,))
 
     def block_value(self, items: tuple[Stmt, ...], node: Node) -> Value:
         """The value of a GNU statement expression: that of its last statement."""
@@ -122,6 +119,7 @@ class Execution(Loops):
             Declared(
                 name=one.name,
                 type=type_,
+                written=one.type,
                 value=one.value,
                 unit=self.unit,
                 function=function,
@@ -130,3 +128,10 @@ class Execution(Loops):
                 key=self.spelled(one.start),
             ),
         )
+
+
+def _exit(
+    kind: ExitKind, state: State, node: Node, value: Value | None = None, label: str = ""
+) -> Flow:
+    done = Exit(kind=kind, condition=None, state=state, value=value, node=node, label=label)
+    return Flow(next=None, exits=(done,))

@@ -14,7 +14,7 @@ ExitKind = Word["return", "break", "continue", "goto"]
 class Exit:
     """A way out of a statement.
 
-    Of several, the first whose condition holds is taken; None always holds.
+    Of several, the first whose condition holds is taken; None always holds. `label` is a goto's.
     """
 
     kind: ExitKind
@@ -22,6 +22,7 @@ class Exit:
     state: State
     value: Value | None
     node: Node
+    label: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -1,7 +1,5 @@
 """A function followed from its arguments to its result."""
 
-from dataclasses import replace
-
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Purpose
 from bitweight.errors import LimitReached
@@ -12,7 +10,6 @@ from bitweight.firmware.objects import (
     Location,
     ObjectType,
     Pointer,
-    Record,
     Root,
 )
 from bitweight.firmware.syntax import Declarator, Node, Stmt
@@ -21,7 +18,7 @@ from bitweight.trace.contexts import Context
 from bitweight.trace.exits import Exit, Flow
 from bitweight.trace.lowering import Lowering
 from bitweight.trace.machines import Frame
-from bitweight.trace.memory import Address, State, Value, is_number
+from bitweight.trace.memory import State, Value, is_number
 
 
 class Functions(Lowering):
@@ -39,13 +36,13 @@ class Functions(Lowering):
         """Follow a function's body; the value it returns."""
         self.frame_count += 1
         frame = Frame(function.unit, function, self.frame_count)
-        called_at = self.used(node)
+        called_at, before = self.used(node), self.state.copy()
         self.frames.append(frame)
         try:
             for one, value in zip(function.syntax.parameters, arguments, strict=False):
                 if one.name:
                     self._bind(frame, one, value)
-            return self._finished(function, self.flow(function.body), frame)
+            return self._finished(function, self.flow(function.body), frame, before)
         except LimitReached as reached:
             if len(self.frames) <= 2:
                 raise
@@ -57,19 +54,12 @@ class Functions(Lowering):
         type_: ObjectType = frame.unit.type_of(one.type)
         if isinstance(type_, Array):
             type_ = Pointer(to=type_.of)
-        if (
-            isinstance(type_, Pointer)
-            and isinstance(value, Address)
-            and (not isinstance(value.type, Record | Array) or isinstance(type_.to, Record))
-        ):
-            value = replace(value, type=type_.to)
         location = Location(Root("local", one.name, frame.scope_of(one.start)))
         frame.scopes[0][one.name] = (location, type_)
-        self.state.write(location, value)
-        self.types[location] = type_
+        self.put(location, type_, self.fitted(location, type_, value, one), one)
 
-    def _finished(self, function: Function, flow: Flow, frame: Frame) -> Value:
-        """Join all ways out of a function; note its result and wanted locals."""
+    def _finished(self, function: Function, flow: Flow, frame: Frame, before: State) -> Value:
+        """Join all ways out of a function that began with `before`; note result and locals."""
         returns = [one for one in flow.exits if one.kind == "return"]
         lost = [one for one in flow.exits if one.kind != "return"]
         result = self._result(function, returns, flow.next is not None or bool(lost))
@@ -81,10 +71,9 @@ class Functions(Lowering):
                 after = self.join(one.condition, one.state, after, function.body)
         self.state = after if after is not None else self._steady()
         if lost:
-            result = self.context.unknown(
-                f"{function.name}() jumps with goto, which is not followed",
-                self.used(function.body),
-            )
+            reason = f"{function.name}() jumps back or into a block with goto"
+            result = self.context.unknown(reason, function.key)
+            self.doubt(before, reason, function.body)
         self._note_locals(frame, function)
         if is_number(result) and returns:
             self.note("return", function.name, result, self.spelled(returns[-1].node.start))

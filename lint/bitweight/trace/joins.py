@@ -4,32 +4,49 @@ from dataclasses import replace
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression
-from bitweight.firmware.objects import Location, Strange
+from bitweight.firmware.objects import Location, Path, Root
 from bitweight.firmware.syntax import Node
-from bitweight.trace.memory import Copy, State, Value, is_number, merged
-from bitweight.trace.storage import Storage
+from bitweight.trace.beginnings import Beginnings
+from bitweight.trace.contexts import shown
+from bitweight.trace.memory import Copy, State, Value, is_number
 
 
-class Joins(Storage):
+class Joins(Beginnings):
     """Joins values and states."""
 
     def join(self, condition: Expression, then: State, other: State, node: Node) -> State:
         """The state after a fork."""
-        return merged(
-            condition,
-            then,
-            other,
-            lambda cond, left, right, _: self.joined(cond, left, right, node, merge=True),
-            lambda location: self._before(location, node),
-        )
+        if then.values == other.values:
+            return then
+        result: dict[Location, Value] = {}
+        for location in {**then.values, **other.values}:
+            left, right = then.values.get(location), other.values.get(location)
+            if isinstance(left, Copy) and isinstance(right, Copy):
+                # Their members are joined one by one.
+                result[location] = self._source_of_either(left, right)
+                continue
+            left = left if left is not None else self._untouched(then, location, node)
+            right = right if right is not None else self._untouched(other, location, node)
+            result[location] = self.joined(condition, left, right, node, merge=True)
+        return State(result)
 
-    def _before(self, location: Location, node: Node) -> Value:
-        """What a location held before a fork that wrote it in one arm only."""
+    @staticmethod
+    def _source_of_either(then: Copy, other: Copy) -> Copy:
+        if then.source == other.source:
+            return then
+        both = Location(Root("pointee", f"{shown(then.source)} or {shown(other.source)}"))
+        return replace(then, parts=(), source=both)
+
+    def _untouched(self, state: State, location: Location, node: Node) -> Value:
+        """What a location holds in the arm that did not write it."""
+        type_ = self.type_at(location)
+        inherited = self.inherited(state, location, type_, node)
+        if inherited is not None:
+            return inherited
         if location.root.kind == "local":
-            return self.context.unknown(
-                f"{location.root.name} is not set on every way", self.used(node)
-            )
-        return self.initial(location, self.type_at(location), self.used(node))
+            reason = f"{location.root.name} is not set on every way"
+            return self.context.unknown(reason, self.used(node))
+        return self.initial(location, type_, self.used(node))
 
     def joined(
         self, condition: Expression, then: Value, other: Value, node: Node, merge: bool = False
@@ -43,23 +60,22 @@ class Joins(Storage):
                 return building.merge(condition, then, other, place)
             return building.choose(self.model, condition, then, other, place)
         if isinstance(then, Copy) and isinstance(other, Copy):
-            return replace(then, parts=self._joined_parts(condition, then, other, node))
+            parts = self._joined_parts(condition, then, other, node)
+            return replace(self._source_of_either(then, other), parts=parts)
         return self.unknown("which object is meant depends on what happens at run time", node)
 
     def _joined_parts(
         self, condition: Expression, then: Copy, other: Copy, node: Node
-    ) -> tuple[tuple[tuple[str | int, ...], Value], ...]:
-        left, right = dict(then.parts), dict(other.parts)
-        found = []
-        for path in {**left, **right}:
-            values = [
-                side.get(path)
-                or self.initial(
-                    Location(copy.source.root, (*copy.source.path, *path)),
-                    Strange(name=""),
-                    self.used(node),
-                )
-                for side, copy in ((left, then), (right, other))
-            ]
-            found.append((path, self.joined(condition, values[0], values[1], node, merge=True)))
-        return tuple(found)
+    ) -> tuple[tuple[Path, Value], ...]:
+        left = dict(self.taken_apart(then, node))
+        right = dict(self.taken_apart(other, node))
+        missing = self.unknown("a struct of which only parts are known", node)
+        return tuple(
+            (
+                path,
+                self.joined(
+                    condition, left.get(path, missing), right.get(path, missing), node, True
+                ),
+            )
+            for path in {**left, **right}
+        )

@@ -4,6 +4,9 @@ A C tree and a state enter; a value leaves, the state changed as C says. What is
 becomes a placeholder with its reason, so that the structure around it is kept.
 """
 
+import re
+
+from bitweight.firmware.objects import Location, ObjectType
 from bitweight.firmware.syntax import (
     Assign,
     Braces,
@@ -24,8 +27,13 @@ from bitweight.firmware.syntax import (
     StatementExpr,
     Text,
 )
-from bitweight.trace.memory import Value, is_number
+from bitweight.trace.memory import Address, Value, is_number
 from bitweight.trace.operators import Operators
+
+_HARMLESS = frozenset({"offsetof expression", "alignof expression", "generic expression"})
+"""What is not followed but changes no object."""
+_STRING = re.compile(r'"(?:[^"\\\n]|\\.)*"')
+_WORD = re.compile(r"[A-Za-z_]\w*")
 
 
 class Lowering(Operators):
@@ -70,7 +78,28 @@ class Lowering(Operators):
             case Marked():
                 return self._marked(node)
             case Opaque():
+                self.lose(node)
                 return self.unknown(f"{node.kind} is not followed", node)
+
+    def lose(self, node: Opaque) -> None:
+        """Make unknown every object that something not followed mentions."""
+        if node.kind in _HARMLESS:
+            return
+        text = _STRING.sub(" ", self.unit.translation.text[node.start : node.end])
+        reason = f"{node.kind} at line {self.used(node).line} is not followed"
+        for word in dict.fromkeys(_WORD.findall(text)):
+            location, type_ = self.designated(Name(start=node.start, end=node.end, text=word))
+            if location.root.kind != "register" or self.state.holds(location):
+                self._lose_object(location, type_, reason, node)
+
+    def _lose_object(
+        self, location: Location, type_: ObjectType, reason: str, node: Opaque
+    ) -> None:
+        held = self.state.values.get(location)
+        if isinstance(held, Address):
+            self.forget(held.target.plain, self.type_at(held.target.plain), reason, node)
+        else:
+            self.forget(location, type_, reason, node)
 
     def _part(self, node: Index | Member) -> Value:
         found = self.lvalue(node)

@@ -1,9 +1,9 @@
 """The object that an expression designates, and where pointers point."""
 
-from bitweight.firmware.objects import ANYWHERE, Location, ObjectType, Root, Strange
-from bitweight.firmware.syntax import Braces, Expr, Index, Marked, Member, Name, Operation
+from bitweight.firmware.objects import ANYWHERE, Location, ObjectType, Record, Root, Strange
+from bitweight.firmware.syntax import Braces, Expr, Index, Marked, Member, Name, Node, Operation
 from bitweight.trace.contexts import shown
-from bitweight.trace.memory import Address, Copy, is_number
+from bitweight.trace.memory import Address, Copy, Value, is_number
 from bitweight.trace.names import Names
 
 
@@ -35,13 +35,21 @@ class Lvalues(Names):
             value = self.value(node.base)
             if not isinstance(value, Copy):
                 return None
-            base = (self._temporary(value), value.type)
+            base = (self._temporary(value, node), value.type)
         location, type_ = base
-        return location.part(node.name), self.member_type(type_, node.name) or Strange(name="")
+        part = location.part(node.name)
+        if isinstance(type_, Record):
+            others = self.sharing(type_, node.name)
+            if others:
+                self.context.sharing[part] = tuple(location.part(other) for other in others)
+        inner = self.member_type(type_, node.name)
+        if inner is None:
+            inner = type_ if isinstance(type_, Strange) else Strange(name="")
+        return part, inner
 
-    def _temporary(self, value: Copy) -> Location:
+    def _temporary(self, value: Copy, node: Node) -> Location:
         location = self.fresh("temporary")
-        self.state.write(location, value)
+        self.put(location, value.type, value, node)
         return location
 
     def fresh(self, name: str) -> Location:
@@ -63,7 +71,10 @@ class Lvalues(Names):
 
     def pointer(self, node: Expr) -> Address | None:
         """An expression as a pointer; what points nowhere known gets a place of its own name."""
-        value = self.value(node)
+        return self.pointed(self.value(node), node)
+
+    def pointed(self, value: Value, node: Expr) -> Address | None:
+        """A value as a pointer; None for functions and structs."""
         if isinstance(value, Address):
             return value
         if not is_number(value):

@@ -123,11 +123,16 @@ class Matching(Lvalues):
             found = self.pointee(target)
         if found is not None:
             location, type_ = found
-            self.state.write(location, self._code(source, type_, node))
+            if location.plain is not location:
+                location = location.plain
+                type_ = self.type_at(location)
+            self.put(location, type_, self._code(source, type_, node), node)
         return self.unknown(f"the status that {_word(node)} returns", node)
 
     def _code(self, source: Reading, type_: ObjectType | None, node: Expr) -> Code:
         self.note_registers(source, node)
+        for channel in source.channels:
+            self.context.seen.setdefault(channel, self.used(node))
         return Code(
             channels=source.channels,
             text=source.pattern.text,

@@ -1,11 +1,10 @@
 """What is known of the objects at one point of a run: values by location, merged at joins."""
 
-from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import TypeGuard
 
 from bitweight.arithmetic.expressions import Expression
-from bitweight.firmware.objects import Location, ObjectType
+from bitweight.firmware.objects import ANYWHERE, Location, ObjectType
 from bitweight.firmware.units import Function
 from bitweight.places import Place
 
@@ -54,16 +53,22 @@ class State:
         return State(dict(self.values))
 
     def write(self, location: Location, value: Value) -> None:
-        """Store a value; what was known of its parts is gone."""
-        if any(True for known in self.values if known != location and known.within(location)):
-            for known in [one for one in self.values if one.within(location)]:
-                del self.values[known]
+        """Store a value; what was known of its parts, and of what it may be, is gone."""
+        for known in [one for one in self.values if one != location and _replaced(one, location)]:
+            del self.values[known]
+        self.values[location] = value
         if isinstance(value, Copy):
-            self.values[location] = value
             for path, part in value.parts:
                 self.values[Location(location.root, (*location.path, *path))] = part
-            return
-        self.values[location] = value
+
+    def holds(self, location: Location) -> bool:
+        """Whether an object, or a part of it, was written."""
+        return any(known.within(location) for known in self.values)
+
+    def forget(self, location: Location) -> None:
+        """Drop what is known of an object and its parts."""
+        for known in [one for one in self.values if one.within(location)]:
+            del self.values[known]
 
     def parts(self, location: Location) -> tuple[tuple[tuple[str | int, ...], Value], ...]:
         """What is known of the parts of an object, by the path from it."""
@@ -75,32 +80,9 @@ class State:
         )
 
 
-Join = Callable[[Expression, Value, Value, Location], Value]
-
-
-def merged(
-    condition: Expression,
-    then: State,
-    other: State,
-    join: Join,
-    initial: Callable[[Location], Value | None],
-) -> State:
-    """The state after both arms; `initial` is what an arm sees that never wrote a location."""
-    if then.values == other.values:
-        return then
-    result: dict[Location, Value] = {}
-    for location in {**then.values, **other.values}:
-        left = then.values.get(location)
-        right = other.values.get(location)
-        if left is None:
-            left = initial(location)
-        if right is None:
-            right = initial(location)
-        if left is None or right is None:
-            # A local of one arm only: nobody can read it after the join.
-            continue
-        result[location] = left if left is right else join(condition, left, right, location)
-    return State(result)
+def _replaced(known: Location, written: Location) -> bool:
+    """Whether a write says anew what an object holds, for certain or perhaps."""
+    return known.within(written) or (ANYWHERE in written.path and known.may_be_in(written))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -1,10 +1,8 @@
 """C operators on values of a run: numbers, pointers, structs."""
 
-from dataclasses import replace
-
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression, Literal, Purpose
-from bitweight.firmware.objects import Arithmetic, Location, ObjectType, Pointer, Root, Strange
+from bitweight.firmware.objects import Arithmetic, Location, ObjectType, Pointer, Root
 from bitweight.firmware.syntax import (
     Assign,
     Cast,
@@ -52,10 +50,10 @@ class Operators(Matching):
         value = self.value(node.operand)
         if isinstance(value, Routine):
             return value
-        found = self.pointee(node.operand)
-        if found is None:
+        base = self.pointed(value, node.operand)
+        if base is None:
             return self.unknown("a pointer of this form is not followed", node)
-        return self.read(*found, node)
+        return self.read(base.target, base.type, node)
 
     def increment(self, node: Increment) -> Value:
         """`++` and `--`."""
@@ -184,8 +182,7 @@ class Operators(Matching):
                 place = self.spelled(node.start)
                 return building.convert(number, type_.type, Purpose.CAST, place)
             case Pointer() if isinstance(value, Address):
-                known = isinstance(type_.to, Strange) and not isinstance(value.type, Strange)
-                return value if known else replace(value, type=type_.to)
+                return self.retyped(value, type_.to)
             case Pointer() if is_number(value):
                 return self._address(value, type_.to, node)
             case _:

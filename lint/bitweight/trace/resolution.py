@@ -24,10 +24,9 @@ from bitweight.arithmetic.expressions import (
     children,
     walk,
 )
-from bitweight.firmware.objects import Location
-from bitweight.trace.contexts import Context, named, shown
+from bitweight.firmware.objects import Arithmetic, Location
+from bitweight.trace.contexts import Context, shown
 from bitweight.trace.execution import Execution
-from bitweight.trace.initialisers import component
 from bitweight.trace.measures import measures
 from bitweight.trace.memory import Input, is_number
 from bitweight.trace.runs import Runner
@@ -36,8 +35,6 @@ from bitweight.trace.writings import Writings
 
 _MOST_WAYS = 12
 _NONE_YET = 1 << 30
-_ITSELF = "\0"
-"""Marks an unknown that is an object's own earlier value."""
 
 Ways = tuple[Expression, ...]
 """Closed expressions for one value, one for each way that is decided at run time."""
@@ -55,6 +52,8 @@ class Resolver:
     _stack: list[Location] = field(default_factory=list)
     _lowest: int = _NONE_YET
     """The outermost object of the stack that one being resolved came back to."""
+    _earlier: set[int] = field(default_factory=set)
+    """Unknowns that are an object's own earlier value, by identity."""
     _kept: list[object] = field(default_factory=list)
     """Expressions known by identity live as long as the resolver."""
 
@@ -94,8 +93,7 @@ class Resolver:
     def _rebuilt(self, node: Expression, parts: Ways) -> Expression:
         for part in parts:
             if isinstance(part, Unknown):
-                reason = part.reason.removeprefix(_ITSELF)
-                made = Unknown(reason=reason, type=node.type, place=part.place)
+                made = Unknown(reason=part.reason, type=node.type, place=part.place)
                 self._taint(made, parts)
                 return made
         match node:
@@ -132,7 +130,7 @@ class Resolver:
 
     def _preferred(self, ways: Ways, node: Expression) -> Ways:
         """Ways that carry a reading, if some do; an object's own earlier value is no way."""
-        others = tuple(one for one in ways if not _is_itself(one)) or ways[:1]
+        others = tuple(one for one in ways if id(one) not in self._earlier) or ways[:1]
         carrying = tuple(one for one in others if self.measures(one))
         return self._distinct(carrying or others, node)
 
@@ -167,9 +165,14 @@ class Resolver:
         self._kept.append(made)
         return made
 
+    def _own_earlier(self, reason: str, node: Code) -> Unknown:
+        made = self._unknown(reason, node)
+        self._earlier.add(id(made))
+        return made
+
     def _as(self, value: Expression, node: Code) -> Expression:
-        if isinstance(value, Unknown) and _is_itself(value):
-            return self._unknown(value.reason, node)
+        if isinstance(value, Unknown) and id(value) in self._earlier:
+            return self._own_earlier(value.reason, node)
         return building.convert(value, node.type, Purpose.STORE, node.place)
 
     def object(self, location: Location, node: Code) -> Ways:
@@ -179,10 +182,10 @@ class Resolver:
         if location in self._stack:
             self._lowest = min(self._lowest, self._stack.index(location))
             reason = (
-                f"{_ITSELF}{shown(location)} is computed from its own earlier value "
-                "(a filter), which is not followed"
+                f"{shown(location)} is computed from its own earlier value (a filter), "
+                "which is not followed"
             )
-            return (self._unknown(reason, node),)
+            return (self._own_earlier(reason, node),)
         if len(self._stack) > self.context.limits.call_depth:
             return (self._unknown("objects that are computed from each other", node),)
         self._stack.append(location)
@@ -197,6 +200,10 @@ class Resolver:
         return found
 
     def _held(self, location: Location, node: Code) -> Ways:
+        other = self.writings.sharing(location)
+        if other is not None:
+            reason = f"{shown(location)} is read as {shown(other)} was written"
+            return (self._unknown(reason, node),)
         written = [
             way
             for value in self.writings.values(location, node)
@@ -204,7 +211,7 @@ class Resolver:
         ]
         if not written and location.root.kind != "object":
             return (self._unknown(_undefined(location), node),)
-        others = [one for one in written if not _is_itself(one)]
+        others = [one for one in written if id(one) not in self._earlier]
         carrying = [one for one in others if self.measures(one)]
         if carrying:
             return self._distinct(carrying, node)
@@ -248,27 +255,14 @@ class Resolver:
         if declared is None or declared.value is None:
             return None
         execution = Execution(self.context, declared.unit, declared.function)
-        found = component(
-            declared.value,
-            location.path,
-            declared.type,
-            execution.field_names,
-            execution.subscript_in(declared.unit),
-        )
-        value = execution.value(found) if found is not None else None
-        if value is None or not is_number(value):
+        made = execution.declared_value(declared, location, Arithmetic(type=node.type), node.place)
+        if made is None or not is_number(made) or self.context.constant(made) is None:
             return None
-        value = named(value, shown(location), node.place)
-        made = building.convert(value, node.type, Purpose.STORE, node.place)
-        return made if self.context.constant(made) is not None else None
+        return made
 
 
 def _unchanged(ways: Ways, node: Expression) -> bool:
     return len(ways) == 1 and ways[0] is node
-
-
-def _is_itself(expression: Expression) -> bool:
-    return isinstance(expression, Unknown) and expression.reason.startswith(_ITSELF)
 
 
 def _undefined(location: Location) -> str:

@@ -18,7 +18,7 @@ from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.execution import Execution
 from bitweight.trace.machines import Event
-from bitweight.trace.memory import Address, Copy, Value
+from bitweight.trace.memory import Address, Copy, State, Value
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -64,6 +64,8 @@ class Runner:
             reason = f"{function.name}(): {reached}"
         except RecursionError:
             reason = f"{function.name}() nests too deeply to be followed"
+        if reason is not None:
+            execution.doubt(State(), reason, function.body)
         writes: dict[Location, list[Value]] = {}
         for state in (execution.state, *execution.turn_ends):
             for location, value in state.values.items():

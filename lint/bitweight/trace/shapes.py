@@ -1,6 +1,6 @@
 """Types of objects with everything that takes computing: array lengths, members, sizes."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from dataclasses import replace
 
 from bitweight.firmware.objects import (
@@ -15,6 +15,7 @@ from bitweight.firmware.objects import (
 )
 from bitweight.firmware.syntax import ArrayOf, Expr, TypeSyntax
 from bitweight.firmware.units import Unit, Variable
+from bitweight.trace.contexts import Declared
 from bitweight.trace.initialisers import element_count
 from bitweight.trace.machines import Machine
 
@@ -28,6 +29,11 @@ class Shapes(Machine):
         """The type of an object with its array sizes filled in."""
         type_ = self.sized(variable.type, variable.syntax.type, variable.unit)
         return self.counted(type_, variable.value, variable.unit)
+
+    def whole_type(self, declared: Declared) -> ObjectType:
+        """The type of an object with static storage, its array sizes filled in."""
+        type_ = self.sized(declared.type, declared.written, declared.unit)
+        return self.counted(type_, declared.value, declared.unit)
 
     def counted(self, type_: ObjectType, value: Expr | None, unit: Unit) -> ObjectType:
         """A type whose open array length is that of its initialiser."""
@@ -61,18 +67,47 @@ class Shapes(Machine):
 
     def field_names(self, record: Record) -> tuple[tuple[str, ObjectType], ...]:
         """Members of a record in order."""
+        known = self.context.members
+        if record not in known:
+            known[record] = tuple(self._fields(record))
+        return known[record]
+
+    def _fields(self, record: Record) -> Iterator[tuple[str, ObjectType]]:
         unit = self.context.program.units.get(record.scope)
         if unit is None:
-            return ()
-        return tuple((one.name, unit.type_of(one.type)) for one in unit.records.get(record.tag, ()))
+            return
+        for one in unit.declarations.fields(record):
+            type_ = self.sized(unit.declarations.field_type(one), one.type, unit)
+            yield one.name, type_
+
+    def sharing(self, record: Record, name: str) -> tuple[str, ...]:
+        """The members that share their storage with a member of a union."""
+        if record.kind == "union":
+            return tuple(one for one in self._names(record) if one != name)
+        for own, type_ in self.field_names(record):
+            if not own and isinstance(type_, Record) and name in self._names(type_):
+                return self.sharing(type_, name)
+        return ()
+
+    def _names(self, record: Record, depth: int = 0) -> Iterator[str]:
+        """Member names of a record, those of unnamed inner records too."""
+        for own, type_ in self.field_names(record):
+            if own:
+                yield own
+            elif isinstance(type_, Record) and depth < _SIZE_DEPTH:
+                yield from self._names(type_, depth + 1)
 
     def member_type(self, type_: ObjectType, name: str) -> ObjectType | None:
         """The type of a member of a record."""
         if not isinstance(type_, Record):
             return None
-        units = self.context.program.units
-        own = [units[type_.scope]] if type_.scope in units else []
-        for unit in [*own, *units.values()]:
+        for own, inner in self.field_names(type_):
+            if own == name:
+                return inner
+            found = self.member_type(inner, name) if not own else None
+            if found is not None:
+                return found
+        for unit in self.context.program.units.values():
             found = unit.member(type_, name)
             if found is not None:
                 return found
@@ -85,7 +120,7 @@ class Shapes(Machine):
         declared = self.context.declared(location, self.unit)
         if declared is None:
             return Strange(name="")
-        type_ = declared.type
+        type_ = self.whole_type(declared)
         for step in location.path:
             if isinstance(type_, Array):
                 type_ = type_.of

@@ -1,7 +1,11 @@
 """Reading and writing objects within a run."""
 
+from collections.abc import Iterator
+from dataclasses import replace
+from itertools import islice
+
 from bitweight.arithmetic import building
-from bitweight.arithmetic.expressions import Literal, Purpose
+from bitweight.arithmetic.expressions import Expression, Literal, Purpose
 from bitweight.firmware.objects import (
     ANYWHERE,
     Arithmetic,
@@ -9,31 +13,38 @@ from bitweight.firmware.objects import (
     FunctionType,
     Location,
     ObjectType,
+    Path,
     Pointer,
     Record,
     Root,
     Strange,
 )
-from bitweight.firmware.syntax import Braces, Expr, Node
+from bitweight.firmware.syntax import Expr, Node
 from bitweight.places import Place
-from bitweight.trace.contexts import named, shown
-from bitweight.trace.initialisers import component, element_count
-from bitweight.trace.machines import Frame
-from bitweight.trace.memory import Address, Copy, Routine, Value, is_number
+from bitweight.trace.contexts import shown
+from bitweight.trace.memory import Address, Copy, Routine, State, Value, is_number
 from bitweight.trace.shapes import Shapes
 
+_DECLARED = frozenset({"object", "local"})
+_MOST_LEAVES = 256
+"""Members and elements of a struct that are copied one by one."""
 _MOST_ELEMENTS = 4096
-"""Elements of an array that are initialised one by one."""
+"""Elements of an array that are told apart in its initialiser."""
 
 
 class Storage(Shapes):
-    """Reads, writes and initialises objects."""
+    """Reads and writes objects."""
+
+    # --- reading ------------------------------------------------------------------------------
 
     def read(self, location: Location, type_: ObjectType, node: Node) -> Value:
         """The value of an object now."""
+        if location.plain is not location:
+            reason = f"{shown(location.plain)} is read as another type than its own"
+            return self.unknown(reason, node, type_.type if isinstance(type_, Arithmetic) else None)
         known = self.state.values.get(location)
         if known is not None and not isinstance(known, Copy):
-            return known
+            return self._as_declared(known, type_, node)
         if isinstance(type_, Array):
             return Address(target=location.part(0), type=type_.of)
         if isinstance(type_, FunctionType):
@@ -44,39 +55,58 @@ class Storage(Shapes):
                 source=known.source if isinstance(known, Copy) else location,
                 type=type_,
             )
-        blurred = self._blurred(location)
-        if blurred is not None:
-            return self.unknown(blurred, node)
-        return self._read_within(location, type_, node)
-
-    def _read_within(self, location: Location, type_: ObjectType, node: Node) -> Value:
-        """An object not written itself: part of what was written as a whole, or untouched."""
-        for depth in range(len(location.path) - 1, -1, -1):
-            outer = self.state.values.get(Location(location.root, location.path[:depth]))
-            if isinstance(outer, Copy):
-                source = Location(outer.source.root, (*outer.source.path, *location.path[depth:]))
-                return self.initial(source, type_, self.used(node))
-            if outer is not None:
-                return self.unknown(f"{shown(location)} is part of something set as a whole", node)
-        return self.initial(location, type_, self.used(node))
-
-    def _blurred(self, location: Location) -> str | None:
-        """Why an element cannot be told apart from others, if that is so."""
         if ANYWHERE in location.path:
             if any(shown(location).startswith(one) for one in self.context.reading_names):
                 self.near = True
-            return f"{shown(location)} is read at a subscript that is not constant"
-        for known in self.state.values:
+            reason = f"{shown(location)} is read at a subscript that is not constant"
+            return self.unknown(reason, node)
+        inherited = self.inherited(self.state, location, type_, node)
+        if inherited is not None:
+            return inherited
+        return self.initial(location, type_, self.used(node))
+
+    def _as_declared(self, value: Value, type_: ObjectType, node: Node) -> Value:
+        """A number as the type it is read with, which may differ in its sign alone."""
+        if not isinstance(type_, Arithmetic) or not is_number(value):
+            return value
+        return building.convert(value, type_.type, Purpose.CAST, self.used(node))
+
+    def inherited(
+        self, state: State, location: Location, type_: ObjectType, node: Node
+    ) -> Value | None:
+        """What an object has that was not written itself; None where nothing touched it.
+
+        It may be a part of what was written as a whole, what an unknown subscript means, or share
+        its storage with another member of a union.
+        """
+        for known in state.values:
             if ANYWHERE in known.path and location.may_be_in(known):
-                return f"{location.root.name} is written at a subscript that is not constant"
+                reason = f"{location.root.name} is written at a subscript that is not constant"
+                return self.unknown(reason, node)
+        other = next((one for one in self.sharing_with(location) if state.holds(one)), None)
+        if other is not None:
+            return self.unknown(f"{shown(location)} is read as {shown(other)} was written", node)
+        for depth in range(len(location.path) - 1, -1, -1):
+            outer = state.values.get(Location(location.root, location.path[:depth]))
+            if isinstance(outer, Copy):
+                source = outer.source.at(location.path[depth:])
+                return self.initial(source, type_, self.used(node))
+            if outer is not None:
+                return self.unknown(f"{shown(location)} is part of something set as a whole", node)
         return None
+
+    def sharing_with(self, location: Location) -> Iterator[Location]:
+        """The union members that share storage with an object or with what it is part of."""
+        for depth in range(1, len(location.path) + 1):
+            part = Location(location.root, location.path[:depth])
+            yield from self.context.sharing.get(part, ())
 
     def initial(self, location: Location, type_: ObjectType, place: Place) -> Value:
         """The value an object has before this run writes it."""
         if location.root.kind == "local":
             return self.context.unknown(f"{location.root.name} is read before it is set", place)
         if location.root.kind == "object":
-            fixed = self._never_written(location, type_, place)
+            fixed = self.never_written(location, type_, place)
             if fixed is not None:
                 return fixed
         match type_:
@@ -86,73 +116,141 @@ class Storage(Shapes):
                 return Copy(parts=(), source=location, type=type_)
             case Array():
                 return Address(target=location.part(0), type=type_.of)
+            case Strange(name=name) if name and location.root.kind == "object":
+                return self.context.unknown(_untyped(location, name), place)
             case _:
                 return self.context.object(location, type_, place)
 
-    def _never_written(self, location: Location, type_: ObjectType, place: Place) -> Value | None:
+    def never_written(self, location: Location, type_: ObjectType, place: Place) -> Value | None:
         """The initialiser of an object that nothing in the sources writes."""
-        declared = self.context.declared(location, self.unit)
-        if declared is None or not self.context.is_fixed(location.root, declared):
-            return None
-        if location.path in self.context.in_progress.get(location.root, ()):
-            return None
-        expression = component(
-            declared.value,
-            location.path,
-            declared.type,
-            self.field_names,
-            self.subscript_in(declared.unit),
-        )
-        if expression is None:
-            return None
-        progress = self.context.in_progress.setdefault(location.root, set())
-        progress.add(location.path)
-        self.frames.append(Frame(declared.unit, declared.function, 0))
-        try:
-            value = self.value(expression)
-        finally:
-            self.frames.pop()
-            progress.discard(location.path)
-        if is_number(value) and isinstance(type_, Arithmetic):
-            value = named(value, shown(location), place)
-            return building.convert(value, type_.type, Purpose.STORE, place)
-        return value
+        raise NotImplementedError
+
+    # --- writing ------------------------------------------------------------------------------
 
     def store(self, location: Location, type_: ObjectType, value: Value, node: Node) -> Value:
         """Write an object; the value it then has."""
-        if isinstance(type_, Arithmetic) and is_number(value):
-            value = building.convert(value, type_.type, Purpose.STORE, self.used(node))
-        self.state.write(location, value)
-        self.types[location] = type_
+        if location.plain is not location:
+            reason = f"{shown(location.plain)} is written as another type than its own"
+            self.forget(location.plain, self.type_at(location.plain), reason, node)
+            return value
+        value = self.fitted(location, type_, value, node)
+        self.put(location, type_, value, node)
         self.remember_store(location, self.used(node))
         return value
 
-    # --- initialisers ---------------------------------------------------------------------------
+    def fitted(self, location: Location, type_: ObjectType, value: Value, node: Node) -> Value:
+        """A value as an object of a type holds it."""
+        if isinstance(type_, Pointer) and isinstance(value, Address):
+            return self.retyped(value, type_.to)
+        if not is_number(value):
+            return value
+        if isinstance(type_, Arithmetic):
+            return building.convert(value, type_.type, Purpose.STORE, self.used(node))
+        if isinstance(type_, Strange) and type_.name and location.root.kind in _DECLARED:
+            return self.unknown(_untyped(location, type_.name), node)
+        return value
+
+    def put(self, location: Location, type_: ObjectType, value: Value, node: Node) -> None:
+        """Let an object have a value; a struct is copied member by member."""
+        for other in self.sharing_with(location):
+            self.state.forget(other)
+        if isinstance(value, Copy):
+            value = replace(value, parts=tuple(self.taken_apart(value, node)))
+        self.state.write(location, value)
+        self.types[location] = type_
+
+    def forget(self, location: Location, type_: ObjectType, reason: str, node: Node) -> None:
+        """Make unknown what an object and its parts hold."""
+        for known in [one for one in self.state.values if one.within(location)]:
+            value = self.state.values[known]
+            if is_number(value):
+                made = self.context.unknown(reason, self.used(node), value.type, shown(known))
+                self.state.values[known] = made
+            else:
+                del self.state.values[known]
+        if isinstance(type_, Arithmetic):
+            made = self.context.unknown(reason, self.used(node), type_.type, shown(location))
+            self.put(location, type_, made, node)
+        elif location.root.kind == "local":
+            outside = Location(Root("pointee", shown(location)))
+            self.state.values[location] = Copy(parts=(), source=outside, type=type_)
+
+    def doubt(self, before: State, reason: str, node: Node) -> None:
+        """Make unknown what has changed since a state."""
+        for location, value in self.state.values.items():
+            if before.values.get(location) is not value:
+                type_ = value.type if is_number(value) else None
+                made = self.context.unknown(reason, self.used(node), type_, shown(location))
+                self.state.values[location] = made
+
+    def retyped(self, address: Address, to: ObjectType) -> Address:
+        """A pointer after conversion to a pointer to another type."""
+        own = address.type
+        if isinstance(to, Strange) or own == to:
+            return address
+        if isinstance(own, Array) and own.of == to:
+            return Address(target=address.target.part(0), type=to)
+        if self._looks_alike(own, to):
+            return replace(address, type=to)
+        return Address(target=address.target.viewed(_type_name(to)), type=to)
+
+    def _looks_alike(self, own: ObjectType, to: ObjectType) -> bool:
+        """Whether an object of one type may be used through a pointer to the other."""
+        if isinstance(own, Arithmetic) and isinstance(to, Arithmetic):
+            same = own.type.bits == to.type.bits
+            return same and own.type.is_integer and to.type.is_integer
+        if isinstance(own, Record) and isinstance(to, Record):
+            ours = [name for name, _ in self.field_names(own)]
+            theirs = [name for name, _ in self.field_names(to)]
+            return ours == theirs or not ours or not theirs
+        return not isinstance(own, Arithmetic | Record) and not (
+            isinstance(own, Array) and isinstance(to, Arithmetic | Record)
+        )
+
+    # --- structs, part by part ----------------------------------------------------------------
+
+    def taken_apart(self, value: Copy, node: Node) -> Iterator[tuple[Path, Value]]:
+        """The parts of a struct value: all of them if they can be listed, else those known."""
+        known = dict(value.parts)
+        leaves = list(islice(self.leaves(value.type), _MOST_LEAVES + 1))
+        if len(leaves) <= _MOST_LEAVES:
+            for path, type_ in leaves:
+                if path not in known:
+                    known[path] = self.initial(value.source.at(path), type_, self.used(node))
+        yield from known.items()
+
+    def leaves(self, type_: ObjectType, path: Path = ()) -> Iterator[tuple[Path, ObjectType]]:
+        """The parts of a struct that are no structs themselves; unions are left out."""
+        match type_:
+            case Record(kind="struct") if len(path) < _MOST_LEAVES:
+                for name, inner in self.field_names(type_):
+                    yield from self.leaves(inner, (*path, name) if name else path)
+            case Array(length=int() as length) if length <= _MOST_ELEMENTS:
+                for index in range(length):
+                    yield from self.leaves(type_.of, (*path, index))
+            case Arithmetic() | Pointer() if path:
+                yield path, type_
+            case _:
+                return
+
+    def zero(self, type_: ObjectType) -> Expression | None:
+        """What an object holds whose initialiser leaves it out (C11 6.7.9p21)."""
+        return Literal(value=0, type=type_.type) if isinstance(type_, Arithmetic) else None
 
     def fill(self, location: Location, type_: ObjectType, node: Expr) -> None:
         """Initialise an object from a braced list or a value."""
-        if not isinstance(node, Braces):
-            self.store(location, type_, self.value(node), node)
-            return
-        if isinstance(type_, Arithmetic | Pointer | Strange) and len(node.entries) == 1:
-            self.store(location, type_, self.value(node.entries[0].value), node)
-            return
-        for step, inner in self._parts_of(type_, node):
-            expression = component(
-                node, (step,), type_, self.field_names, self.subscript_in(self.unit)
-            )
-            if expression is not None:
-                self.fill(location.part(step), inner, expression)
-            elif isinstance(inner, Arithmetic):
-                self.state.write(location.part(step), Literal(value=0, type=inner.type))
+        raise NotImplementedError
 
-    def _parts_of(self, type_: ObjectType, node: Braces) -> list[tuple[str | int, ObjectType]]:
-        """Members or elements of an object that a braced list initialises."""
-        if isinstance(type_, Record):
-            return list(self.field_names(type_))
-        if not isinstance(type_, Array):
-            return []
-        length = type_.length
-        if length is None:
-            length = element_count(node, self.subscript_in(self.unit))
-        return [(index, type_.of) for index in range(min(length or 0, _MOST_ELEMENTS))]
+
+def _untyped(location: Location, name: str) -> str:
+    return f"{shown(location)} has the type {name}, which the given sources do not define"
+
+
+def _type_name(type_: ObjectType) -> str:
+    match type_:
+        case Arithmetic():
+            return type_.type.name
+        case Record():
+            return f"{type_.kind} {type_.tag}"
+        case _:
+            return "another type"

@@ -52,8 +52,11 @@ def _named(
 
 def _candidates(value: Pattern, runs: tuple[Run, ...], context: Context) -> Iterator[End]:
     """The ends that a `value` may mean, as the units read its text."""
-    for unit in tuple(context.program.units.values()):
-        tree = parsed(value.text, unit)
+    # Most units read the text alike: what they ask for is looked up once.
+    trees = dict.fromkeys(
+        parsed(value.text, unit) for unit in tuple(context.program.units.values())
+    )
+    for tree in trees:
         if tree is not None:
             yield from wanted_ends(runs, tree)
     if "(" not in value.text:

@@ -6,13 +6,12 @@ from dataclasses import dataclass, field
 from bitweight.arithmetic.expressions import Code, Convert, Default, Expression, Unknown, walk
 from bitweight.errors import LimitReached
 from bitweight.limits import Deadline
-from bitweight.places import Place
 from bitweight.trace.contexts import Context
 from bitweight.trace.conversions import Conversion, Trace
+from bitweight.trace.declared import declared_place
 from bitweight.trace.ends import End, consumed
 from bitweight.trace.flows import Flows, Progress
 from bitweight.trace.formulas import formula
-from bitweight.trace.memory import is_number
 from bitweight.trace.resolution import Resolver, Ways
 from bitweight.trace.runs import Run, Runner
 from bitweight.trace.steps import steps
@@ -133,17 +132,22 @@ class Tracer:
                 for name in defaults
             ),
             other_readings=tuple(sorted(self.resolver.measures(way) - {aim.channel})),
+            declared=declared_place(self.context, end.location) if end.location else None,
         )
 
     # --- nothing found ------------------------------------------------------------------------
 
     def _nothing(self, aim: Aim, ends: tuple[End, ...]) -> Trace:
         texts = ", ".join(reading.pattern.text for reading in aim.readings)
-        seen = self._reading_seen(aim)
+        seen = self.context.seen.get(aim.channel)
         if seen is None:
             limit = next((run.reason for run in self.runs if run.reason), None)
             reason = limit or f"the reading {texts} is nowhere in the code that was followed"
             return Trace(channel=aim.channel, reason=reason)
+        unknown = self._unknown_in(ends) if aim.values else None
+        if unknown is not None:
+            place = unknown.place or seen
+            return Trace(channel=aim.channel, reason=unknown.reason, place=place)
         what = "nothing that outlives the function is made from it"
         if aim.values:
             wanted = ", ".join(value.text for value in aim.values)
@@ -151,14 +155,13 @@ class Tracer:
         reason = f"the reading {texts} is found, but {what}"
         return Trace(channel=aim.channel, reason=reason, place=seen)
 
-    def _reading_seen(self, aim: Aim) -> Place | None:
-        """A place where the channel's code is read."""
-        for run in self.runs:
-            written = [value for some in run.writes.values() for value in some]
-            for value in (*written, *(event.value for event in run.events)):
-                for node in walk(value) if is_number(value) else ():
-                    if isinstance(node, Code) and aim.channel in node.channels:
-                        return node.place
+    def _unknown_in(self, ends: tuple[End, ...]) -> Unknown | None:
+        """What is not followed in the ends asked for."""
+        for end in ends:
+            for way in self.resolver.alternatives(end.value):
+                for node in walk(way):
+                    if isinstance(node, Unknown):
+                        return node
         return None
 
 

@@ -30,6 +30,23 @@ class Writings:
         for function in self.context.writers(root, declared):
             yield from self._written(function, location, node)
 
+    def sharing(self, location: Location) -> Location | None:
+        """A member of a union that is written and shares its storage with an object."""
+        for depth in range(1, len(location.path) + 1):
+            part = Location(location.root, location.path[:depth])
+            for other in self.context.sharing.get(part, ()):
+                if self._is_written(other):
+                    return other
+        return None
+
+    def _is_written(self, location: Location) -> bool:
+        declared = self.context.declared(location, None)
+        return any(
+            written.within(location) or location.may_be_in(written)
+            for function in self.context.writers(location.root, declared)
+            for written in self.runner.run(function).writes
+        )
+
     def _written(self, function: Function, location: Location, node: Code) -> Iterator[Expression]:
         """What a function writes there; where that is its parameter, what its callers give."""
         seen = {function.key}
@@ -46,6 +63,10 @@ class Writings:
                     seen.add(caller.key)
                     pending.append(caller)
             yield from (value for value in values if not callers or value not in waiting)
+        if pending:
+            yield self.context.unknown(
+                f"{function.name}() is called from too many places to follow", node.place, node.type
+            )
 
     def waits_for(self, value: Expression, function: Function) -> bool:
         """Whether a value hangs on a parameter of the function itself."""
