@@ -150,3 +150,15 @@ def test_lines_follow_each_other_and_invert(first: Affine, second: Affine, x: Fr
     """Two lines in a row are one line, and a line undone gives x back, exactly."""
     assert first.then(second).at(x) == second.at(first.at(x))
     assert first.inverted().at(first.at(x)) == x
+
+
+@pytest.mark.parametrize(
+    ("sensitivity", "at_zero"),
+    [("10 mV/degC", Fraction("273.15")), ("10 mV/K", Fraction(0)), ("4 mV/m", Fraction(0))],
+)
+def test_linear_without_at_starts_at_the_zero_of_its_scale(
+    sensitivity: str, at_zero: Fraction
+) -> None:
+    """0 degC for a sensitivity per degC, 0 of the coherent unit for any other."""
+    made = stage(f"{{ kind='linear', sensitivity='{sensitivity}', offset='500 mV' }}")
+    assert made.line().at(at_zero) == Fraction(1, 2)

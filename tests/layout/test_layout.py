@@ -33,6 +33,8 @@ UNTESTED = {
     "bitweight.limits": "numbers, and a clock that the tests of tracing set",
     "bitweight.errors": "texts; tested where they are raised and where the command shows them",
     "bitweight.requests": "one record without behaviour",
+    "bitweight.judge.outcomes": "one record without behaviour",
+    "bitweight.firmware.syntax": "records without behaviour: the kinds of C that are followed",
 }
 """Modules without a test file of their own, and why."""
 

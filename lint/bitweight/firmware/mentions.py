@@ -32,6 +32,11 @@ class Mentions:
     calls: frozenset[str]
     loops: bool
 
+    @property
+    def changes(self) -> frozenset[str]:
+        """Names through which something may be written."""
+        return self.writes | self.addressed | self.passes
+
 
 def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
     """Look through a body once."""
@@ -74,6 +79,11 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
 
 def _is_static(one: Declarator) -> bool:
     return "static" in one.type.specifiers.storage
+
+
+def addressed(value: Node) -> frozenset[str]:
+    """The objects whose address, or whose name alone, stands in an initialiser."""
+    return frozenset(node.text for node in nodes(value) if isinstance(node, Name))
 
 
 def nodes(root: Node) -> Iterator[Node]:

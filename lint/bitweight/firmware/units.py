@@ -8,8 +8,8 @@ from functools import cached_property
 from bitweight.arithmetic.expressions import Expression
 from bitweight.arithmetic.types import DataModel
 from bitweight.firmware.declarations import Declarations
-from bitweight.firmware.mentions import Mentions, mentions
-from bitweight.firmware.objects import Location, ObjectType, Record, Root
+from bitweight.firmware.mentions import Mentions, addressed, mentions
+from bitweight.firmware.objects import Arithmetic, Location, ObjectType, Record, Root
 from bitweight.firmware.parsing import Parser, UnitSyntax, snippet
 from bitweight.firmware.syntax import (
     Block,
@@ -69,6 +69,15 @@ class Variable:
         """The initialiser, if it has one."""
         return self.syntax.value
 
+    @property
+    def only_reads(self) -> bool:
+        """Whether nothing can be written through it: a number, or a pointer to const."""
+        derived = self.syntax.type.derivations
+        pointer = any(isinstance(one, PointerTo) for one in derived)
+        if pointer:
+            return "const" in self.syntax.type.specifiers.qualifiers
+        return isinstance(self.type, Arithmetic)
+
 
 @dataclass(frozen=True, kw_only=True, eq=False)
 class Enumeration:
@@ -105,6 +114,7 @@ class Unit:
         )
         self.syntax: UnitSyntax = self.parser.unit()
         self.literals: dict[tuple[int, str], Expression] = {}
+        self._addressed: dict[str, frozenset[str]] = {}
         self._places: dict[int, tuple[Place, Place]] = {}
         self.declarations = Declarations(self.syntax, model, self.path)
 
@@ -199,6 +209,13 @@ class Unit:
             declared_only="extern" in storage and one.value is None,
             key=key,
         )
+
+    def addressed_by(self, name: str) -> frozenset[str]:
+        """The names in the initialiser of an object."""
+        if name not in self._addressed:
+            value = self.variables[name].value
+            self._addressed[name] = addressed(value) if value is not None else frozenset()
+        return self._addressed[name]
 
     # --- types -----------------------------------------------------------------------------
 

@@ -3,9 +3,18 @@
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression, Literal, Purpose
 from bitweight.firmware.objects import Arithmetic, Location, Pointer, Record, Root
-from bitweight.firmware.syntax import Call, Expr, Name, Operation
+from bitweight.firmware.syntax import (
+    ArrayOf,
+    Call,
+    Expr,
+    FunctionOf,
+    Name,
+    Operation,
+    PointerTo,
+    TypeSyntax,
+)
 from bitweight.firmware.units import Function
-from bitweight.trace.contexts import Reading
+from bitweight.trace.contexts import Reading, shown
 from bitweight.trace.functions import Functions
 from bitweight.trace.memory import Address, Copy, Routine, Value, is_number
 
@@ -26,9 +35,9 @@ class Calls(Functions):
         routine = self._routine(node.function)
         arguments = node.arguments
         if routine is None:
-            for one in arguments:
-                self.value(one)
-            return self.unknown("a call through a pointer that is not constant", node)
+            reason = "a call through a pointer that is not constant"
+            self._hand_out(reason, node, [self.value(one) for one in arguments], ())
+            return self.unknown(reason, node)
         if routine.name in _TABLE_READS and len(arguments) == 1:
             found = self.pointee(arguments[0])
             if found is not None:
@@ -110,11 +119,12 @@ class Calls(Functions):
         reason = f"{name}() is not defined in the given sources"
         if count > 1:
             reason = f"{name}() is defined {count} times in the sources; exclude all but one"
+        self._hand_out(reason, node, values, self._read_only(name))
         for index, (value, argument) in enumerate(zip(values, node.arguments, strict=True)):
-            if isinstance(value, Address):
-                self._filled(value, reason, argument)
-            elif is_number(value):
+            if is_number(value):
                 self.note("argument", name, value, self.used(argument), index=index + 1)
+        for function in self.context.program.function(name, self.unit):
+            self._doubt_writes(function, reason, node)
         returned = self.returned(name)
         target = Location(Root("pointee", f"{name}()"))
         if isinstance(returned, Pointer):
@@ -126,33 +136,44 @@ class Calls(Functions):
         self.note("call", name, result, self.used(node), tree=node)
         return result
 
+    def _hand_out(
+        self, reason: str, node: Call, values: list[Value], read_only: tuple[bool, ...]
+    ) -> None:
+        """Forget what objects held whose address leaves the sources, unless they are only read."""
+        for index, (value, argument) in enumerate(zip(values, node.arguments, strict=True)):
+            kept = index < len(read_only) and read_only[index]
+            if isinstance(value, Address) and not kept:
+                self._filled(value, reason, argument)
+
+    def _read_only(self, name: str) -> tuple[bool, ...]:
+        """Which parameters of a function outside point to const, as its prototype says."""
+        for unit in (self.unit, *self.context.program.units.values()):
+            head = unit.prototypes[name].type.derivations if name in unit.prototypes else ()
+            if head and isinstance(head[0], FunctionOf):
+                return tuple(_points_to_const(one.type) for one in head[0].parameters)
+        return ()
+
     def _filled(self, value: Address, reason: str, argument: Expr) -> None:
         """Forget what an object held whose address leaves the sources."""
-        target = value.target
-        if target.root.kind not in ("local", "object"):
-            return
-        if isinstance(value.type, Record) or not isinstance(argument, Operation):
-            for known in [one for one in self.state.values if one.within(target)]:
-                del self.state.values[known]
-            if target.root.kind == "local":
-                outside = Location(Root("pointee", str(target)))
-                self.state.write(target, Copy(parts=(), source=outside, type=value.type))
-            return
-        number = value.type.type if isinstance(value.type, Arithmetic) else None
-        filled = self.context.unknown(
-            f"{target} is filled by a call: {reason}", self.used(argument), number, str(target)
-        )
-        self.state.write(target, filled)
-        self.types[target] = value.type
+        target = value.target.plain
+        whole = isinstance(value.type, Record) or not isinstance(argument, Operation)
+        if whole and target.path and target.path[-1] == 0:
+            # A pointer to the first element stands for the array.
+            target = Location(target.root, target.path[:-1])
+        for known, held in self.state.values.items():
+            if known.within(target) and known.root.kind != "local" and is_number(held):
+                self.handed.setdefault(known, []).append(held)
+        type_ = value.type if target == value.target else self.type_at(target)
+        self.forget(target, type_, f"{shown(target)} is filled by a call: {reason}", argument)
         self.remember_store(target, self.used(argument))
 
     # --- into the sources -----------------------------------------------------------------------
 
     def _inside(self, function: Function, node: Call, values: list[Value]) -> Value:
         if len(self.frames) > self.context.limits.call_depth:
-            return self.unknown(f"{function.name}() is called too deeply to follow", node)
+            return self._not_entered(function, "is called too deeply to follow", node)
         if any(one.function is function for one in self.frames):
-            return self.unknown(f"{function.name}() calls itself", node)
+            return self._not_entered(function, "calls itself", node)
         converted = [
             self._argument(function, index, value, argument)
             for index, (value, argument) in enumerate(zip(values, node.arguments, strict=True))
@@ -162,6 +183,20 @@ class Calls(Functions):
             self.note("call", function.name, result, self.used(node), tree=node)
         return result
 
+    def _not_entered(self, function: Function, why: str, node: Call) -> Expression:
+        reason = f"{function.name}() {why}"
+        self._doubt_writes(function, reason, node)
+        return self.unknown(reason, node)
+
+    def _doubt_writes(self, function: Function, reason: str, node: Call) -> None:
+        """Make unknown what a function that is not followed may write."""
+        names = self.context.written_names(function)
+        for location, held in list(self.state.values.items()):
+            if location.root.kind == "object" and location.root.name in names:
+                type_ = held.type if is_number(held) else None
+                made = self.context.unknown(reason, self.used(node), type_, shown(location))
+                self.state.values[location] = made
+
     def _argument(self, function: Function, index: int, value: Value, argument: Expr) -> Value:
         parameters = function.syntax.parameters
         if index >= len(parameters) or not is_number(value):
@@ -170,3 +205,10 @@ class Calls(Functions):
         if isinstance(type_, Arithmetic):
             return building.convert(value, type_.type, Purpose.ARGUMENT, self.used(argument))
         return value
+
+
+def _points_to_const(type_: TypeSyntax) -> bool:
+    """Whether a parameter is a pointer to what the function only reads."""
+    if not type_.derivations or not isinstance(type_.derivations[0], PointerTo | ArrayOf):
+        return False
+    return len(type_.derivations) == 1 and "const" in type_.specifiers.qualifiers

@@ -20,6 +20,9 @@ from bitweight.trace.initialisers import Parts
 from bitweight.trace.memory import Input
 from bitweight.trace.patterns import Pattern, head, parsed
 
+_MOST_CALLEES = 200
+"""Functions looked through for what one that is not followed may write."""
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Reading:
@@ -159,17 +162,50 @@ class Context:
 
     def writers(self, root: Root, declared: Declared | None) -> tuple[Function, ...]:
         """The functions that write an object, or hand out its address."""
-        if declared is not None and declared.function is not None:
-            candidates: tuple[Function, ...] = (declared.function,)
-        else:
-            candidates = self.program.all_functions(root.name)
         whole = declared is None or isinstance(declared.type, Array)
-        return tuple(one for one in candidates if self._touches(one, root, whole))
+        if declared is not None and declared.function is not None:
+            own: tuple[Function, ...] = (declared.function,)
+            return own if self._touches(declared.function, root, whole) else ()
+        found = {
+            one.key: one
+            for one in self.program.all_functions(root.name)
+            if self._touches(one, root, whole)
+        }
+        for alias in self._aliases(root.name):
+            for one in self.program.all_functions(alias):
+                if alias in one.mentions.changes:
+                    found.setdefault(one.key, one)
+        return tuple(found[key] for key in sorted(found))
+
+    def _aliases(self, name: str) -> tuple[str, ...]:
+        """Objects whose initialiser takes the address of an object: a way to write it."""
+        self.program.load(name)
+        found: dict[str, None] = {}
+        for unit in self.program.units.values():
+            for one in unit.variables.values():
+                if name in unit.addressed_by(one.name) and not one.only_reads:
+                    found[one.name] = None
+        return tuple(found)
+
+    def written_names(self, function: Function) -> frozenset[str]:
+        """The objects that a function may write, itself or by what it calls, by name."""
+        found: set[str] = set()
+        seen: set[Place] = set()
+        pending = [function]
+        while pending and len(seen) < _MOST_CALLEES:
+            one = pending.pop()
+            if one.key in seen:
+                continue
+            seen.add(one.key)
+            found |= one.mentions.writes | one.mentions.addressed
+            for name in one.mentions.calls:
+                pending.extend(self.program.function(name, one.unit))
+        return frozenset(found)
 
     def _touches(self, function: Function, root: Root, whole: bool) -> bool:
         seen = function.mentions
         name = root.name
-        if name not in seen.writes | seen.addressed | (seen.passes if whole else frozenset()):
+        if name not in (seen.changes if whole else seen.writes | seen.addressed):
             return False
         if root in self.statics or root.kind != "object":
             return True

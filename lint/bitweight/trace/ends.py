@@ -37,7 +37,7 @@ class End:
 def object_ends(runs: Iterable[Run]) -> Iterator[End]:
     """Everything that the runs leave in objects that outlive them."""
     for run in runs:
-        for location, values in run.writes.items():
+        for location, values in (*run.writes.items(), *run.handed.items()):
             if location.root.kind not in _OUTLIVING:
                 continue
             place, function = run.stores.get(location, (run.function.key, run.function.name))

@@ -1,5 +1,7 @@
 """A function followed from its arguments to its result."""
 
+from collections.abc import Sequence
+
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Purpose
 from bitweight.errors import LimitReached
@@ -63,18 +65,20 @@ class Functions(Lowering):
         returns = [one for one in flow.exits if one.kind == "return"]
         lost = [one for one in flow.exits if one.kind != "return"]
         result = self._result(function, returns, flow.next is not None or bool(lost))
+        ways = [*returns, *lost]
         after = flow.next
-        for one in reversed([*returns, *lost]):
+        for one in reversed(ways):
             if after is None or one.condition is None:
                 after = one.state
             else:
                 after = self.join(one.condition, one.state, after, function.body)
+        self._note_locals(frame, function, ways, flow.next)
         self.state = after if after is not None else self._steady()
         if lost:
             reason = f"{function.name}() jumps back or into a block with goto"
             result = self.context.unknown(reason, function.key)
             self.doubt(before, reason, function.body)
-        self._note_locals(frame, function)
+            self.doubts.append(reason)
         if is_number(result) and returns:
             self.note("return", function.name, result, self.spelled(returns[-1].node.start))
         if after is None:
@@ -86,14 +90,38 @@ class Functions(Lowering):
     def _steady(self) -> State:
         return self.turn_ends[-1].copy() if self.turn_ends else State()
 
-    def _note_locals(self, frame: Frame, function: Function) -> None:
-        wanted = self.context.results
-        for location, value in list(self.state.values.items()):
-            name = location.root.name
-            if name in wanted and frame.owns(location) and is_number(value):
+    def _note_locals(
+        self, frame: Frame, function: Function, ways: Sequence[Exit], last: State | None
+    ) -> None:
+        """Note the wanted locals as the function leaves them."""
+        states = [*(one.state for one in ways), *((last,) if last is not None else ())]
+        found = dict.fromkeys(
+            location
+            for state in states
+            for location in state.values
+            if location.root.name in self.context.results and frame.owns(location)
+        )
+        for location in found:
+            value = self._at_the_end(location, ways, last)
+            if value is not None and is_number(value):
                 place = self.stores.get(location, (function.key, ""))[0]
                 path = str(Location(Root("", ""), location.path))
-                self.note("local", name + path, value, place)
+                self.note("local", location.root.name + path, value, place)
+
+    def _at_the_end(
+        self, location: Location, ways: Sequence[Exit], last: State | None
+    ) -> Value | None:
+        """What a local holds at the end; ways that leave before it is set do not count."""
+        value = last.values.get(location) if last is not None else None
+        for one in reversed(ways):
+            held = one.state.values.get(location)
+            if held is None:
+                continue
+            if value is None or one.condition is None:
+                value = held
+            else:
+                value = self.joined(one.condition, held, value, one.node, merge=True)
+        return value
 
     def _result(self, function: Function, returns: list[Exit], falls: bool) -> Value:
         """The value that a call has: that of the return which is reached."""

@@ -8,11 +8,15 @@ from bitweight.firmware.mentions import nodes
 from bitweight.firmware.objects import Arithmetic, Location
 from bitweight.firmware.syntax import Call, Expr, Loop, Name
 from bitweight.trace.branches import Branches
+from bitweight.trace.contexts import shown
 from bitweight.trace.exits import Exit, Flow
 from bitweight.trace.memory import State, is_number
 
 _TURNS_WITH_EXITS = 16
 """Turns of a loop that may leave it by a condition before the loop counts as unbounded."""
+
+_MOST_ROUNDS = 8
+"""How often what one turn changes may change more in the next before that is left at."""
 
 
 class Loops(Branches):
@@ -70,20 +74,7 @@ class Loops(Branches):
     def _unbounded(self, node: Loop) -> Flow:
         """A loop of unknown length: what a turn changes is unknown when the next one starts."""
         start = self.state.copy()
-        events, near = len(self.events), self.near
-        self._turn(node)
-        changed = [
-            location
-            for location, value in self.state.values.items()
-            if start.values.get(location) is not value
-        ]
-        del self.events[events:]
-        self.near = near
-        self.state = start.copy()
-        for location in changed:
-            if location in start.values or location.root.kind != "local":
-                self._blur(location, start, node)
-        entered = self.state.copy()
+        entered = self._at_a_turn(start, node)
         flow = self._turn(node)
         if self._endless(node.condition):
             if flow.next is not None:
@@ -97,19 +88,46 @@ class Loops(Branches):
             following = entered
         return self.left(Flow(next=following, exits=flow.exits), node)
 
+    def _at_a_turn(self, start: State, node: Loop) -> State:
+        """The state when any turn starts: what turns change is unknown, all in all."""
+        events, near, ends = len(self.events), self.near, len(self.turn_ends)
+        blurred: set[Location] = set()
+        for _ in range(_MOST_ROUNDS):
+            self._turn(node)
+            changed = {
+                location
+                for location, value in self.state.values.items()
+                if start.values.get(location) is not value
+            }
+            del self.events[events:]
+            del self.turn_ends[ends:]
+            self.near = near
+            self.state = start.copy()
+            fresh = changed - blurred
+            blurred |= changed
+            for location in blurred:
+                if location in start.values or location.root.kind != "local":
+                    self._blur(location, start, node)
+            if not fresh:
+                break
+        return self.state.copy()
+
     def _blur(self, location: Location, start: State, node: Loop) -> None:
         """Make unknown what an object holds when a turn starts."""
-        type_ = self.type_at(location)
         known = start.values.get(location)
-        if not isinstance(type_, Arithmetic) and (known is None or not is_number(known)):
+        if location.root.kind != "local" and self._endless(node.condition):
+            # It holds what anything in the program may write, this loop included.
             self.state.values.pop(location, None)
             return
-        self.state.values[location] = self.context.unknown(
-            f"{location} changes from turn to turn of the loop at line {self.used(node).line}, "
-            "whose number of turns is not constant",
-            self.used(node),
-            type_.type if isinstance(type_, Arithmetic) else None,
+        type_ = self.type_at(location)
+        number = type_.type if isinstance(type_, Arithmetic) else None
+        if number is None and known is not None and is_number(known):
+            number = known.type
+        reason = (
+            f"{shown(location)} changes from turn to turn of the loop at line "
+            f"{self.used(node).line}, whose number of turns is not constant"
         )
+        self.state.values[location] = self.context.unknown(reason, self.used(node), number)
 
     def _turn(self, node: Loop) -> Flow:
         """One turn: test, body, step."""

@@ -87,7 +87,10 @@ class Lowering(Operators):
             return
         text = _STRING.sub(" ", self.unit.translation.text[node.start : node.end])
         reason = f"{node.kind} at line {self.used(node).line} is not followed"
-        for word in dict.fromkeys(_WORD.findall(text)):
+        words = dict.fromkeys(_WORD.findall(text))
+        if not self.context.reading_names.isdisjoint(words):
+            self.doubts.append(reason)
+        for word in words:
             location, type_ = self.designated(Name(start=node.start, end=node.end, text=word))
             if location.root.kind != "register" or self.state.holds(location):
                 self._lose_object(location, type_, reason, node)

@@ -88,7 +88,11 @@ class Event:
 
 
 class Machine:
-    """One run: its state and what it noted. `near`: a reading depends on a parameter of the run."""
+    """One run: its state and what it noted.
+
+    `near`: a reading depends on a parameter of the run. `handed` is what objects held when a call
+    that leaves the sources got their address; `doubts` say what was met that is not followed.
+    """
 
     def __init__(self, context: Context, unit: Unit, function: Function | None = None) -> None:
         self.context = context
@@ -99,6 +103,8 @@ class Machine:
         self.stores: dict[Location, tuple[Place, str]] = {}
         self.types: dict[Location, ObjectType] = {}
         self.near = False
+        self.doubts: list[str] = []
+        self.handed: dict[Location, list[Expression]] = {}
         self.steps = context.limits.steps
         self.frame_count = 0
 

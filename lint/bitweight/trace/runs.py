@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
+from bitweight.arithmetic.expressions import Expression
 from bitweight.errors import LimitReached
 from bitweight.firmware.objects import (
     Arithmetic,
@@ -23,9 +24,11 @@ from bitweight.trace.memory import Address, Copy, State, Value
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Run:
-    """What following one function from its start shows. `near`: a reading depends on a parameter.
+    """What following one function from its start shows.
 
-    `reason` says why the function could not be followed to its end, if so.
+    `near`: a reading depends on a parameter. `handed` is what objects held when a call that leaves
+    the sources got their address. `reason` says why the function could not be followed to its end,
+    or what in it was not, if so.
     """
 
     function: Function
@@ -34,6 +37,7 @@ class Run:
     types: Mapping[Location, ObjectType]
     events: tuple[Event, ...]
     near: bool
+    handed: Mapping[Location, tuple[Expression, ...]]
     reason: str | None
 
 
@@ -79,7 +83,8 @@ class Runner:
             types=dict(execution.types),
             events=tuple(execution.events),
             near=execution.near,
-            reason=reason,
+            handed={location: tuple(some) for location, some in execution.handed.items()},
+            reason=reason or next(iter(execution.doubts), None),
         )
 
     def _parameters(self, execution: Execution, function: Function) -> list[Value]:

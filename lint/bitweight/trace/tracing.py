@@ -81,7 +81,7 @@ class Tracer:
         for end in ends:
             ways = self._ways(end)
             own = [way for way in ways if aim.channel in self.resolver.measures(way)]
-            if len(own) > 1:
+            if len(own) > 1 and not any(map(_unknown_in, own)):
                 reason = _several(end, own)
                 return Trace(channel=aim.channel, reason=reason, place=end.place)
             carrying.extend((end, way) for way in own)
@@ -89,7 +89,7 @@ class Tracer:
                 foreign.extend((end, way) for way in ways)
         last = carrying if aim.values else self._last(carrying)
         for end, way in last:
-            unknown = next((node for node in walk(way) if isinstance(node, Unknown)), None)
+            unknown = _unknown_in(way)
             if unknown is not None:
                 # A way that is not understood may be the wrong one.
                 place = unknown.place or end.place
@@ -140,14 +140,18 @@ class Tracer:
     def _nothing(self, aim: Aim, ends: tuple[End, ...]) -> Trace:
         texts = ", ".join(reading.pattern.text for reading in aim.readings)
         seen = self.context.seen.get(aim.channel)
+        limit = next((run.reason for run in self.runs if run.reason), None)
         if seen is None:
-            limit = next((run.reason for run in self.runs if run.reason), None)
             reason = limit or f"the reading {texts} is nowhere in the code that was followed"
             return Trace(channel=aim.channel, reason=reason)
-        unknown = self._unknown_in(ends) if aim.values else None
-        if unknown is not None:
-            place = unknown.place or seen
-            return Trace(channel=aim.channel, reason=unknown.reason, place=place)
+        for end in ends if aim.values else ():
+            for way in self.resolver.alternatives(end.value):
+                unknown = _unknown_in(way)
+                if unknown is not None:
+                    place = unknown.place or seen
+                    return Trace(channel=aim.channel, reason=unknown.reason, place=place)
+        if limit is not None and not ends:
+            return Trace(channel=aim.channel, reason=limit, place=seen)
         what = "nothing that outlives the function is made from it"
         if aim.values:
             wanted = ", ".join(value.text for value in aim.values)
@@ -155,19 +159,15 @@ class Tracer:
         reason = f"the reading {texts} is found, but {what}"
         return Trace(channel=aim.channel, reason=reason, place=seen)
 
-    def _unknown_in(self, ends: tuple[End, ...]) -> Unknown | None:
-        """What is not followed in the ends asked for."""
-        for end in ends:
-            for way in self.resolver.alternatives(end.value):
-                for node in walk(way):
-                    if isinstance(node, Unknown):
-                        return node
-        return None
-
 
 def _several(end: End, ways: list[Expression]) -> str:
     texts = " or ".join(formula(way) for way in ways[:2])
     return f"{end.result} is computed in {len(ways)} ways, decided at run time: {texts}"
+
+
+def _unknown_in(way: Expression) -> Unknown | None:
+    """What is not followed in an expression, if there is something."""
+    return next((node for node in walk(way) if isinstance(node, Unknown)), None)
 
 
 def _is_bare(way: Expression) -> bool:
