@@ -70,7 +70,7 @@ def test_a_table_gives_what_is_in_force() -> None:
         None,
     ]
     assert list(table.at(4)) == ["A"]
-    assert table.final().at(0).get("A") is None
+    assert table.final.at(0).get("A") is None
     assert "A" not in table.at(20)
     assert table.at(0).get("B") is None
 

@@ -4,6 +4,7 @@ from collections.abc import Iterator, Mapping
 from functools import cached_property
 
 from bitweight.arithmetic.types import CType, DataModel, Kind
+from bitweight.firmware.mentions import nodes
 from bitweight.firmware.objects import (
     Arithmetic,
     Array,
@@ -16,9 +17,11 @@ from bitweight.firmware.objects import (
 from bitweight.firmware.parsing import UnitSyntax
 from bitweight.firmware.syntax import (
     ArrayOf,
+    Expr,
     Field,
     FunctionOf,
     Number,
+    Operation,
     PointerTo,
     Specifiers,
     TypeSyntax,
@@ -73,7 +76,7 @@ class Declarations:
 
     def _base(self, specifiers: Specifiers, depth: int) -> ObjectType:
         if specifiers.record == "enum":
-            return Arithmetic(type=self._model.unsigned)
+            return Arithmetic(type=self._enum_type(specifiers))
         if specifiers.record is not None:
             return Record(kind=specifiers.record, tag=specifiers.tag or "", scope=self._path)
         words = specifiers.words
@@ -87,6 +90,20 @@ class Declarations:
         if not words and specifiers.storage | specifiers.qualifiers:
             return Arithmetic(type=self._model.int_)
         return Strange(name=" ".join(words))
+
+    @cached_property
+    def _negative_enums(self) -> frozenset[str]:
+        """Tags of the enums with a negative enumerator, as far as a minus sign shows it."""
+        return frozenset(
+            one.tag or ""
+            for one in self.specifiers()
+            if any(_has_minus(each.value) for each in one.enumerators or () if each.value)
+        )
+
+    def _enum_type(self, specifiers: Specifiers) -> CType:
+        """int for an enum with a negative enumerator, else unsigned, as gcc has it (6.7.2.2p4)."""
+        negative = specifiers.tag in self._negative_enums
+        return self._model.int_ if negative else self._model.unsigned
 
     def fields(self, record: Record) -> tuple[Field, ...]:
         """The members of a record in order; none where its body is not in the unit."""
@@ -119,6 +136,10 @@ class Declarations:
                 if within is not None:
                     return within
         return None
+
+
+def _has_minus(value: Expr) -> bool:
+    return any(isinstance(one, Operation) and one.operator == "-" for one in nodes(value))
 
 
 def _bit_field(member: Field, type_: ObjectType) -> ObjectType:

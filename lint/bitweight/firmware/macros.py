@@ -124,6 +124,7 @@ class MacroTable:
         """Every name that is a macro somewhere."""
         return frozenset(name for _, change in self._changes for name in change)
 
+    @cached_property
     def final(self) -> "MacroTable":
         """The definitions in force at the end of the unit, from the start."""
         last: dict[str, Macro | None] = {}

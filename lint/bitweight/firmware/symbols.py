@@ -10,6 +10,7 @@ from dataclasses import dataclass, field
 
 from bitweight.arithmetic.types import DataModel
 from bitweight.firmware.files import SourceFile, SourceTree
+from bitweight.firmware.syntax import Expr
 from bitweight.firmware.translation import translate
 from bitweight.firmware.units import Function, Unit, Variable
 from bitweight.limits import Limits
@@ -31,6 +32,8 @@ class Program:
     limits: Limits
     marks: frozenset[str] = frozenset()
     units: dict[str, Unit] = field(default_factory=dict)
+    plain_trees: dict[str, Expr | None] = field(default_factory=dict)
+    """Expressions from outside that mean the same in every unit."""
     _loaded: set[str] = field(default_factory=set)
 
     def load(self, name: str) -> None:
@@ -92,7 +95,7 @@ class Program:
     def _unit(self, file: SourceFile) -> Unit:
         if file.path not in self.units:
             translation = translate(self.tree, file, self.defines, self.limits)
-            self.units[file.path] = Unit(translation, self.model, self.marks)
+            self.units[file.path] = Unit(translation, self.model, self.marks, self.plain_trees)
         return self.units[file.path]
 
     def _units_for(self, name: str) -> list[SourceFile]:

@@ -76,7 +76,7 @@ class TranslationUnit:
 
     def excerpt(self, source: str) -> "TranslationUnit":
         """C text from outside the tree as if it stood at the end of the unit, expanded."""
-        final = self.macros.final()
+        final = self.macros.final
         pieces, entered = self._expanded(source, final.at(0))
         return replace(self, text=pieces.text(), macros=final, pieces=pieces, entered=entered)
 

@@ -99,7 +99,9 @@ class Unit:
         translation: TranslationUnit,
         model: DataModel,
         marks: Iterable[str] = (),
+        plain_trees: dict[str, Expr | None] | None = None,
     ) -> None:
+        """`plain_trees` remembers expressions from outside that mean the same in every unit."""
         self.translation = translation
         self.path = translation.path
         self.model = model
@@ -113,6 +115,7 @@ class Unit:
             marks=_trimmed(spans, translation.text),
         )
         self.syntax: UnitSyntax = self.parser.unit()
+        self.plain_trees = {} if plain_trees is None else plain_trees
         self.literals: dict[tuple[int, str], Expression] = {}
         self._addressed: dict[str, frozenset[str]] = {}
         self._places: dict[int, tuple[Place, Place]] = {}

@@ -79,7 +79,9 @@ def run_rules(rules: Iterable[Rule], facts: Facts) -> tuple[Finding, ...]:
                 case TreeRule():
                     found.extend(rule.check(facts))
         except Exception as error:
-            raise RuleError(f"rule {rule.name!r} failed: {type(error).__name__}: {error}") from error
+            raise RuleError(
+                f"rule {rule.name!r} failed: {type(error).__name__}: {error}"
+            ) from error
     return tuple(found)
 
 

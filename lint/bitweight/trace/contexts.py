@@ -91,7 +91,9 @@ class Context:
     """Where each channel's code was read first."""
     initialisers: dict[int, tuple[Expr, Parts | None]] = field(default_factory=dict)
     in_progress: dict[Root, set[tuple[str | int, ...]]] = field(default_factory=dict)
-    pattern_constants: dict[int, tuple[Expr, int | float | None]] = field(default_factory=dict)
+    pattern_constants: dict[tuple[str, int], tuple[Expr, int | float | None]] = field(
+        default_factory=dict
+    )
     _declared: dict[Root, Declared | None] = field(default_factory=dict)
     _fixed: dict[Root, bool] = field(default_factory=dict)
     _wanted: dict[str, Mapping[tuple[str, str], tuple[Wanted, ...]]] = field(default_factory=dict)

@@ -6,7 +6,7 @@ steady program.
 
 from bitweight.firmware.mentions import nodes
 from bitweight.firmware.objects import Arithmetic, Location
-from bitweight.firmware.syntax import Call, Expr, Loop, Name
+from bitweight.firmware.syntax import Call, Expr, Jump, Loop, Name, Return
 from bitweight.trace.branches import Branches
 from bitweight.trace.contexts import shown
 from bitweight.trace.exits import Exit, Flow
@@ -15,6 +15,8 @@ from bitweight.trace.memory import State, is_number
 _TURNS_WITH_EXITS = 16
 """Turns of a loop that may leave it by a condition before the loop counts as unbounded."""
 
+_TURNS_OF_ENDLESS = 64
+"""Turns in which a loop without an end of its own may leave itself."""
 _MOST_ROUNDS = 8
 """How often what one turn changes may change more in the next before that is left at."""
 
@@ -30,12 +32,13 @@ class Loops(Branches):
                 flow = self.flow(node.before)
                 self.state = flow.next if flow.next is not None else self.state
             start, steps = self.state.copy(), self.steps
-            events = len(self.events)
-            unrolled = None if self._endless(node.condition) else self._unrolled(node)
+            events, ends = len(self.events), len(self.turn_ends)
+            unrolled = self._unrolled(node, self._most_turns(node))
             if unrolled is not None:
                 return unrolled
             self.state, self.steps = start, steps
             del self.events[events:]
+            del self.turn_ends[ends:]
             return self._unbounded(node)
         finally:
             self.frame.scopes.pop()
@@ -48,13 +51,20 @@ class Loops(Branches):
             return isinstance(condition, Name) and condition.text in ("true", "TRUE")
         return bool(self.plain_constant(condition))
 
-    def _unrolled(self, node: Loop) -> Flow | None:
+    def _most_turns(self, node: Loop) -> int:
+        """Turns after which a loop counts as one of unknown length; none where nothing ends it."""
+        if not self._endless(node.condition):
+            return self.context.limits.loop_turns + 1
+        leaves = any(isinstance(one, Return | Jump) for one in nodes(node.body))
+        return _TURNS_OF_ENDLESS if leaves else 0
+
+    def _unrolled(self, node: Loop, turns: int) -> Flow | None:
         """The loop turn by turn while its condition is constant; None where it is not."""
         exits: list[Exit] = []
         test = not node.first
-        for turn in range(self.context.limits.loop_turns + 1):
-            if test:
-                known = self.fixed(self.number(node.condition)) if node.condition else None
+        for turn in range(turns):
+            if test and node.condition is not None:
+                known = self.fixed(self.number(node.condition))
                 if known is None:
                     return None
                 if not known:

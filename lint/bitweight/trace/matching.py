@@ -66,10 +66,11 @@ class Matching(Lvalues):
     def _outside_constant(self, node: Expr) -> int | float | None:
         """A constant of a pattern: no local is meant by it."""
         known = self.context.pattern_constants
-        if id(node) not in known:
+        key = (self.unit.path, id(node))
+        if key not in known:
             outside = type(self)(self.context, self.unit)
-            known[id(node)] = (node, outside.plain_constant(node))
-        return known[id(node)][1]
+            known[key] = (node, outside.plain_constant(node))
+        return known[key][1]
 
     def plain_constant(self, node: Expr) -> int | float | None:
         """A constant whose expression is not itself looked for among the patterns."""

@@ -70,7 +70,12 @@ def excerpt(text: str, unit: Unit) -> Unit:
 
 def parsed(text: str, unit: Unit) -> Expr | None:
     """The tree of a pattern with the macros of a unit expanded; None if it is no C expression."""
-    return excerpt(text, unit).parser.expression()
+    definitions = unit.translation.macros.final.at(0)
+    if any(word in definitions or unit.parser.is_type(word) for word in _WORD.findall(text)):
+        return excerpt(text, unit).parser.expression()
+    if text not in unit.plain_trees:
+        unit.plain_trees[text] = excerpt(text, unit).parser.expression()
+    return unit.plain_trees[text]
 
 
 def head(tree: Expr) -> tuple[str, str]:
