@@ -1,5 +1,6 @@
 """C text to traces for the tests of this folder; nothing is read from disk."""
 
+import math
 from collections.abc import Mapping, Sequence
 
 import numpy as np
@@ -7,6 +8,7 @@ import numpy as np
 from bitweight.arithmetic.evaluation import evaluate
 from bitweight.arithmetic.expressions import Code, Expression
 from bitweight.arithmetic.types import DataModel
+from bitweight.arithmetic.values import FaultKind
 from bitweight.firmware.files import SourceFile, SourceTree
 from bitweight.firmware.symbols import Program
 from bitweight.limits import Deadline, Limits
@@ -22,6 +24,12 @@ Sources = str | Mapping[str, str]
 INT32 = DataModel()
 """A target with an int of 32 bits and a double of 64."""
 BOARD = Place("board.toml", 1)
+UNKNOWN = math.nan
+"""Stands for a value at a code that depends on something unknown."""
+CODES = (100, 4000)
+"""The codes at which tables of expected values give what the C computes."""
+HEAD = "uint16_t adc(void);\nint flag(void);\nint mv;\n"
+"""What the short sources of the tables begin with: a reading, something unknown, a result."""
 
 
 def context_of(
@@ -103,7 +111,10 @@ def conversion(sources: Sources, reading: str = "adc()", value: str = "mv") -> C
 def at_codes(
     expression: Expression, codes: Sequence[int], others: Mapping[str, int] | None = None
 ) -> list[int | float]:
-    """What an expression computes at some codes of `tank`; other channels stand at one code."""
+    """What an expression computes at some codes of `tank`; other channels stand at one code.
+
+    NaN where it depends on something unknown.
+    """
     fixed = others or {}
 
     def read(node: Code) -> np.ndarray[tuple[int, ...], np.dtype[np.int64]]:
@@ -112,14 +123,42 @@ def at_codes(
         return np.array(words, dtype=np.int64)
 
     curve = evaluate(expression, read)
-    return [value.item() for value in np.broadcast_to(curve.values, (len(codes),))]
+    unknown = np.broadcast_to(curve.faulty(FaultKind.UNKNOWN), (len(codes),))
+    values = np.broadcast_to(curve.values, (len(codes),))
+    return [
+        UNKNOWN if hidden else value.item() for value, hidden in zip(values, unknown, strict=True)
+    ]
+
+
+def entry(body: str, before: str = "") -> str:
+    """A source whose function `entry` has this body, behind other definitions."""
+    return f"{HEAD}{before}\nvoid entry(void)\n{{\n{body}\n}}\n"
 
 
 def outcome(
-    sources: Sources, reading: str = "adc()", value: str = "mv", codes: Sequence[int] = (100, 4000)
-) -> str | list[list[int | float]]:
-    """The values at two codes, a list for each conversion; the reason where there is none."""
+    sources: Sources, reading: str = "adc()", value: str | Sequence[str] = "mv"
+) -> str | list[tuple[int | float, ...]]:
+    """The values at `CODES`, a tuple for each conversion; the reason where there is none."""
     trace = traced(sources, reading, value)
     if trace.reason is not None:
         return trace.reason
-    return [at_codes(one.expression, codes) for one in trace.conversions]
+    return [tuple(at_codes(one.expression, CODES)) for one in trace.conversions]
+
+
+Expected = tuple[int | float, int | float] | str
+"""The values at `CODES`, or a part of the reason why there are none."""
+
+
+def check(
+    sources: Sources,
+    expected: Expected,
+    reading: str = "adc()",
+    value: str | Sequence[str] = "mv",
+) -> None:
+    """Assert that one conversion computes these values, or that it is not traced for the reason."""
+    found = outcome(sources, reading, value)
+    if isinstance(expected, str):
+        assert isinstance(found, str), found
+        assert expected in found
+    else:
+        assert repr(found) == repr([expected])

@@ -1,4 +1,7 @@
-"""What can go wrong, by who must act. Only `command/cli.py` turns these into text and exit status."""
+"""What can go wrong, by who must act.
+
+Only `command/cli.py` turns these into text and exit status.
+"""
 
 from dataclasses import dataclass
 

@@ -18,7 +18,7 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
 
 
 def _say(wrong: WrongConstant) -> str:
-    return f"{wrong.text} is {wrong.found}, but {wrong.role} of the board is {wrong.expected}"
+    return f"{wrong.held}, but {wrong.wanted}"
 
 
 RULE = ChannelRule(

@@ -18,7 +18,7 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
 
 
 def _say(wrong: WrongConstant) -> str:
-    return f"{wrong.text} is {wrong.found}, but {wrong.expected} counts stand for the reference"
+    return f"{wrong.held}, but {wrong.expected} counts stand for the reference"
 
 
 RULE = ChannelRule(

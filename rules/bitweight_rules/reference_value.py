@@ -18,7 +18,7 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
 
 
 def _say(wrong: WrongConstant) -> str:
-    return f"{wrong.text} is {wrong.found}, but the board has {wrong.expected} as {wrong.role}"
+    return f"{wrong.held}, but {wrong.wanted}"
 
 
 RULE = ChannelRule(

@@ -18,7 +18,7 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
 
 
 def _say(wrong: WrongConstant) -> str:
-    return f"{wrong.text} is {wrong.found}, right for the converter would be {wrong.expected}"
+    return f"{wrong.held}, but the converter's results need {wrong.expected}"
 
 
 RULE = ChannelRule(

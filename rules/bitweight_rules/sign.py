@@ -12,7 +12,7 @@ from bitweight.api import (
     Judgement,
     Level,
     Place,
-    quantity,
+    off,
     steps,
     walk,
 )
@@ -32,14 +32,15 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
         return
     converter = case.channel.converter
     worst = judgement.worst_index
-    off = quantity(float(judgement.error[worst]), case.channel)
     assumed = "" if converter.coding_stated else " (assumed: the board file states no coding)"
     yield Finding(
         rule=RULE.name,
         level=Level.ERROR,
         channels=(case.channel.name,),
         message=f"the code is read as {_WORDS[judgement.coding]}, but {converter.name} delivers "
-        f"{_WORDS[converter.coding]}{assumed}: off by {off} at code {int(judgement.codes[worst])}",
+        f"{_WORDS[converter.coding]}{assumed}: "
+        f"{off(float(judgement.error[worst]), judgement.lsb, case.channel)} at code "
+        f"{int(judgement.codes[worst])}",
         place=_reading(judgement, case.channel.name),
         found=_WORDS[judgement.coding],
         expected=_WORDS[converter.coding],

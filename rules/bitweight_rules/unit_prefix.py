@@ -18,7 +18,7 @@ def check(case: Case, facts: Facts) -> Iterator[Finding]:
 
 
 def _say(wrong: WrongConstant) -> str:
-    return f"{wrong.text} is off by a power of ten: {wrong.found}, not {wrong.expected}"
+    return f"{wrong.held}, off by a power of ten: {wrong.expected} is right"
 
 
 RULE = ChannelRule(

@@ -31,7 +31,9 @@ def _register(text: str, bits: int) -> Conversion:
     return facts.conversion(word)
 
 
-def _found(value: str, conversions: tuple[Conversion, ...] = (), **changes: Any) -> tuple[Finding, ...]:
+def _found(
+    value: str, conversions: tuple[Conversion, ...] = (), **changes: Any
+) -> tuple[Finding, ...]:
     tank = facts.channel(converter=facts.converter(**changes))
     case = facts.case(of=tank, traced=Trace(channel="tank", conversions=conversions))
     return findings_of(RULE.check, case, settings=(_setting(value),))

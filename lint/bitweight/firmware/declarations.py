@@ -39,18 +39,25 @@ class Declarations:
         self._path = path
         self._typedefs: Mapping[str, TypeSyntax] = {one.name: one.type for one in syntax.typedefs}
 
-    @cached_property
+    @property
     def records(self) -> Mapping[str, tuple[Field, ...]]:
         """Members by tag, of every struct and union that is declared with a body."""
+        return self._records
+
+    @cached_property
+    def _records(self) -> dict[str, tuple[Field, ...]]:
         found: dict[str, tuple[Field, ...]] = {}
-        pending = [*self._syntax.specifiers]
-        pending += [one.type.specifiers for one in self._syntax.variables]
-        while pending:
-            one = pending.pop()
-            if one.fields is not None and one.tag is not None and one.tag not in found:
-                found[one.tag] = one.fields
-                pending.extend(member.type.specifiers for member in one.fields)
+        variables = [one.type.specifiers for one in self._syntax.variables]
+        for tag, fields in _bodies([*self._syntax.specifiers, *variables]):
+            found.setdefault(tag, fields)
         return found
+
+    def learn(self, specifiers: Specifiers) -> None:
+        """Take in the records that a function declares; a tag with two bodies has none."""
+        for tag, fields in _bodies([specifiers]):
+            known = self._records.setdefault(tag, fields)
+            if known != fields:
+                self._records[tag] = ()
 
     def specifiers(self) -> Iterator[Specifiers]:
         """Every specifier list of the unit, those of members included."""
@@ -136,6 +143,15 @@ class Declarations:
                 if within is not None:
                     return within
         return None
+
+
+def _bodies(pending: list[Specifiers]) -> Iterator[tuple[str, tuple[Field, ...]]]:
+    """Tags with the members of each record that is declared with a body, inner ones too."""
+    while pending:
+        one = pending.pop()
+        if one.fields is not None and one.tag is not None:
+            yield one.tag, one.fields
+            pending.extend(member.type.specifiers for member in one.fields)
 
 
 def _has_minus(value: Expr) -> bool:

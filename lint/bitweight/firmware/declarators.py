@@ -92,6 +92,8 @@ class Declarators(Grammar):
     def _add(self, parts: _Parts, node: Branch) -> None:
         if node.type in _TYPE_WORDS:
             parts.words.extend(self.text(node).split())
+        elif node.type == "macro_type_specifier":
+            parts.words.append("".join(self.text(node).split()))
         elif node.type == "ERROR":
             parts.words.extend(word for word in self.text(node).split() if self.is_type(word))
         elif node.type == "storage_class_specifier":

@@ -57,6 +57,8 @@ _SAME_AS = {
     "INTERRUPT_HANDLER_TRAP(function)": "void function(void)",
     "EMPTY_INTERRUPT(vector)": "void vector(void) {}",
     "PSTR(text)": "(text)",
+    "ATOMIC_BLOCK(type)": "",
+    "NONATOMIC_BLOCK(type)": "",
 }
 """An interrupt routine becomes a function that is named like its vector."""
 

@@ -109,8 +109,10 @@ class Parser(StatementTrees):
         match node.type:
             case "function_definition":
                 _add_function(outside, self._function(node))
-            case "expression_statement":
-                _add_function(outside, self._untyped_function(node, following))
+            case "expression_statement" if node.named_child_count == 1:
+                _add_function(outside, self._untyped_call(node.named_children[0], following))
+            case "call_expression":
+                _add_function(outside, self._untyped_call(node, following))
             case "type_definition":
                 base = self.specifiers(node)
                 outside.specifiers.append(base)
@@ -132,6 +134,10 @@ class Parser(StatementTrees):
         body = node.child_by_field_name("body")
         if declarator is None or body is None or body.type != "compound_statement":
             return None
+        named = node.child_by_field_name("type")
+        if declarator.type == "parenthesized_declarator" and named is not None:
+            # `name(parameter) { ... }`: the grammar takes the name for a type.
+            return self._untyped(named, inner(declarator), body)
         made = self.declarator(declarator, self.specifiers(node))
         head = next(iter(made.type.derivations), None)
         if not isinstance(head, FunctionOf) or not made.name:
@@ -158,30 +164,31 @@ class Parser(StatementTrees):
         texts = [(name, self.text(name)) for name in names]
         return tuple(types.get(text) or implicit_int(name, text) for name, text in texts)
 
-    def _untyped_function(self, node: Branch, following: Branch | None) -> FunctionSyntax | None:
+    def _untyped_call(self, call: Branch, following: Branch | None) -> FunctionSyntax | None:
         """`name(...) { ... }` without a type: the grammar sees a call and a block."""
-        call = node.named_children[0] if node.named_child_count == 1 else None
-        if call is None or following is None or following.type != "compound_statement":
+        if following is None or following.type != "compound_statement":
             return None
         name = call.child_by_field_name("function")
         arguments = call.child_by_field_name("arguments")
         if name is None or name.type != "identifier" or arguments is None:
             return None
+        return self._untyped(name, inner(arguments), following)
+
+    def _untyped(self, name: Branch, names: list[Branch], body: Branch) -> FunctionSyntax:
+        """A function without a type, whose parameters have none either: all are int."""
         parameters = tuple(
-            implicit_int(child, self.text(child))
-            for child in arguments.named_children
-            if child.type == "identifier"
+            implicit_int(child, self.text(child)) for child in names if child.type == "identifier"
         )
         return FunctionSyntax(
             start=name.start_byte,
-            end=following.end_byte,
+            end=body.end_byte,
             name=self.text(name),
             type=TypeSyntax(
                 specifiers=Specifiers(words=("int",)),
                 derivations=(FunctionOf(parameters=parameters),),
             ),
             parameters=parameters,
-            body_start=following.start_byte,
+            body_start=body.start_byte,
         )
 
 

@@ -19,6 +19,11 @@ from bitweight.firmware.syntax import (
     Switch,
 )
 
+_CONTROL = frozenset(
+    f"{kind}_statement" for kind in ("if", "for", "while", "do", "switch", "labeled")
+)
+_UNKNOWN_HEAD = "a block behind a macro that is not defined"
+
 
 class StatementTrees(ExpressionTrees):
     """Converts statements."""
@@ -33,13 +38,27 @@ class StatementTrees(ExpressionTrees):
             return Opaque(**span(node), kind="statements nested too deeply")
         self.level += 1
         try:
+            if node.type == "function_definition":
+                return Opaque(**span(node), kind=_UNKNOWN_HEAD)
+            if node.type in _CONTROL and is_broken(node):
+                return broken(node)
             convert = _STATEMENTS.get(node.type)
             return convert(self, node) if convert is not None else strange(node)
         finally:
             self.level -= 1
 
     def _statements(self, nodes: Sequence[Branch]) -> tuple[Stmt, ...]:
-        return tuple(self.stmt(node) for node in nodes if node.type != "comment")
+        found: list[Stmt] = []
+        before: Branch | None = None
+        for node in nodes:
+            if node.type == "comment":
+                continue
+            if before is not None and node.type == "compound_statement" and _heads(before):
+                found[-1] = Opaque(start=before.start_byte, end=node.end_byte, kind=_UNKNOWN_HEAD)
+            else:
+                found.append(self.stmt(node))
+            before = node
+        return tuple(found)
 
     def _body(self, node: Branch, field: str) -> Stmt:
         child = node.child_by_field_name(field)
@@ -54,7 +73,9 @@ class StatementTrees(ExpressionTrees):
         return Evaluate(**span(node), expression=self.expr(below[0]))
 
     def _declare(self, node: Branch) -> Stmt:
-        return Declare(**span(node), declarators=self.declaration(node))
+        return Declare(
+            **span(node), specifiers=self.specifiers(node), declarators=self.declaration(node)
+        )
 
     def _if(self, node: Branch) -> Stmt:
         alternative = node.child_by_field_name("alternative")
@@ -138,7 +159,17 @@ class StatementTrees(ExpressionTrees):
         return self.stmt(below[-1]) if below else _nothing(node)
 
     def _type_only(self, node: Branch) -> Stmt:
+        return Declare(**span(node), specifiers=self.specifiers_of([node]), declarators=())
+
+    def _empty(self, node: Branch) -> Stmt:
         return _nothing(node)
+
+
+def _heads(node: Branch) -> bool:
+    """Whether what stands before a block is no statement: a macro that no header defines."""
+    return node.type in ("ERROR", "type_identifier") or (
+        node.type == "expression_statement" and any(one.is_missing for one in node.children)
+    )
 
 
 def _nothing(node: Branch) -> Block:
@@ -161,9 +192,9 @@ _STATEMENTS: Mapping[str, Callable[[StatementTrees, Branch], Stmt]] = {
     "goto_statement": StatementTrees._jump,
     "labeled_statement": StatementTrees._label,
     "attributed_statement": StatementTrees._attributed,
-    "type_definition": StatementTrees._type_only,
+    "type_definition": StatementTrees._empty,
     "struct_specifier": StatementTrees._type_only,
     "union_specifier": StatementTrees._type_only,
     "enum_specifier": StatementTrees._type_only,
-    ";": StatementTrees._type_only,
+    ";": StatementTrees._empty,
 }

@@ -277,8 +277,9 @@ class Block(Node):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Declare(Node):
-    """A declaration inside a block."""
+    """A declaration inside a block, perhaps of nothing but a type."""
 
+    specifiers: Specifiers
     declarators: tuple[Declarator, ...]
 
 

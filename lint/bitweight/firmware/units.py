@@ -19,6 +19,7 @@ from bitweight.firmware.syntax import (
     Field,
     FunctionSyntax,
     PointerTo,
+    Specifiers,
     TypeSyntax,
 )
 from bitweight.firmware.translation import TranslationUnit
@@ -117,6 +118,7 @@ class Unit:
         self.syntax: UnitSyntax = self.parser.unit()
         self.plain_trees = {} if plain_trees is None else plain_trees
         self.literals: dict[tuple[int, str], Expression] = {}
+        self._local_enumerators: dict[str, Enumeration] = {}
         self._addressed: dict[str, frozenset[str]] = {}
         self._places: dict[int, tuple[Place, Place]] = {}
         self.declarations = Declarations(self.syntax, model, self.path)
@@ -154,6 +156,16 @@ class Unit:
             for made in self._enumeration(one.enumerators or ()):
                 found.setdefault(made.name, made)
         return found
+
+    def learn(self, specifiers: Specifiers) -> None:
+        """Take in the types and enumerators that a function declares."""
+        self.declarations.learn(specifiers)
+        for made in self._enumeration(specifiers.enumerators or ()):
+            self._local_enumerators[made.name] = made
+
+    def enumerator(self, name: str) -> Enumeration | None:
+        """The enumerator of a name; one that a function declared hides those outside."""
+        return self._local_enumerators.get(name) or self.enumerators.get(name)
 
     def _enumeration(self, enumerators: tuple[Enumerator, ...]) -> Iterator[Enumeration]:
         base: Expr | None = None

@@ -9,7 +9,7 @@ from collections.abc import Callable, Iterator
 from bitweight.judge.cases import Case, Judgement
 from bitweight.judge.explanations import WrongConstant
 from bitweight.judge.findings import Finding, Level, Related, Replacement
-from bitweight.judge.statements import edit, quantity, steps, uses
+from bitweight.judge.statements import edit, quantity, settled, steps, uses
 
 Say = Callable[[WrongConstant], str]
 
@@ -59,8 +59,7 @@ def _cancelling_finding(
             *(
                 Related(
                     place=other.place,
-                    message=f"{other.text} is {other.found}, the board's {other.role} is "
-                    f"{other.expected}",
+                    message=f"{other.held}, but {other.wanted}",
                 )
                 for other in others
             ),
@@ -75,11 +74,12 @@ def effect(case: Case, wrong: WrongConstant) -> str:
     if wrong.level is Level.NOTE:
         return "no result changes by it"
     worst = max(wrong.effect, key=lambda point: abs(point.error), default=None)
-    if worst is None or not worst.error:
+    lsb = case.judgement.lsb if case.judgement is not None else 0.0
+    if worst is None or not settled(worst.error, lsb):
         return ""
     direction = "high" if worst.error > 0 else "low"
     amount = quantity(abs(worst.error), case.channel)
-    return f"by it alone the reading is {amount} {direction} at code {worst.at_count}"
+    return f"this alone: up to {amount} {direction} (code {worst.at_count})"
 
 
 def _uses(wrong: WrongConstant) -> tuple[Related, ...]:

@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 
 from bitweight.arithmetic.evaluation import evaluate
 from bitweight.arithmetic.expressions import Expression, Literal, walk
+from bitweight.arithmetic.reals import real_form
 from bitweight.arithmetic.scalars import nearest
 from bitweight.arithmetic.types import CType
 from bitweight.judge.explanations import EffectPoint
@@ -22,16 +23,22 @@ from bitweight.judge.questions import BoardLine, Question
 from bitweight.judge.substitutions import replaced
 
 Array = NDArray[np.float64]
+_LEAST_SHARE = Fraction(1, 1000)
+"""Rounding a constant of four digits to a whole number is never what is wrong with it."""
 _MOST_CODES = 1 << 14
 """Codes looked at for an effect: a straight error is largest at an end of the range."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Correction:
-    """What mends one cause: a value, a shift of the words, or a factor on the result's unit."""
+    """What mends one cause: a value, a shift of the words, or a factor on the result's unit.
+
+    `holds` is False where the constant's type cannot hold the value that it should have.
+    """
 
     key: Key | None = None
     value: Fraction = Fraction(0)
+    holds: bool = True
     shift: int = 0
     factor: Fraction = Fraction(1)
 
@@ -66,13 +73,32 @@ class Bench:
             if correction.key is None:
                 continue
             new = _literal(correction.value, self.types[correction.key])
-            if new is None:
+            if new is None or not correction.holds:
                 return None
             literals[correction.key] = new
         expression = replaced(self.expression, literals) if literals else self.expression
         curve = evaluate(expression, lambda _: words)
         values = np.broadcast_to(np.asarray(curve.values, dtype=np.float64), self.codes.shape)
         return values * nearest(scale, 64) + nearest(self.zero, 64) - self.quantity
+
+    def meant(self, corrections: Sequence[Correction]) -> Array:
+        """What the expression means with some corrections made, in the channel's unit."""
+        words, scale = self.words, self.scale
+        values: dict[Key, Fraction] = {}
+        for correction in corrections:
+            words, scale = words >> correction.shift, scale * correction.factor
+            if correction.key is not None:
+                values[correction.key] = correction.value
+        real = real_form(self.expression).floats(lambda _: words, values)
+        return np.broadcast_to(real, self.codes.shape) * nearest(scale, 64)
+
+    @property
+    def finest(self) -> Fraction:
+        """The share of a factor that takes some reading out of the allowed error by itself."""
+        size = np.abs(self.quantity)
+        told = size > 0
+        share = float((self.allowed[told] / size[told]).min(initial=1.0))
+        return max(_LEAST_SHARE, Fraction(share) if np.isfinite(share) else Fraction(1))
 
     def leaves(self, error: Array) -> NDArray[np.bool_]:
         """At which codes an error is outside the allowed one."""
@@ -121,11 +147,14 @@ def effects(at: Bench, corrections: Sequence[Correction]) -> tuple[Effect, ...]:
 
     Each cause is judged with all others mended: an error if the reading then leaves the allowed
     error, a note if mending it alone changes no result, else a warning. Causes that leave it only
-    together are all errors.
+    together are all errors. Where truncation hides what a correction does, what the code means
+    counts.
     """
     before, after = at.error(()), at.error(corrections)
     if before is None or after is None:
-        return tuple(Effect(level=Level.ERROR, points=()) for _ in corrections)
+        ill = before is None or bool(at.leaves(before).any())
+        level = Level.ERROR if ill else Level.WARNING
+        return tuple(Effect(level=level, points=()) for _ in corrections)
     own = [_own_error(at, corrections, index, before) for index in range(len(corrections))]
     right = ~at.leaves(after)
     levels = [
@@ -134,6 +163,11 @@ def effects(at: Bench, corrections: Sequence[Correction]) -> tuple[Effect, ...]:
     ]
     if Level.ERROR not in levels and bool((at.leaves(before) & right).any()):
         levels = [Level.ERROR] * len(levels)
+    if bool((at.leaves(before) & at.leaves(after)).any()):
+        levels = [
+            Level.ERROR if _is_hidden(at, corrections, index) else level
+            for index, level in enumerate(levels)
+        ]
     return tuple(
         Effect(level=level, points=_points(at, error - after))
         for level, error in zip(levels, own, strict=True)
@@ -155,6 +189,12 @@ def _own_error(at: Bench, corrections: Sequence[Correction], index: int, before:
     others = [*corrections[:index], *corrections[index + 1 :]]
     left = at.error(others)
     return before if left is None else left
+
+
+def _is_hidden(at: Bench, corrections: Sequence[Correction], index: int) -> bool:
+    """Whether a cause, with all others mended, leaves the allowed error before C truncates."""
+    others = [*corrections[:index], *corrections[index + 1 :]]
+    return bool(at.leaves(at.meant(others) - at.meant(corrections)).any())
 
 
 def _changes(at: Bench, correction: Correction, before: Array) -> bool:

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from bitweight.arithmetic.evaluation import Curve, Read, evaluate
-from bitweight.arithmetic.expressions import Code, Expression
+from bitweight.arithmetic.expressions import Code, Expression, walk
 from bitweight.arithmetic.reals import reals
 from bitweight.arithmetic.types import DataModel
 from bitweight.arithmetic.values import FaultKind
@@ -124,19 +124,32 @@ def steady_words(channels: Iterable[Channel]) -> dict[str, int]:
     return {channel.name: _steady_word(channel) for channel in channels}
 
 
-def presented(converter: Converter, codes: Codes, reading_gain: Fraction) -> tuple[Codes, ...]:
+def presented(
+    converter: Converter, codes: Codes, reading_gain: Fraction, *, bare: bool = False
+) -> tuple[Codes, ...]:
     """The ways in which the words behind codes may reach the firmware, the likeliest first.
 
-    A two's-complement code may also come as a negative number (a function that returns int). A
-    `reading_gain` multiplies what arrives, as a sum of samples does.
+    A two's-complement code may also come as a negative number (a function that returns int), unless
+    the firmware sees the `bare` word. A `reading_gain` multiplies what arrives, as a sum of samples
+    does.
     """
     ways = [way.words(codes) for way in converter.presentations]
-    if converter.coding is Coding.TWOS_COMPLEMENT:
+    if converter.coding is Coding.TWOS_COMPLEMENT and not (bare and reading_gain == 1):
         signed = codes << converter.shift
         if reading_gain != 1:
             ways = []
         ways.append(signed)
     return tuple(_multiplied(words, reading_gain) for words in ways)
+
+
+def sees_bare_words(frame: Frame) -> bool:
+    """Whether the board states a word no wider than its code and the reading has no sign."""
+    converter = frame.side.channel.converter
+    if not converter.word_bits_stated or converter.word_bits - converter.shift > converter.width:
+        return False
+    codes = (node for node in walk(frame.conversion.expression) if isinstance(node, Code))
+    own = [code for code in codes if frame.conversion.channel in code.channels]
+    return bool(own) and not any(code.type.signed for code in own)
 
 
 def _multiplied(words: Codes, gain: Fraction) -> Codes:

@@ -21,8 +21,10 @@ class WrongConstant:
     """A constant whose correction is part of the smallest set that mends the channel.
 
     `rule` is the rule that reports it; `role` is what it stands for in words ("reference vref");
-    `found` and `expected` are the values shown, `text` is how a message names the constant. `value`
-    is the corrected value; `replacement` is the text to write at the leaf (None where one edit
+    `found` and `expected` are the values shown, as the code writes them and with an everyday unit if
+    they have one; `text` is how a message names the constant, `held` the clause that says what the
+    code has ("ADC_MAX is 1023") and `wanted` the one that says what the board has. `value` is the
+    corrected value; `replacement` is the text to write at the leaf (None where one edit
     cannot say it). `leaf` is None where no constant is at fault (a shift that is missing); `place`
     is then where the finding stands. `level` comes from the constant's own effect, whose bottom,
     middle and top of the range are `effect`. `remark` is a sentence for the message.
@@ -40,6 +42,8 @@ class WrongConstant:
     level: Level = Level.WARNING
     effect: tuple[EffectPoint, ...] = ()
     remark: str = ""
+    held: str = ""
+    wanted: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

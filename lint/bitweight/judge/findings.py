@@ -48,9 +48,10 @@ class Replacement:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Finding:
-    """One cause. `found` and `expected` are short values with units; `hazard` is the channel's own words.
+    """One cause. `found` and `expected` are short values with units.
 
-    `channels` lists all channels it touches; `deviation` is the accepted reason, if any.
+    `channels` lists all channels it touches; `hazard` is the channel's own words;
+    `deviation` is the accepted reason, if any.
     """
 
     rule: str

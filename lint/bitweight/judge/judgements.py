@@ -27,6 +27,7 @@ from bitweight.judge.evaluations import (
     code_grid,
     evaluated,
     presented,
+    sees_bare_words,
 )
 from bitweight.judge.findings import Level
 from bitweight.judge.inquiries import accepted_line, question
@@ -34,7 +35,7 @@ from bitweight.judge.losses import Loss, coarse_end, truncation_loss
 from bitweight.judge.operations import WrongOperation, wrong_operations
 from bitweight.judge.roles import Explanation, explain
 from bitweight.judge.scalings import inferred_scale, rough_scale
-from bitweight.judge.scans import with_scanned
+from bitweight.judge.scans import stride, with_scanned
 from bitweight.judge.sides import Point, Side, firmware_side, range_points
 from bitweight.judge.suffixes import suffix_for
 from bitweight.judge.units import ResultUnit, result_unit
@@ -54,7 +55,8 @@ class Judgement:
     of 0 stands for; `step` is `scale` for an integer result and 0 for a floating one. `words` are
     the raw words behind the codes, `real` the result in real numbers, in counts of the result.
     `operations` are the operators that go wrong, `loss` what early division costs, `clamps` limits
-    inside the range, `coding` the one in which the firmware reads a code of another coding.
+    inside the range, `coding` the one in which the firmware reads a code of another coding. Where a
+    converter has more codes than can be looked at, `stride` says that only every so many were.
     """
 
     conversion: Conversion
@@ -82,6 +84,7 @@ class Judgement:
     loss: Loss | None = None
     clamps: tuple[Clamp, ...] = ()
     coding: Coding | None = None
+    stride: int = 1
 
     @property
     def worst_ratio(self) -> float:
@@ -118,7 +121,8 @@ def judge_conversion(frame: Frame) -> Judgement | str:
 def _likeliest(frame: Frame, unit: ResultUnit, codes: Codes) -> Evaluation:
     """The conversion under the presentation of the words that suits it best; the first on a tie."""
     channel = frame.side.channel
-    ways = presented(channel.converter, codes, channel.firmware.reading_gain)
+    gain = channel.firmware.reading_gain
+    ways = presented(channel.converter, codes, gain, bare=sees_bare_words(frame))
     computed = [evaluated(frame, codes, words) for words in ways]
     if len(computed) == 1:
         return computed[0]
@@ -160,8 +164,9 @@ def _judged(
     outside = _worst_ratio(error, limit, computed.in_range) > 1
     coding = other_coding(computed, frame, result) if outside else None
     meant = computed.real * result.scale + result.zero - allowed.quantity
-    meant_ill = _worst_ratio(meant, limit, computed.in_range) > _ROUNDING
     found = _Faults() if coding else _faults(computed, result, allowed)
+    known = computed.in_range & ~(_without_value(found.operations) & ~np.isfinite(meant))
+    meant_ill = _worst_ratio(meant, limit, known) > _ROUNDING
     worst = _worst_index(error, computed.in_range)
     return Judgement(
         conversion=frame.conversion,
@@ -193,6 +198,7 @@ def _judged(
         loss=found.loss,
         clamps=found.clamps,
         coding=coding,
+        stride=stride(frame.side.channel.converter),
     )
 
 
@@ -231,6 +237,11 @@ def wrong_mask(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
     return reduce(np.logical_or, (one.mask for one in operations), np.array([False]))
 
 
+def _without_value(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
+    """The codes at which an operator has no value in any type: a fault that is told for itself."""
+    return wrong_mask(one for one in operations if one.exact is None)
+
+
 def _unblamed(explanation: Explanation) -> Explanation:
     """An explanation that blames no constant: the coding explains the difference."""
     return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
@@ -259,7 +270,7 @@ _ALIKE = 1e-6
 def _worst_ratio(error: Array, allowed: Array, in_range: NDArray[np.bool_]) -> float:
     with np.errstate(divide="ignore", invalid="ignore"):
         ratio = np.where(error == 0, 0.0, np.abs(error) / allowed)[in_range]
-    return float(ratio.max()) if np.isfinite(ratio).all() else math.inf
+    return float(ratio.max(initial=0.0)) if np.isfinite(ratio).all() else math.inf
 
 
 def _worst_index(error: Array, in_range: NDArray[np.bool_]) -> int:

@@ -75,6 +75,23 @@ class Meaning:
             return _PREFIXES[self.exponent] + term.unit
         return f"* 1e{(term.shown_exponent or 0) - self.exponent} {term.shown_unit}"
 
+    @property
+    def is_everyday(self) -> bool:
+        """Whether `unit` is a unit with an SI prefix, or the number is written as it is."""
+        return not self.unit.startswith(("*", "/ 2**"))
+
+    def in_words(self, value: Fraction) -> str:
+        """What a constant of this scaling stands for: 250 for "2.5 mV/kPa", 2560 for "10 * 2**8"."""
+        term = self.term
+        if self.doublings:
+            return f"{_short(value / 2**self.doublings)} * 2**{self.doublings}"
+        shown = value * Fraction(10) ** ((term.shown_exponent or 0) - self.exponent)
+        return f"{_short(shown)} {term.shown_unit}".strip()
+
+
+def _short(value: Fraction) -> str:
+    return f"{float(value):.6g}"
+
 
 _PREFIXES = {-6: "M", -3: "k", 0: "", 3: "m", 6: "u", 9: "n"}
 _DECIMALS = range(-6, 10)

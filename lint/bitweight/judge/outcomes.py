@@ -9,8 +9,9 @@ from bitweight.judge.findings import Finding
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Outcome:
-    """One verified board. `statuses` has every channel; `source_lines` the text of lines that findings name.
+    """One verified board. `statuses` has every channel.
 
+    `source_lines` is the text of the lines that findings name.
     `problems` are remarks on the sources for standard error (skipped files, broken conditionals).
     """
 

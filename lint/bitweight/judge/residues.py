@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from bitweight.judge.cases import Case, Judgement
 from bitweight.judge.explanations import Explanation, WrongConstant
 from bitweight.judge.findings import Finding, Level, Replacement
-from bitweight.judge.statements import edit, quantity, steps, uses
+from bitweight.judge.statements import edit, off, quantity, steps, uses
 
 
 def residual_findings(case: Case, rule: str, kind: str) -> Iterator[Finding]:
@@ -58,8 +58,7 @@ def _sentences(case: Case, judgement: Judgement, found: str, expected: str) -> I
     else:
         yield f"the code has {_article(kind)} of {found}, the board wants {expected}"
     worst = judgement.worst_index
-    off = quantity(float(judgement.error[worst]), case.channel)
-    yield f"off by {off} at code {int(judgement.codes[worst])}"
+    yield f"{off(float(judgement.error[worst]), judgement.lsb, case.channel)} at code {int(judgement.codes[worst])}"
     culprit = judgement.explanation.culprit
     if culprit is not None:
         yield f"{culprit.text} would be right as {culprit.expected}"

@@ -22,7 +22,8 @@ BY_EFFECT = (
 class ChannelRule:
     """A rule asked once a channel: `check(case, facts)` yields findings.
 
-    `summary` says what it checks in one sentence; `formula` how; `source` names the standard, data sheet or "common practice".
+    `summary` says what it checks in one sentence; `formula` how; `source` names the standard, data
+    sheet or "common practice".
     `levels` says which level follows from which effect.
     """
 
@@ -52,8 +53,8 @@ Rule = ChannelRule | TreeRule
 def load_rules() -> tuple[Rule, ...]:
     """Every registered rule, in order of name.
 
-    Raises `RuleError` for an entry point that does not hold a rule, a duplicate name or a
-    check with the wrong number of parameters.
+    Raises `RuleError` for an entry point that does not hold a rule, a duplicate name, a check with
+    the wrong number of parameters, and where there is no rule at all: nothing may pass unchecked.
     """
     rules: dict[str, Rule] = {}
     for entry in sorted(entry_points(group=GROUP), key=lambda entry: (entry.name, entry.value)):
@@ -61,6 +62,8 @@ def load_rules() -> tuple[Rule, ...]:
         if rule.name in rules:
             raise RuleError(f"{_origin(entry)}: a second rule is named {rule.name!r}")
         rules[rule.name] = rule
+    if not rules:
+        raise RuleError("no rules are installed; the distribution bitweight brings its own")
     return tuple(rules[name] for name in sorted(rules))
 
 

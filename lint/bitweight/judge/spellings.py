@@ -58,6 +58,14 @@ def shown(value: Fraction, digits: int = _SIGNIFICANT) -> str:
     return f"{nearest(value, 64):.{digits}g}"
 
 
+def is_coarse(written: Fraction, exact: Fraction, finest: Fraction) -> bool:
+    """Whether a value says another so badly that the difference matters: nothing, for something.
+
+    `finest` is the share of a constant that matters.
+    """
+    return written != exact and (not written or abs(written / exact - 1) > finest)
+
+
 def _whole_match(text: str) -> re.Match[str] | None:
     return _HEXADECIMAL.fullmatch(text) or _OTHER_WHOLE.fullmatch(text)
 

@@ -3,6 +3,7 @@
 Facts of a case enter; short texts and the parts of a `Finding` leave.
 """
 
+import math
 from collections.abc import Iterable
 from fractions import Fraction
 
@@ -29,6 +30,25 @@ from bitweight.trace.conversions import Conversion
 def quantity(value: Fraction | float, channel: Channel) -> str:
     """A number in the channel's unit, for people: "4.095 mV"."""
     return engineering(value, channel.unit)
+
+
+_VISIBLE = 1e-5
+"""The share of an LSB below which a number is what binary64 arithmetic leaves of nothing."""
+
+
+def settled(value: float, lsb: float) -> float:
+    """The value, or 0 where it is no more than the rounding of the arithmetic."""
+    return 0.0 if abs(value) <= _VISIBLE * abs(lsb) else value
+
+
+def off(error: float, lsb: float, channel: Channel) -> str:
+    """An error as what it does to the reading: "reads 1.951 V low"."""
+    held = settled(error, lsb)
+    if not held:
+        return "reads right"
+    if not math.isfinite(held):
+        return "has no value"
+    return f"reads {quantity(abs(held), channel)} {'high' if held > 0 else 'low'}"
 
 
 def volts(value: Fraction) -> str:

@@ -4,19 +4,20 @@ A question and the repairs that explain its line enter; `WrongConstant`s leave.
 """
 
 from collections.abc import Sequence
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
-from bitweight.arithmetic.expressions import Code, Expression, Leaf, walk
+from bitweight.arithmetic.expressions import Binary, Code, Expression, Leaf, Literal, walk
 from bitweight.arithmetic.literals import exact_value
 from bitweight.board.facts import Role
 from bitweight.judge.effects import Bench, Correction, Effect, effects, mends
 from bitweight.judge.explanations import WrongConstant
 from bitweight.judge.findings import Level
-from bitweight.judge.knobs import Knob
+from bitweight.judge.knobs import Key, Knob, bare, leaf_key
+from bitweight.judge.meanings import Meaning
 from bitweight.judge.questions import Question
 from bitweight.judge.repairs import Repair
-from bitweight.judge.spellings import plain, replacement, shown, spelled
+from bitweight.judge.spellings import is_coarse, plain, replacement, shown, spelled
 from bitweight.places import Place
 
 _NO_EFFECT = Effect(level=Level.NOTE, points=())
@@ -30,16 +31,21 @@ _BARE_ROLES = {
 """What a constant that stands for no board fact is, by the rule that reports it."""
 
 
+_VERBS = {"*": "multiplies by", "/": "divides by", "+": "adds", "-": "subtracts"}
+_SHIFTS = ("<<", ">>")
+"""What the code does with a constant that has no name, by its operator."""
+
+
 def wrong_constants(
     question: Question, at: Bench, repairs: Sequence[Repair]
 ) -> tuple[WrongConstant, ...]:
     """The wrong constants of a solution, each with the level of its own effect."""
-    corrections = tuple(_correction(question, repair) for repair in repairs)
+    corrections = tuple(_correction(question, at, repair) for repair in repairs)
     found = effects(at, corrections)
     offered = mends(at, corrections)
     return tuple(
-        _worded(question, repair, effect, offered=offered)
-        for repair, effect in zip(repairs, found, strict=True)
+        _worded(question, repair, effect, offered=offered, holds=correction.holds)
+        for repair, effect, correction in zip(repairs, found, corrections, strict=True)
     )
 
 
@@ -47,13 +53,17 @@ def cancelling_constants(
     question: Question, repairs: Sequence[Repair]
 ) -> tuple[WrongConstant, ...]:
     """Constants that contradict the board together without any effect."""
-    return tuple(_worded(question, repair, _NO_EFFECT, offered=False) for repair in repairs)
+    return tuple(
+        _worded(question, repair, _NO_EFFECT, offered=False, holds=True) for repair in repairs
+    )
 
 
-def _correction(question: Question, repair: Repair) -> Correction:
+def _correction(question: Question, at: Bench, repair: Repair) -> Correction:
     """What mends the cause: a constant with the value that it is then written as."""
     if repair.knob is not None:
-        return Correction(key=repair.knob.key, value=_written(repair.knob, repair.exact))
+        value = _written(repair.knob, repair.exact)
+        coarse = is_coarse(value, repair.exact, at.finest)
+        return Correction(key=repair.knob.key, value=value, holds=not coarse)
     if repair.rule == "justification":
         return Correction(shift=question.shift)
     return Correction(factor=repair.exact)
@@ -66,44 +76,113 @@ def _written(knob: Knob, exact: Fraction) -> Fraction:
     return exact if value is None else value
 
 
-def _worded(question: Question, repair: Repair, effect: Effect, *, offered: bool) -> WrongConstant:
+def _worded(
+    question: Question, repair: Repair, effect: Effect, *, offered: bool, holds: bool
+) -> WrongConstant:
     if repair.knob is None:
         return _without_constant(question, repair, effect)
     knob = repair.knob
     leaf, text = _edit(question, knob, repair.exact)
-    unit = _unit(repair)
-    expected = spelled(knob.leaf.text, repair.exact) or shown(repair.exact)
+    exact = shown(repair.exact)
+    expected = (spelled(knob.leaf.text, repair.exact) or exact) if holds else exact
+    role = repair.meaning.term.name if repair.meaning else _BARE_ROLES[repair.rule]
+    new = _Said(text=plain(expected), meaning=repair.meaning, rule=repair.rule)
+    prefixed = repair.rule == "unit-prefix"
+    old = replace(new, text=plain(knob.leaf.text), meaning=None if prefixed else repair.meaning)
     return WrongConstant(
         rule=repair.rule,
-        role=repair.meaning.term.name if repair.meaning else _BARE_ROLES[repair.rule],
+        role=role,
         text=_named(knob),
         place=leaf.place,
         leaf=leaf,
-        found=_with_unit(plain(knob.leaf.text), "" if repair.rule == "unit-prefix" else unit),
-        expected=_with_unit(plain(expected), unit),
+        found=old.shown,
+        expected=new.shown,
         value=_written(knob, repair.exact),
-        replacement=text if offered else None,
+        replacement=text if offered and holds else None,
         level=effect.level,
         effect=effect.points,
-        remark=_remark(question, repair),
+        remark=_remark(question, repair) if holds else "",
+        held=_held(question.conversion.expression, knob, old),
+        wanted=f"{_wanted(role, new)}{'' if holds else ', which no whole number can hold'}",
     )
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Said:
+    """A number as the code writes it, and what it means where that is another number."""
+
+    text: str
+    meaning: Meaning | None
+    rule: str
+
+    @property
+    def stands_for(self) -> str:
+        """The number without the scaling that no everyday unit says, in the board file's unit."""
+        value = exact_value(self.text)
+        if value is None or self.meaning is None or self.meaning.is_everyday:
+            return ""
+        return self.meaning.in_words(value)
+
+    @property
+    def shown(self) -> str:
+        """As the code writes it, then its unit or what it stands for."""
+        if self.stands_for:
+            return f"{self.text} ({self.stands_for})"
+        if self.meaning is not None:
+            return f"{self.text} {self.meaning.unit}".strip()
+        return f"{self.text} bits" if self.rule == "resolution" else self.text
+
+
+def _names(knob: Knob) -> list[str]:
+    return [name for name in (knob.leaf.name, *knob.leaf.names) if name]
+
+
 def _named(knob: Knob) -> str:
-    names = [name for name in (knob.leaf.name, *knob.leaf.names) if name]
+    names = _names(knob)
     if knob.inside and names:
         return f"the count {shown(knob.value)} made from {names[0]}"
-    return names[0] if names else plain(knob.leaf.text)
+    return names[0] if names else f"the constant {plain(knob.leaf.text)}"
 
 
-def _with_unit(text: str, unit: str) -> str:
-    return f"{text} {unit}".strip()
+def _held(expression: Expression, knob: Knob, said: _Said) -> str:
+    """What the code has: a name and its value, or what is done with a nameless constant."""
+    names = _names(knob)
+    if knob.inside and names:
+        return f"{names[0]} makes {shown(knob.value)}"
+    if names:
+        return f"{names[0]} is {said.shown}"
+    operator = _operator(expression, knob.key)
+    if operator in _SHIFTS:
+        return f"the code shifts by {said.shown}"
+    return f"the code {_VERBS.get(operator, 'has')} {said.shown}"
 
 
-def _unit(repair: Repair) -> str:
-    if repair.meaning is not None:
-        return repair.meaning.unit
-    return "bits" if repair.rule == "resolution" else ""
+def _operator(expression: Expression, key: Key) -> str:
+    """The operator whose operand the constant is; the right one goes before the left one."""
+    found = ""
+    for node in walk(expression):
+        if not isinstance(node, Binary):
+            continue
+        if _is(node.right, key):
+            return node.operator
+        if _is(node.left, key) and node.operator in "*+":
+            found = found or node.operator
+    return found
+
+
+def _is(node: Expression, key: Key) -> bool:
+    inner = bare(node)
+    return isinstance(inner, Literal) and inner.leaf is not None and leaf_key(inner.leaf) == key
+
+
+def _wanted(role: str, said: _Said) -> str:
+    """What the board has in the constant's place."""
+    inverted = role.removeprefix("inverse of ").removeprefix("inverse ")
+    if inverted != role:
+        return f"the board's {inverted} needs {said.shown}"
+    if said.stands_for:
+        return f"the board's {role} is {said.stands_for}: {said.text} here"
+    return f"the board's {role} is {said.shown}"
 
 
 def _remark(question: Question, repair: Repair) -> str:
@@ -147,10 +226,12 @@ def _without_constant(question: Question, repair: Repair, effect: Effect) -> Wro
             expected=f"a code {question.shift} bits up in its word",
         )
     scale = question.scale if question.scale is not None else Fraction(1)
+    stands_for = f"{shown(scale * repair.exact)} {question.unit}".strip()
     return replace(
         shared,
-        found=f"one count stands for {_with_unit(shown(scale * repair.exact), question.unit)}",
-        expected=_with_unit(shown(scale), question.unit),
+        held=f"one count of the result stands for {stands_for}",
+        found=f"one count stands for {stands_for}",
+        expected=f"{shown(scale)} {question.unit}".strip(),
     )
 
 

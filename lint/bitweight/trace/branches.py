@@ -50,7 +50,7 @@ class Branches(Calls):
 
     def branch(self, node: If) -> Flow:
         """`if` and `else`."""
-        condition = self.number(node.condition)
+        condition = self.decision(node.condition)
         known = self.context.constant(condition)
         if known is not None:
             return self._arm(node.then if known else node.other)

@@ -18,9 +18,9 @@ class Step:
 class Conversion:
     """One way from a channel's reading to one result.
 
-    `result` names the variable, member, function or macro that holds it; `declared` is where that is
-    declared with its type, if it is an object; `assumed` says what had to be assumed, one sentence
-    each.
+    `result` names the variable, member, function or macro that holds it; `declared` is where that
+    is declared with its type, if it is an object; `assumed` says what had to be assumed, one
+    sentence each.
     """
 
     channel: str

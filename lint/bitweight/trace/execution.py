@@ -48,6 +48,7 @@ class Execution(Loops):
             case Block():
                 return self.scoped(node.items)
             case Declare():
+                self.unit.learn(node.specifiers)
                 for one in node.declarators:
                     self._declare(one)
                 return Flow(next=self.state)

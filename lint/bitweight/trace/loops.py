@@ -64,7 +64,7 @@ class Loops(Branches):
         test = not node.first
         for turn in range(turns):
             if test and node.condition is not None:
-                known = self.fixed(self.number(node.condition))
+                known = self.fixed(self.decision(node.condition))
                 if known is None:
                     return None
                 if not known:
@@ -142,13 +142,13 @@ class Loops(Branches):
     def _turn(self, node: Loop) -> Flow:
         """One turn: test, body, step."""
         if node.condition is not None and not node.first:
-            self.number(node.condition)
+            self.decision(node.condition)
         flow = self.left(self.flow(node.body), node, "continue")
         if flow.next is None:
             return flow
         self.state = flow.next
         if node.first and node.condition is not None:
-            self.number(node.condition)
+            self.decision(node.condition)
         if node.step is not None:
             self.value(node.step)
         return Flow(next=self.state, exits=flow.exits)

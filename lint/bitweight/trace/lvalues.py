@@ -58,11 +58,16 @@ class Lvalues(Names):
         return Location(Root("local", name, f"#{self.frame_count}"))
 
     def _element(self, node: Index) -> tuple[Location, ObjectType] | None:
-        step = self.context.constant(self.number(node.index))
-        base = self.pointer(node.base)
+        step = self.value(node.index)
+        value = self.value(node.base)
+        if isinstance(step, Address) and is_number(value):
+            # C11 6.5.2.1p2: a[1] and 1[a] are the same.
+            step, value = value, step
+        base = self.pointed(value, node.base)
         if base is None:
             return None
-        return shifted(base, int(step) if isinstance(step, int) else None)
+        by = self.fixed(step)
+        return shifted(base, by if isinstance(by, int) else None)
 
     def pointee(self, node: Expr) -> tuple[Location, ObjectType] | None:
         """What `*node` designates."""

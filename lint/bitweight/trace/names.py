@@ -62,7 +62,7 @@ class Names(Joins):
         return None
 
     def _enumerator(self, name: str) -> Enumeration | None:
-        own = self.unit.enumerators.get(name)
+        own = self.unit.enumerator(name)
         if own is not None:
             return own
         for unit in self.context.program.units.values():

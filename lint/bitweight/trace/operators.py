@@ -2,11 +2,12 @@
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression, Literal, Purpose
-from bitweight.firmware.objects import Arithmetic, Location, ObjectType, Pointer, Root
+from bitweight.firmware.objects import ANYWHERE, Arithmetic, Location, ObjectType, Pointer, Root
 from bitweight.firmware.syntax import (
     Assign,
     Cast,
     Conditional,
+    Expr,
     Increment,
     Name,
     Node,
@@ -17,6 +18,9 @@ from bitweight.firmware.syntax import (
 from bitweight.trace.lvalues import shifted
 from bitweight.trace.matching import Matching
 from bitweight.trace.memory import Address, Routine, Value, is_number
+
+_OWN = frozenset({"local", "object"})
+"""Objects of which two are never the same under different names."""
 
 
 class Operators(Matching):
@@ -31,9 +35,21 @@ class Operators(Matching):
                 return self._address_of(node)
             case "*":
                 return self._indirection(node)
+            case "!":
+                operand = self.decision(node.operand)
+                return building.unary(self.model, "!", operand, self.spelled(node.start))
             case _:
                 operand = self.number(node.operand)
                 return building.unary(self.model, node.operator, operand, self.spelled(node.start))
+
+    def decision(self, node: Expr) -> Expression:
+        """The value of a condition; a pointer to something known is not null."""
+        return self._truth(self.value(node), node)
+
+    def _truth(self, value: Value, node: Expr) -> Expression:
+        if isinstance(value, Address | Routine):
+            return Literal(value=1, type=self.model.int_)
+        return self.as_number(value, node)
 
     def _address_of(self, node: Operation) -> Value:
         found = self.lvalue(node.operand)
@@ -91,7 +107,7 @@ class Operators(Matching):
         if node.operator == ",":
             return self.value(node.right)
         if node.operator in ("&&", "||"):
-            return self._logical(node, self.as_number(left, node.left))
+            return self._logical(node, self._truth(left, node.left))
         return self._computed(node, left, self.value(node.right))
 
     def _computed(self, node: Pair, left: Value, right: Value) -> Value:
@@ -110,7 +126,7 @@ class Operators(Matching):
         if known is not None and bool(known) == (node.operator == "||"):
             return Literal(value=int(bool(known)), type=self.model.int_)
         before = self.state.copy()
-        second = self.number(node.right)
+        second = self.decision(node.right)
         if known is None and before.values != self.state.values:
             condition = first
             if node.operator == "||":
@@ -123,7 +139,23 @@ class Operators(Matching):
             return self._moved(left, right, 1 if node.operator == "+" else -1)
         if isinstance(right, Address) and is_number(left) and node.operator == "+":
             return self._moved(right, left, 1)
-        return self.unknown("pointers compared or subtracted", node)
+        same = self._same(left, right) if node.operator in ("==", "!=") else None
+        if same is None:
+            return self.unknown("pointers compared or subtracted", node)
+        return Literal(value=int(same == (node.operator == "==")), type=self.model.int_)
+
+    def _same(self, left: Value, right: Value) -> bool | None:
+        """Whether two pointers point to the same object; None where that is not known."""
+        if is_number(left) or is_number(right):
+            known = [self.fixed(one) for one in (left, right)]
+            return False if 0 in known else None
+        if not isinstance(left, Address) or not isinstance(right, Address):
+            return None
+        if ANYWHERE in (*left.target.path, *right.target.path):
+            return None
+        if left.target == right.target:
+            return True
+        return False if {left.target.root.kind, right.target.root.kind} <= _OWN else None
 
     def _moved(self, base: Address, by: Expression, sign: int) -> Address:
         step = self.context.constant(by)
@@ -154,7 +186,7 @@ class Operators(Matching):
 
     def conditional(self, node: Conditional) -> Value:
         """`condition ? then : other`, and `condition ?: other`."""
-        condition = self.number(node.condition)
+        condition = self.decision(node.condition)
         known = self.context.constant(condition)
         if known is not None:
             if not known:

@@ -36,6 +36,9 @@ from bitweight.trace.writings import Writings
 _MOST_WAYS = 12
 _NONE_YET = 1 << 30
 
+_KEPT = "keeps its earlier value there"
+_FED_BACK = "is computed from its own earlier value (a filter), which is not followed"
+
 Ways = tuple[Expression, ...]
 """Closed expressions for one value, one for each way that is decided at run time."""
 
@@ -72,6 +75,21 @@ class Resolver:
         self._kept.append((root, memo))
         return memo[id(root)]
 
+    def written_to(self, location: Location | None, value: Expression) -> Ways:
+        """The closed expressions of a value that is written to an object (None: to none).
+
+        Where it is the object's own value, the object keeps what it had.
+        """
+        if location is None:
+            return self.alternatives(value)
+        self._stack.append(location)
+        try:
+            return self.alternatives(value)
+        finally:
+            self._stack.pop()
+            if self._lowest >= len(self._stack):
+                self._lowest = _NONE_YET
+
     # --- one node -----------------------------------------------------------------------------
 
     def _ways(self, node: Expression, memo: Mapping[int, Ways]) -> Ways:
@@ -93,9 +111,7 @@ class Resolver:
     def _rebuilt(self, node: Expression, parts: Ways) -> Expression:
         for part in parts:
             if isinstance(part, Unknown):
-                made = Unknown(reason=part.reason, type=node.type, place=part.place)
-                self._taint(made, parts)
-                return made
+                return self._still_unknown(node, part, parts)
         match node:
             case Default() | Convert() | Unary():
                 return replace(node, operand=parts[0])
@@ -103,6 +119,20 @@ class Resolver:
                 return replace(node, left=parts[0], right=parts[1])
             case _:
                 return node
+
+    def _still_unknown(self, node: Expression, part: Unknown, parts: Ways) -> Unknown:
+        """What is made from an unknown; an object's own earlier value may be converted."""
+        kept = id(part) in self._earlier
+        if kept and isinstance(node, Convert | Default):
+            made = replace(part, type=node.type)
+            self._earlier.add(id(made))
+        elif kept:
+            reason = part.reason.replace(_KEPT, _FED_BACK)
+            made = Unknown(reason=reason, type=node.type, place=part.place)
+        else:
+            made = Unknown(reason=part.reason, type=node.type, place=part.place)
+        self._taint(made, parts)
+        return made
 
     def _taint(self, made: Unknown, parts: Iterable[Expression]) -> None:
         """Remember the channels that an unknown was made from."""
@@ -181,11 +211,7 @@ class Resolver:
             return self._objects[location]
         if location in self._stack:
             self._lowest = min(self._lowest, self._stack.index(location))
-            reason = (
-                f"{shown(location)} is computed from its own earlier value (a filter), "
-                "which is not followed"
-            )
-            return (self._own_earlier(reason, node),)
+            return (self._own_earlier(f"{shown(location)} {_KEPT}", node),)
         if len(self._stack) > self.context.limits.call_depth:
             return (self._unknown("objects that are computed from each other", node),)
         self._stack.append(location)

@@ -104,7 +104,7 @@ class Storage(Shapes):
     def initial(self, location: Location, type_: ObjectType, place: Place) -> Value:
         """The value an object has before this run writes it."""
         if location.root.kind == "local":
-            return self.context.unknown(f"{location.root.name} is read before it is set", place)
+            return self.context.unknown(f"{shown(location)} is read before it is set", place)
         if location.root.kind == "object":
             fixed = self.never_written(location, type_, place)
             if fixed is not None:

@@ -64,7 +64,9 @@ class Tracer:
             # The callers are followed with what they give.
             return ()
         return tuple(
-            way for way in self.resolver.alternatives(end.value) if self.resolver.measures(way)
+            way
+            for way in self.resolver.written_to(end.location, end.value)
+            if self.resolver.measures(way)
         )
 
     def _waits(self, end: End, run: Run) -> bool:
@@ -81,7 +83,7 @@ class Tracer:
         for end in ends:
             ways = self._ways(end)
             own = [way for way in ways if aim.channel in self.resolver.measures(way)]
-            if len(own) > 1 and not any(map(_unknown_in, own)):
+            if len(own) > 1 and not any(isinstance(way, Unknown) for way in own):
                 reason = _several(end, own)
                 return Trace(channel=aim.channel, reason=reason, place=end.place)
             carrying.extend((end, way) for way in own)
@@ -89,11 +91,11 @@ class Tracer:
                 foreign.extend((end, way) for way in ways)
         last = carrying if aim.values else self._last(carrying)
         for end, way in last:
-            unknown = _unknown_in(way)
-            if unknown is not None:
-                # A way that is not understood may be the wrong one.
-                place = unknown.place or end.place
-                return Trace(channel=aim.channel, reason=unknown.reason, place=place)
+            if isinstance(way, Unknown):
+                # A way that is not understood may be the wrong one. An unknown that only some
+                # codes reach is left to the judge.
+                place = way.place or end.place
+                return Trace(channel=aim.channel, reason=way.reason, place=place)
         if not last and aim.values:
             last = foreign
         if not last:
@@ -165,11 +167,11 @@ def _several(end: End, ways: list[Expression]) -> str:
     return f"{end.result} is computed in {len(ways)} ways, decided at run time: {texts}"
 
 
-def _unknown_in(way: Expression) -> Unknown | None:
-    """What is not followed in an expression, if there is something."""
-    return next((node for node in walk(way) if isinstance(node, Unknown)), None)
-
-
 def _is_bare(way: Expression) -> bool:
     """Whether an expression only copies the code."""
     return all(isinstance(node, Code | Convert) for node in walk(way))
+
+
+def _unknown_in(way: Expression) -> Unknown | None:
+    """The first thing in an expression that is not followed."""
+    return next((node for node in walk(way) if isinstance(node, Unknown)), None)
