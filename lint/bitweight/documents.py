@@ -33,7 +33,16 @@ KeyPath = tuple[str | int, ...]
 """Names of keys and positions in arrays, from the root."""
 
 ScalarValue = str | int | bool | Decimal | date | time
-"""A value without parts; numbers with a point are exact decimals."""
+"""A value without parts; numbers with a point are `Exact` decimals."""
+
+_MOST_DIGITS = 400
+"""Digits of a whole number that are read; every range of the board file ends far below."""
+
+
+class Exact(Decimal):
+    """A number with a point or exponent, and how it is written."""
+
+    written: str
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -87,13 +96,13 @@ def read_document(path: Path, *, shown: str) -> Table:
 
 def parse_document(text: str, *, file: str) -> Table:
     """The tree of a TOML text. Raises `BoardError` with one mistake when it is not TOML."""
-    plain = text.removeprefix("\ufeff").replace("\r\n", "\n")
+    plain = _with_short_numbers(text.removeprefix("\ufeff").replace("\r\n", "\n"))
     flat = _on_one_line(plain, file)
     places = _Places(flat, plain, file)
     try:
         data = tomli.loads(plain, parse_float=_exact)
     except tomli.TOMLDecodeError as error:
-        raise BoardError((_not_toml(error, places),)) from None
+        raise BoardError((_not_toml(error, places, plain),)) from None
     except (ValueError, RecursionError):
         raise _mistake(Place(file), "a number or a nesting here is too large to be read") from None
     keys, values = places.found()
@@ -145,10 +154,34 @@ def _mistake(place: Place, message: str) -> BoardError:
 
 def _exact(text: str) -> Decimal:
     """A number with a point or exponent, exactly; kept as a decimal, so 1e999999 costs nothing."""
-    return Decimal(text)
+    number = Exact(text.replace("_", ""))
+    number.written = text
+    return number
+
+
+def _with_short_numbers(text: str) -> str:
+    """The text with endless whole numbers cut, every other character kept where it is.
+
+    Python refuses to read them; what is left is still larger than any key accepts, so that the
+    mistake is reported at its key and the others with it.
+    """
+    if not _ENDLESS.search(text):
+        return text
+    return "".join(
+        _ENDLESS.sub(_cut, match.group()) if match.lastgroup == "other" else match.group()
+        for match in _PIECE.finditer(text)
+    )
+
+
+def _cut(match: re.Match[str]) -> str:
+    digits = match.group()
+    kept = digits[:_MOST_DIGITS].rstrip("_")
+    return kept.ljust(len(digits))
 
 
 # What follows finds the places.
+
+_ENDLESS = re.compile(rf"(?<![\w.])[1-9][0-9_]{{{_MOST_DIGITS},}}(?![\w.])")
 
 _PIECE = re.compile(
     r"""(?P<comment>\#[^\n]*)
@@ -385,7 +418,10 @@ _EXPECTED = {
 _TWICE = re.compile(r"overwrite|twice|[Dd]uplicate|immutable|already defined")
 
 
-def _not_toml(error: tomli.TOMLDecodeError, places: _Places) -> Mistake:
+_DAY = re.compile(r"\d{4}-\d{2}-\d{2}")
+
+
+def _not_toml(error: tomli.TOMLDecodeError, places: _Places, text: str) -> Mistake:
     """The reader's complaint in plain words, at the place it concerns."""
     if _TWICE.search(error.msg):
         twice = places.duplicate()
@@ -394,5 +430,17 @@ def _not_toml(error: tomli.TOMLDecodeError, places: _Places) -> Mistake:
             return Mistake(place=twice[0], message=message)
         place = places.key_before(places.at(error.lineno, error.colno))
         return Mistake(place=place, message="already given above as something else")
-    text = _EXPECTED.get(error.msg, error.msg[:1].lower() + error.msg[1:])
-    return Mistake(place=places.at(error.lineno, error.colno), message=f"not TOML: {text}")
+    place = places.at(error.lineno, error.colno)
+    return Mistake(place=place, message=f"not TOML: {_complaint(error, text)}")
+
+
+def _complaint(error: tomli.TOMLDecodeError, text: str) -> str:
+    """What the reader expected; two complaints are told by the text where it stopped."""
+    rest = text[error.pos :]
+    day = _DAY.match(rest)
+    if day is not None and "date" in error.msg:
+        return f"there is no day {day.group()}"
+    in_name = "key" in error.msg or "declaration" in error.msg
+    if in_name and rest[:1].isalpha() and not rest[:1].isascii():
+        return "put a name with other letters than a to z in quotes"
+    return _EXPECTED.get(error.msg, error.msg[:1].lower() + error.msg[1:])

@@ -27,6 +27,7 @@ _MARK = "RLKkMGTpnuµ\u03bcmF"
 _CODE_LEADING = re.compile(r"()([RKMpnuµ\u03bc])(\d{1,9})([A-Z]?)")
 _CODE_MIDDLE = re.compile(rf"(\d{{1,9}})([{_MARK}])(\d{{1,9}})([A-Z]?)")
 _CODE_TRAILING = re.compile(r"(\d{1,9}(?:\.\d{1,9})?)([RKkMGTpnuµ\u03bcF])()([A-Z]?)")
+_CODE_WITH_UNIT = re.compile(r"(\S+)\s+(\S+)")
 _CODE_BEFORE_UNIT = re.compile(r"\d{1,9}(?:\.\d{1,9})?(?:K|[pnuµ\u03bc]K)")
 """Where K ends a code ("10K", "100nK"), although "K" and "nK" are units too."""
 
@@ -131,7 +132,7 @@ def parse_quantity(text: str) -> Quantity:
     designator, rest = _without_designator(stripped)
     value_text, tolerance_text = _without_tolerance(rest)
     try:
-        plain = _code(value_text) or _numbered(value_text)
+        plain = _code(value_text) or _code_with_unit(value_text) or _numbered(value_text)
     except UnitError:
         plain = None
     if plain is None:
@@ -210,6 +211,15 @@ def _code(text: str) -> Quantity | None:
     value = Fraction(f"{whole or '0'}.{decimals or '0'}" if "." not in whole else whole) * scale
     tolerance = _letter_tolerance(letter) if letter else None
     return Quantity(value=value, unit=parse_unit(unit), tolerance=tolerance, text=text)
+
+
+def _code_with_unit(text: str) -> Quantity | None:
+    """A code that names its unit again after a space: "10k Ω", "100n F"."""
+    match = _CODE_WITH_UNIT.fullmatch(text)
+    quantity = _code(match[1]) if match is not None else None
+    if match is None or quantity is None or known(match[2]) != quantity.unit:
+        return None
+    return replace(quantity, text=text)
 
 
 def _reads_as_unit(text: str) -> bool:

@@ -116,7 +116,8 @@ _WHOLE = (
 )
 _KNOWN = {unit.text: unit for unit in (*_PREFIXED, *_WHOLE)}
 _PREFIXABLE = frozenset(unit.text for unit in _PREFIXED)
-_SYNONYMS = {"Ω": "ohm", "\u2126": "ohm", "Ohm": "ohm", "°C": "degC", "cycle": "cycles"}
+_OHM_WORDS = ("Ω", "\u2126", "Ohm", "OHM", "ohms", "Ohms", "OHMS")
+_SYNONYMS = {**dict.fromkeys(_OHM_WORDS, "ohm"), "°C": "degC", "cycle": "cycles"}
 
 PREFIXES = {
     "f": Fraction(1, 10**15),

@@ -46,8 +46,8 @@ def _message(case: Case, judgement: Judgement, loss: Loss, largest: str) -> str:
     code = int(judgement.codes[loss.index])
     if loss.at_end:
         return (
-            f"{judgement.conversion.result} is cut to whole counts: up to {largest} lost, at code "
-            f"{code}, leaves the allowed error by itself"
+            f"{_what(loss)} cuts {judgement.conversion.result} to whole counts: up to {largest} "
+            f"lost, at code {code}, leaves the allowed error by itself"
         )
     lsb = quantity(judgement.lsb, case.channel)
     return f"{_what(loss)} loses up to {largest}, at code {code}, where one LSB is {lsb}"

@@ -106,5 +106,6 @@ RULE = ChannelRule(
     "takes it out of the allowed error",
     source="C11 6.3.1.3 (integer conversions), 6.3.1.4 (from floating); clamps: common practice",
     check=check,
-    levels="error: the reading is wrong for codes in range",
+    levels="error: the reading is wrong for codes in range; what a store or a clamp does outside "
+    "the range is not reported",
 )

@@ -117,7 +117,8 @@ def _expected(operation: WrongOperation) -> str:
 
 RULE = ChannelRule(
     name="overflow",
-    summary="A value on the way from the code to the result does not fit its C type for some code.",
+    summary="A value on the way from the code to the result does not fit its C type for some code, "
+    "a divisor becomes 0, or a shift is as wide as its type or wider.",
     formula="every operator is computed for every code in the target's types and in exact integers",
     source="C11 6.5p5 (signed overflow), 6.5.5p5 (division by 0), 6.5.7p3 (shift), 6.3.1.4 (from "
     "floating), 6.2.5p9 (unsigned wrap)",

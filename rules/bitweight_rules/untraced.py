@@ -59,4 +59,7 @@ RULE = ChannelRule(
     source="common practice: what was not seen is never silently fine",
     check=check,
     levels="warning",
+    mend="compare the spelling of reading (and value) with the code; limit it by @ FUNCTION or "
+    "@ FILE where the same text means several things; select the build with -D and define; give "
+    "run-time data a value in [constants]",
 )

@@ -1,11 +1,13 @@
 """`bitweight why`."""
 
+from dataclasses import replace
+
 import pytest
 
 from bitweight.command import why
 from bitweight.command.options import WhyOptions
 from bitweight.errors import UsageError
-from bitweight.judge.rules import BY_EFFECT, ChannelRule, Rule, TreeRule
+from bitweight.judge.rules import BY_EFFECT, ChannelRule, Rule, TreeRule, load_rules
 
 FULL_SCALE = ChannelRule(
     name="full-scale",
@@ -35,7 +37,7 @@ def test_one_rule(capsys: pytest.CaptureFixture[str]) -> None:
     assert why.run_why(WhyOptions(rule="full-scale")) == 0
     text = capsys.readouterr().out
     labels = [line.split()[0] for line in text.splitlines() if line[0] != " "]
-    assert labels == ["rule", "checks", "formula", "level", "source"]
+    assert labels == ["rule", "checks", "formula", "level", "source", "accept"]
     assert "V = code * reference / full_scale_count" in text
     assert f"level {BY_EFFECT}; a channel with a hazard" in " ".join(text.split())
 
@@ -60,8 +62,17 @@ def test_a_far_name() -> None:
         why.run_why(WhyOptions(rule="zzz"))
 
 
-def test_no_rules(monkeypatch: pytest.MonkeyPatch) -> None:
-    """An installation without rules is not taken for one in which nothing is checked."""
-    monkeypatch.setattr(why, "load_rules", tuple)
-    with pytest.raises(UsageError, match="no rules are installed"):
-        why.run_why(WhyOptions(rule=None))
+def test_what_to_do_stands_where_a_rule_says_it() -> None:
+    """A rule with a remedy tells it, and a level that cannot be raised is told without hazard."""
+    rule = replace(FULL_SCALE, levels="error", mend="compare the spelling")
+    text = why.explanation(rule)
+    assert "mend      compare the spelling\n" in text
+    assert "hazard" not in text
+    assert "/* deviation(full-scale): reason */" in text
+
+
+def test_untraced_says_what_to_do() -> None:
+    """A channel that was not found is a matter of the board file, and `why` says of what in it."""
+    (rule,) = (one for one in load_rules() if one.name == "untraced")
+    text = " ".join(why.explanation(rule).split())
+    assert all(word in text for word in ("reading", "@ FILE", "-D", "[constants]"))

@@ -16,9 +16,7 @@ def test_a_finding_carries_place_effect_edit_and_way() -> None:
     c = C()
     value = c.op(c.op(c.code(), "*", c.number("4900UL", "VREF_MV")), "/", "1024")
     (found,) = constant_findings(case(value), "reference-value", say)
-    assert found.message == (
-        "VREF_MV is 4900 mV; by it alone the reading is 100 mV low at code 1023"
-    )
+    assert found.message == ("VREF_MV is 4900 mV; this alone: up to 100 mV low (code 1023)")
     assert found.level is Level.ERROR
     assert [one.message for one in found.related] == ["used here", "the reading"]
     assert found.replacement is not None

@@ -59,3 +59,31 @@ def test_a_factor_on_the_result_is_a_correction_too() -> None:
     asked = question(Board(), CODE, Fraction(1))
     at = bench(asked, CODE.node, asked.lines[0], Fraction(1))
     assert mends(at, (REFERENCE, COUNT, Correction(factor=Fraction(1, 1000))))
+
+
+HIDDEN = raw() / const("1024") * const("20", "VREF_MV")
+HIDDEN_KEYS = {knob.leaf.text: knob.key for knob in knobs(HIDDEN.node)}
+
+
+@pytest.mark.parametrize(
+    ("value", "level"), [(5000, Level.ERROR), (25, Level.NOTE)], ids=["far off", "close"]
+)
+def test_truncation_hides_no_wrong_constant(value: int, level: Level) -> None:
+    """Where early division makes every result 0, what the constant means decides."""
+    asked = question(Board(), HIDDEN)
+    at = bench(asked, HIDDEN.node, asked.lines[0], Fraction(1, 1000))
+    correction = Correction(key=HIDDEN_KEYS["20"], value=Fraction(value))
+    assert [one.level for one in effects(at, (correction,))] == [level]
+
+
+def test_a_value_that_the_type_cannot_hold_has_no_points() -> None:
+    """A correction that cannot be written is judged by how the channel reads now."""
+    unwritten = Correction(key=BY_TEXT["4900UL"], value=Fraction(5000), holds=False)
+    levels = {allowed: effects(on_bench(allowed), (unwritten,))[0] for allowed in (0.01, 1.0)}
+    assert [one.level for one in levels.values()] == [Level.ERROR, Level.WARNING]
+    assert all(one.points == () for one in levels.values())
+
+
+def test_the_finest_share_is_what_the_allowed_error_leaves() -> None:
+    """5 V with 50 mV allowed: a factor matters from about one percent on."""
+    assert float(on_bench(0.05).finest) == pytest.approx(0.01, rel=0.01)

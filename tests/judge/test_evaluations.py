@@ -22,6 +22,13 @@ def test_twos_complement_comes_three_ways() -> None:
     assert _words(12, [-1, 1]) == [[0xFFFF, 1], [0xFFF, 1], [-1, 1]]
 
 
+def test_bare_words_come_without_a_negative_number() -> None:
+    """Where the firmware sees the bare word no negative number arrives."""
+    converter = facts.converter(12, coding=Coding.TWOS_COMPLEMENT, word_bits=12)
+    (words,) = presented(converter, np.array([-1, 1]), Fraction(1), bare=True)
+    assert words.tolist() == [0xFFF, 1]
+
+
 def test_sum_of_signed_codes() -> None:
     """A sum of samples multiplies the number, not its bits."""
     assert _words(12, [-3, 5], gain=8) == [[-24, 40]]

@@ -7,6 +7,7 @@ import pytest
 
 import facts
 from bitweight.arithmetic.expressions import Expression, Unknown
+from bitweight.arithmetic.values import FaultKind
 from bitweight.board.hardware import Channel
 from bitweight.judge.cases import Judgement
 from facts import C
@@ -168,3 +169,14 @@ def test_unknown_outside_range_is_left_out() -> None:
     judgement = _judged(choice, facts.channel(ends=("0 V", "4 V")))
     assert np.isnan(judgement.value[1000])
     assert judgement.worst_ratio < 1
+
+
+@pytest.mark.parametrize("shift", ["40", "4000000000u"])
+def test_an_oversized_shift_is_no_curve(shift: str) -> None:
+    """A constant that no type has is told at its operator, and no curve is made of it."""
+    c = C()
+    code = c.op(c.op(c.code(), "*", "5000UL"), "/", c.op(c.number("1"), "<<", c.number(shift)))
+    judgement = facts.case(code).judgement
+    assert judgement is not None
+    assert [one.kind for one in judgement.operations][:1] == [FaultKind.SHIFT]
+    assert judgement.explanation.residual != "curve"

@@ -65,6 +65,12 @@ def test_what_is_no_rule(
         _load(monkeypatch, *names)
 
 
+def test_no_rule_at_all_is_an_error(monkeypatch: pytest.MonkeyPatch) -> None:
+    """An installation without rules is broken: nothing may be verified by it."""
+    with pytest.raises(RuleError, match="no rules are installed"):
+        _load(monkeypatch)
+
+
 def test_our_own_rules_are_registered() -> None:
     """The installed rules load, and each tells what it checks, how, and from where."""
     loaded = load_rules()

@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 
 from bitweight.arithmetic.literals import exact_value
 from bitweight.arithmetic.types import MODELS
-from bitweight.judge.spellings import plain, replacement, shown, spelled
+from bitweight.judge.spellings import is_coarse, plain, replacement, shown, spelled
 
 
 @pytest.mark.parametrize(
@@ -67,3 +67,17 @@ def test_people_see_no_suffix() -> None:
     assert [plain(text) for text in ("1023UL", "0x3FFu", "5.0f")] == ["1023", "0x3FF", "5.0"]
     assert shown(Fraction(65536)) == "65536"
     assert shown(Fraction(1, 3)) == "0.333333"
+
+
+@pytest.mark.parametrize(
+    ("written", "exact", "coarse"),
+    [
+        (0, Fraction(1, 5), True),
+        (3, Fraction(5, 2), True),
+        (41, Fraction(165, 4), False),
+        (11, Fraction(11), False),
+    ],
+)
+def test_a_coarse_value_says_something_else(written: int, exact: Fraction, coarse: bool) -> None:
+    """A rounding matters where it leaves nothing, or more than the share that is allowed."""
+    assert is_coarse(Fraction(written), exact, Fraction(1, 100)) is coarse

@@ -6,7 +6,17 @@ import pytest
 
 import facts
 from bitweight.arithmetic.expressions import Literal, Unknown
-from bitweight.judge.statements import edit, first_leaf, listed, place_of, quantity, uses, volts
+from bitweight.judge.statements import (
+    edit,
+    first_leaf,
+    listed,
+    off,
+    place_of,
+    quantity,
+    settled,
+    uses,
+    volts,
+)
 from facts import C, at
 
 
@@ -21,6 +31,26 @@ def test_quantities() -> None:
     assert quantity(0.0049, facts.channel()) == "4.9 mV"
     assert quantity(Fraction(25, 2), facts.channel(unit="degC", ends=None)) == "12.5 degC"
     assert volts(Fraction(33, 10)) == "3.3 V"
+
+
+@pytest.mark.parametrize(
+    ("error", "text"),
+    [
+        (-1.951, "reads 1.951 V low"),
+        (0.072, "reads 72 mV high"),
+        (-2.78e-17, "reads right"),
+        (float("nan"), "has no value"),
+    ],
+)
+def test_an_error_is_told_by_what_it_does_to_the_reading(error: float, text: str) -> None:
+    """High or low, never by a sign, and what rounding leaves of nothing is nothing."""
+    assert off(error, 0.005, facts.channel()) == text
+
+
+@pytest.mark.parametrize(("value", "shown"), [(1e-15, 0.0), (-4e-8, 0.0), (6e-8, 6e-8)])
+def test_what_is_far_below_an_lsb_is_nothing(value: float, shown: float) -> None:
+    """A hundred-thousandth of an LSB is the rounding of the arithmetic."""
+    assert settled(value, 0.005) == shown
 
 
 def test_constants() -> None:

@@ -320,11 +320,6 @@ def test_bare_bits_with_their_sign_extended_are_verified(tmp_path: Path) -> None
     assert (outcome.findings, outcome.statuses) == ((), {"x": Status.VERIFIED})
 
 
-@pytest.mark.xfail(
-    reason="judge.evaluations.presented offers negative words though the reading is an unsigned "
-    "type and word_bits says that nothing stands above the code",
-    strict=True,
-)
 def test_bare_bits_without_their_sign_are_named(tmp_path: Path) -> None:
     """Ten bits taken for a positive number are a fault of sign (AVR: ADCH 0x02, ADCL 0x70)."""
     outcome = run(tmp_path, BARE_BITS.board, BARE_BITS.mistaken)

@@ -93,10 +93,14 @@ def test_an_edit_elsewhere_names_its_place() -> None:
 
 
 def test_many_related_places() -> None:
-    """The first places are listed, the others counted."""
+    """The first places and the last, the result, are listed, those between counted."""
     related = tuple(Related(place=Place("a.c", n), message="used") for n in range(1, 20))
     lines = block(samples.finding(related=related))
-    assert lines[-2:] == ["              a.c:4: used", "              and 15 more"]
+    assert lines[-3:] == [
+        "              a.c:3: used",
+        "              ... 15 more ...",
+        "              a.c:19: used",
+    ]
 
 
 def test_hostile_text_stays_printable() -> None:

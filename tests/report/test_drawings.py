@@ -128,7 +128,7 @@ def test_drawing_labels_its_axes() -> None:
         "        |----**********-----------------",
         "   0 mV |*****",
         "-120 mV |-------------------------------",
-        "outside |          xxxxxxxxxxxxxxxxxxxxx",
+        "too far |          xxxxxxxxxxxxxxxxxxxxx",
         "         code 100               code 149",
         "         --- allowed 100 mV",
     )
@@ -141,9 +141,20 @@ def test_drawing_explains_its_marks() -> None:
     lines = drawing(
         np.arange(100), error, np.linspace(1, 2, 100), unit="bar", width=60, height=5, ink=Ink.FINE
     )
-    assert lines[-1].strip() == (
-        "╌╌╌ allowed 1 bar to 2 bar   ^ v beyond the drawing   blank: no value"
-    )
+    assert [line.strip() for line in lines[-3:]] == [
+        "╌╌╌ allowed 1 bar to 2 bar",
+        "^ v beyond the drawing",
+        "blank: no value",
+    ]
+
+
+@pytest.mark.parametrize(("band", "said"), [(0.1, False), (0.001, True)])
+def test_a_band_below_a_row_is_said(band: float, said: bool) -> None:
+    """A band that is thinner than a row of the drawing is named as such."""
+    error = np.linspace(0.0, 1.0, 100)
+    allowed = np.full(100, band)
+    lines = drawing(np.arange(100), error, allowed, unit="V", width=70, height=7, ink=Ink.FINE)
+    assert ("(too thin to draw)" in lines[-1]) is said
 
 
 @pytest.mark.parametrize("ink", Ink)

@@ -156,6 +156,12 @@ def test_an_inferred_unit_is_spelled_out() -> None:
     assert channel["firmware"]["unit"] == "0.01 V"
 
 
+def test_a_stride_is_told_where_there_is_one() -> None:
+    """Where not every code was looked at the channel says so, elsewhere nothing."""
+    assert read(with_judgement(stride=1025))["channels"][1]["code_step"] == 1025
+    assert "code_step" not in read(samples.outcome())["channels"][1]
+
+
 def test_bytes() -> None:
     """Same facts, same bytes: ASCII, nothing invisible, a newline at the end."""
     place = Place("caf\udce9\u202e\n.c", 1, 1)

@@ -26,8 +26,17 @@ def test_a_verified_heading_is_light() -> None:
 
 def test_entry_hangs_its_text() -> None:
     """The text of an entry stays right of its label."""
+    lines = [line.plain for line in entry("formula", "word " * 12, 60)]
+    assert lines == [
+        "  formula     word word word word word word word word word",
+        "              word word word",
+    ]
+
+
+def test_a_narrow_entry_is_stacked() -> None:
+    """On a narrow sheet the label stands before its text, the lines that follow are moved in."""
     lines = [line.plain for line in entry("formula", "one two three four", 24)]
-    assert lines == ["  formula     one two", "              three four"]
+    assert lines == ["  formula: one two", "    three four"]
 
 
 def test_table_row_never_loses_a_middle_cell() -> None:

@@ -144,3 +144,35 @@ def test_a_channel_out_of_its_codes() -> None:
     shown = text(replace(outcome, facts=replace(outcome.facts, cases=tuple(cases))))
     assert "code 885" in shown
     assert "╌╌╌ allowed" not in shown
+
+
+def test_strides_are_told() -> None:
+    """Where not every code was looked at, the sheet says so."""
+    outcome = samples.outcome()
+    cases = list(outcome.facts.cases)
+    judged = cases[1].judgement
+    assert judged is not None
+    cases[1] = replace(cases[1], judgement=replace(judged, stride=1025))
+    shown = text(replace(outcome, facts=replace(outcome.facts, cases=tuple(cases))), 120)
+    assert "looking at every 1025th code" in shown
+
+
+def test_rounding_of_the_arithmetic_is_not_shown() -> None:
+    """An error of a few attovolts is 0 wherever it stands."""
+    outcome = samples.outcome()
+    cases = list(outcome.facts.cases)
+    judged = cases[0].judgement
+    assert judged is not None
+    noisy = replace(judged, error=judged.error + 1e-17)
+    cases[0] = replace(cases[0], judgement=noisy)
+    shown = text(replace(outcome, facts=replace(outcome.facts, cases=tuple(cases))))
+    assert "worst, all together: 0 m" in shown
+
+
+@pytest.mark.parametrize("width", [30, 59])
+def test_a_narrow_terminal_has_everything(width: int) -> None:
+    """A terminal of 30 columns and more tells channels, levels and values without folded cells."""
+    lines = text(samples.outcome(), width).splitlines()
+    assert "x battery: mismatched" in lines
+    assert "    error 1, warning 2" in lines
+    assert max(map(cell_len, lines)) <= width

@@ -79,60 +79,20 @@ def test_full_scale_text() -> None:
     assert sides.full_scale_text(two) == "1024 or 1023 counts (by default)"
 
 
-def test_rows() -> None:
-    """Constants of the code stand beside the board's, and disagree where one is wrong."""
-    case = samples.outcome().facts.cases[1]
-    assert case.judgement is not None
-    rows = {row.label: row for row in sides.rows(case, case.judgement)}
-    assert list(rows) == ["reference", "full scale", "chain", "gain", "offset"]
-    assert (rows["reference"].firmware, rows["reference"].agrees) == ("4900 (VREF_MV)", False)
-    assert (rows["full scale"].firmware, rows["full scale"].agrees) == ("1023 (ADC_MAX)", False)
-    assert (rows["chain"].firmware, rows["chain"].agrees) == ("", None)
-    assert rows["gain"].board == "18.07 mV/count"
-    assert rows["gain"].firmware == "17.72 mV/count (-1.90 %)"
-
-
-def test_rows_of_agreeing_constants() -> None:
-    """A recognised constant that is not wrong agrees."""
-    case = samples.outcome().facts.cases[1]
-    judged = case.judgement
-    assert judged is not None
-    explained = replace(judged.explanation, wrong=())
-    rows = sides.rows(case, replace(judged, explanation=explained))
-    assert [row.agrees for row in rows] == [True, True, None, None, None]
-
-
 def test_hardware_side_of_an_untraced_channel() -> None:
     """The board's line is known although the code's is not."""
     case = samples.outcome().facts.cases[2]
     assert sides.hardware_side(case) == Side(gain=5 / 1024, offset=0.0)
 
 
-def test_rows_name_bits_and_put_the_wrong_first() -> None:
-    """A resolution is shown in bits; of several constants the wrong ones come first."""
-    case = samples.outcome().facts.cases[1]
-    judged = case.judgement
-    assert judged is not None
-    bits = replace(samples.FULL_SCALE, name=None, text="10", place=samples.at(9, 9))
-    roles = (
-        (bits, "resolution"),
-        (samples.FULL_SCALE, "full-scale"),
-        (samples.FULL_SCALE, "full-scale"),
-    )
-    explained = replace(judged.explanation, roles=roles)
-    full_scale = sides.rows(case, replace(judged, explanation=explained))[1]
-    assert full_scale.firmware == "1023 (ADC_MAX), 10 bits"
-    assert full_scale.agrees is False
-
-
 def test_a_side_without_a_line() -> None:
     """A side that is no straight line says so."""
     none = Side(gain=None, offset=None)
-    assert sides.gain_text(none, "V") == sides.offset_text(none, "V") == "no straight line"
+    assert sides.gain_text(none, "V") == sides.offset_text(None, "V") == "no straight line"
 
 
 def test_measures_text() -> None:
     """Range, converter, input and pin are named where they are known."""
     assert sides.measures_text(samples.BATTERY) == "0 V to 16 V, converter adc input 2 (PC2)"
     bare = replace(samples.BATTERY, range=None, input=None, pin=None)
-    assert sides.measures_text(bare) == "V, converter adc"
+    assert sides.measures_text(bare) == "V, no range stated, all codes, converter adc"

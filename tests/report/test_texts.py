@@ -14,6 +14,7 @@ from bitweight.report.texts import (
     plural,
     shown,
     wrapped,
+    wrapped_formula,
 )
 
 ESCAPES = {
@@ -142,3 +143,12 @@ def test_wrapped_cuts_what_is_too_long() -> None:
     lines = wrapped("x" * 50, 20)
     assert max(map(len, lines)) == 20
     assert "".join(lines) == "x" * 50
+
+
+def test_a_formula_breaks_before_operators() -> None:
+    """No line of a formula ends in an operator, and no cast is torn apart."""
+    text = "level_mm = (unsigned int)adc_code(LEVEL) * VREF_MV * 10u / (1 << BITS) - ZERO"
+    lines = wrapped_formula(text, 32)
+    assert " ".join(lines) == text
+    assert max(map(len, lines)) <= 32
+    assert not [line for line in lines if line.endswith(("*", "/", "-", "=", "<<", "unsigned"))]

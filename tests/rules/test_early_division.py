@@ -94,7 +94,7 @@ def test_counts_too_coarse_for_the_stated_error() -> None:
     scaled = c.op(c.op(c.code(), "*", "5"), "/", "1024")
     (found,) = _found(scaled, facts.channel(count="1 V", allowed="10 mV"))
     assert found.message == (
-        "tank_held is cut to whole counts: up to 999 mV lost, at code 819, leaves the allowed "
-        "error by itself"
+        "dividing here cuts tank_held to whole counts: up to 999 mV lost, at code 819, leaves the "
+        "allowed error by itself"
     )
     assert (found.level, found.expected) == (Level.ERROR, "finer counts of the result")

@@ -75,7 +75,7 @@ def test_it_stands_on_the_definition_and_names_the_effect() -> None:
     (found,) = findings_of(RULE.check, case(millivolts("1023")))
     assert found.place.file.endswith("board_config.h")
     assert found.related[0].message == "used here"
-    assert "5 mV high at code 1023" in found.message
+    assert "up to 5 mV high (code 1023)" in found.message
 
 
 def test_a_name_says_nothing_without_a_line() -> None:

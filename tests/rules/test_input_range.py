@@ -66,9 +66,7 @@ def test_without_a_range() -> None:
     assert _found(ends=None) == ()
 
 
-@pytest.mark.parametrize(
-    ("top", "level"), [("5.5 V", [Level.WARNING]), ("6 V", [Level.ERROR])]
-)
+@pytest.mark.parametrize(("top", "level"), [("5.5 V", [Level.WARNING]), ("6 V", [Level.ERROR])])
 def test_pin_limit(top: str, level: list[Level]) -> None:
     """Past the pin's absolute limit it is an error that says what can happen."""
     limit = (parse_quantity("-0.3 V"), parse_quantity("5.5 V"))

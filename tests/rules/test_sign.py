@@ -39,7 +39,7 @@ def test_offset_binary_missed() -> None:
     """An offset-binary code taken as it is reads half the span too high."""
     (found,) = _found(_scaled(C(), "uint16_t", 12, signed=True), _tank(Coding.OFFSET_BINARY))
     assert found.expected == "offset binary"
-    assert "off by 5 V" in found.message
+    assert "reads 5 V high" in found.message
 
 
 def test_complementary_missed() -> None:

@@ -3,7 +3,7 @@
 import pytest
 
 from bitweight.limits import Limits
-from tracing_cases import HEAD, Expected, at_codes, check, entry, traced
+from tracing_cases import HEAD, UNKNOWN, Expected, at_codes, check, entry, traced
 
 
 @pytest.mark.parametrize(
@@ -28,7 +28,8 @@ from tracing_cases import HEAD, Expected, at_codes, check, entry, traced
          " out = r * 2; }", "f(); mv = out;", (1, 8000)),
         ("static int f(int *out) { if (!out) return -1; *out = adc(); return 0; }",
          "int v; if (f(&v) == 0) mv = v * 2; else mv = 0;", (200, 8000)),
-        ("static int f(int x) { if (x > 5) return x; }", "mv = f(adc());", "f() returns nothing here"),
+        ("static int f(int x) { if (x > 5) return x; }", "mv = f(adc());", (100, 4000)),
+        ("static int f(int x) { if (x > 500) return x; }", "mv = f(adc());", (UNKNOWN, 4000)),
         ("static void f(int x) { }", "mv = f(adc());", "f() returns nothing here"),
     ],
 )  # fmt: skip

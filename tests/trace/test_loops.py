@@ -51,7 +51,7 @@ def test_loops_with_constant_bounds(before: str, body: str, expected: Expected) 
         ("while (flag()) { } mv = adc() * 2;", (200, 8000)),
         ("int n = 0; while (flag()) n++; mv = adc() * 2;", (200, 8000)),
         ("uint32_t s = 0; for (int i = 0; i < flag(); i++) s += adc(); mv = s;",
-         "s changes from turn to turn of the loop at line 6, whose number of turns"),
+         "s changes from turn to turn of the loop at line 7, whose number of turns"),
         ("int r = adc(), n = 0; while (r > 100) { r -= 100; n++; } mv = n * 1000 + r;",
          "changes from turn to turn"),
         ("int x = 1, y = 0, n = 0; while (flag()) { y = x; if (n > 0) x = 7; n++; }"

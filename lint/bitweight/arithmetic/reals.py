@@ -20,6 +20,8 @@ takes bits apart on purpose, the bits are followed, or two's complement could no
 - Promotions and usual conversions never change anything.
 - A word shifted left and then right within one type is sign extension: the bits pushed out go.
 - `& (2**k - 1)` takes a number modulo 2**k; other bit operations use its whole part.
+- A division keeps its whole part where that is meant: where it only decides, or where a sum puts
+  it together with the remainder of the same division (`wholes`).
 
 Conditions, clamps and comparisons follow their real operands. What has no value (an unknown,
 division by zero) spoils only what depends on it.
@@ -53,6 +55,7 @@ from bitweight.arithmetic.fields import ExactNumbers, FloatNumbers, Numbers
 from bitweight.arithmetic.literals import exact_value
 from bitweight.arithmetic.types import CType, Kind
 from bitweight.arithmetic.values import Array, reading
+from bitweight.arithmetic.wholes import wholes
 from bitweight.arithmetic.words import SPELLED, Word, disjoint, words
 from bitweight.limits import Limits
 from bitweight.places import Place
@@ -91,6 +94,7 @@ class RealForm:
     words: Mapping[int, Word]
     spent: tuple[tuple[int, ...], ...]
     """For each node the identities of the nodes that nothing after it uses."""
+    whole: frozenset[int] = frozenset()
 
     def exact(self, word: int, replace: Replacements = _NOTHING) -> Fraction | None:
         """The exact value at a raw word; None where it has none."""
@@ -172,6 +176,8 @@ class RealForm:
                 return numbers.select(known[id(node.condition)], *arms)
 
     def _convert(self, numbers: Numbers, node: Convert, value: Any) -> Any:
+        if id(node) in self.whole and node.type.is_integer and not node.operand.type.is_integer:
+            value = _truncated(numbers, value)
         target, word = node.type, self.words.get(id(node.operand))
         if target.kind is Kind.BOOL:
             return numbers.holds(value != 0, value)
@@ -193,7 +199,10 @@ class RealForm:
                 pushed = _pushed_left(node.left)
                 if pushed is not None and id(pushed) in self.words:
                     left = _wrapped(numbers, left, pushed.type)
-                return numbers.divide(left, numbers.power(right))
+                shifted = numbers.divide(left, numbers.power(right))
+                return numbers.floor(shifted) if id(node) in self.whole else shifted
+            case "/" if id(node) in self.whole and node.type.is_integer:
+                return _truncated(numbers, numbers.divide(left, right))
             case _:
                 return _operate(numbers, node.operator, left, right)
 
@@ -201,7 +210,7 @@ class RealForm:
 def real_form(expression: Expression) -> RealForm:
     """`expression` made ready for its real value to be asked many times."""
     order = tuple(walk(expression))
-    return RealForm(order, MappingProxyType(words(order)), _spent(order))
+    return RealForm(order, MappingProxyType(words(order)), _spent(order), wholes(order))
 
 
 def _spent(order: Sequence[Expression]) -> tuple[tuple[int, ...], ...]:

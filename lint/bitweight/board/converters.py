@@ -120,6 +120,7 @@ class Converter:
     place: Place
     bits_place: Place
     full_scale_place: Place
+    family_place: Place | None = None
 
     @property
     def code_low(self) -> int:

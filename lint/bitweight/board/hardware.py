@@ -1,6 +1,7 @@
 """The board file as typed, linked facts. Every fact knows where it stands in the file."""
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from datetime import date
 from enum import Enum
 from fractions import Fraction
@@ -62,6 +63,7 @@ class Target:
     family: str | None
     families: tuple[str, ...]
     place: Place
+    family_place: Place | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -193,11 +195,14 @@ class Deviation:
     reason: str
     until: date | None
     place: Place
+    rule_place: Place | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Board:
     """One assembly of a board. `file` is the board file as shown; paths are as written in it.
+
+    `paths` are the places of the keys that name files, by key.
 
     `define` are the macros that select this board, name and replacement text. `variant` is the
     assembly that was asked for, None for the base. `coverage` is the factor k of expanded
@@ -223,3 +228,4 @@ class Board:
     variant: str | None
     deviations: tuple[Deviation, ...]
     place: Place
+    paths: Mapping[str, Place] = field(default_factory=dict)

@@ -1,6 +1,7 @@
 """`bitweight why`: what a rule checks, how, and from where that is known."""
 
 import difflib
+import re
 from collections.abc import Sequence
 
 from bitweight.command.options import WhyOptions
@@ -12,6 +13,11 @@ from bitweight.report.texts import shown, wrapped
 _WIDTH = 80
 
 _HAZARD = "a channel with a hazard raises note to warning and warning to error"
+_RAISABLE = re.compile(r"\b(?:warning|note)\b")
+_ACCEPTING = (
+    "/* deviation({name}): reason */ on the line or the one above, or [[deviation]] in the board "
+    "file"
+)
 
 
 def run_why(options: WhyOptions) -> int:
@@ -20,8 +26,6 @@ def run_why(options: WhyOptions) -> int:
     Raises `UsageError` with the nearest names for a rule that does not exist.
     """
     rules = load_rules()
-    if not rules:
-        raise UsageError("no rules are installed; the distribution bitweight brings its own")
     say(catalogue(rules) if options.rule is None else explanation(_named(rules, options.rule)))
     return 0
 
@@ -38,10 +42,12 @@ def explanation(rule: Rule) -> str:
         ("rule", rule.name),
         ("checks", rule.summary),
         ("formula", rule.formula),
-        ("level", f"{rule.levels}; {_HAZARD}"),
+        ("level", f"{rule.levels}; {_HAZARD}" if _RAISABLE.search(rule.levels) else rule.levels),
         ("source", rule.source),
+        ("mend", rule.mend),
+        ("accept", _ACCEPTING.format(name=rule.name)),
     )
-    return "".join(_entry(label, text, 10) for label, text in parts)
+    return "".join(_entry(label, text, 10) for label, text in parts if text)
 
 
 def _entry(label: str, text: str, margin: int) -> str:

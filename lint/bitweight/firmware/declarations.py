@@ -17,6 +17,7 @@ from bitweight.firmware.objects import (
 from bitweight.firmware.parsing import UnitSyntax
 from bitweight.firmware.syntax import (
     ArrayOf,
+    Derivation,
     Expr,
     Field,
     FunctionOf,
@@ -70,8 +71,12 @@ class Declarations:
         """The type that declarations mean; array sizes are left to whoever can compute them."""
         if depth > _TYPE_DEPTH:
             return Strange(name="a type nested too deeply")
-        made = self._base(syntax.specifiers, depth)
-        for one in reversed(syntax.derivations):
+        return self.derived(self._base(syntax.specifiers, depth), syntax.derivations)
+
+    @staticmethod
+    def derived(made: ObjectType, derivations: tuple[Derivation, ...]) -> ObjectType:
+        """What pointers, arrays and functions make of a type."""
+        for one in reversed(derivations):
             match one:
                 case PointerTo():
                     made = Pointer(to=made)

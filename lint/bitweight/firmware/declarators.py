@@ -2,12 +2,13 @@
 
 from dataclasses import dataclass, field, replace
 
-from bitweight.firmware.grammar import Branch, Grammar, broken, span
+from bitweight.firmware.grammar import Branch, Grammar, broken, declarator_below, is_broken, span
 from bitweight.firmware.syntax import (
     ArrayOf,
     Declarator,
     Derivation,
     Enumerator,
+    Expr,
     Field,
     FunctionOf,
     PointerTo,
@@ -35,6 +36,7 @@ class _Parts:
     tag: str | None = None
     fields: tuple[Field, ...] | None = None
     enumerators: tuple[Enumerator, ...] | None = None
+    like: Expr | None = None
 
 
 class Declarators(Grammar):
@@ -87,6 +89,7 @@ class Declarators(Grammar):
             enumerators=parts.enumerators,
             storage=frozenset(parts.storage),
             qualifiers=frozenset(parts.qualifiers),
+            like=parts.like,
         )
 
     def _add(self, parts: _Parts, node: Branch) -> None:
@@ -100,8 +103,23 @@ class Declarators(Grammar):
             parts.storage.add(self.text(node))
         elif node.type == "type_qualifier":
             parts.qualifiers.add(self.text(node))
+        elif node.start_byte in self.typeofs:
+            self._add_typeof(parts, node)
         elif node.type in RECORDS:
             self._add_record(parts, node)
+
+    def _add_typeof(self, parts: _Parts, node: Branch) -> None:
+        """The type of an expression, or of a typedef's name that the grammar took for one."""
+        body = node.child_by_field_name("body")
+        only = body.named_children[0] if body is not None and body.named_children else None
+        operand = only.child_by_field_name("value") if only is not None else None
+        if operand is None or is_broken(node):
+            parts.words.append("typeof")
+        elif self.is_type(self.text(operand)):
+            parts.words.append(self.text(operand))
+        else:
+            parts.words.append("typeof")
+            parts.like = self.expr(operand)
 
     def _add_record(self, parts: _Parts, node: Branch) -> None:
         name = node.child_by_field_name("name")
@@ -150,6 +168,8 @@ class Declarators(Grammar):
         value = None
         if node.type == "init_declarator":
             value = self.optional(node.child_by_field_name("value"))
+            if _is_broken_value(node):
+                value = broken(node)
             node = node.child_by_field_name("declarator") or node
         outer: list[Derivation] = []
         found: Branch | None = node
@@ -158,7 +178,7 @@ class Declarators(Grammar):
             derivation = self._derivation(found)
             if derivation is not None:
                 outer.append(derivation)
-            found = _inner_declarator(found)
+            found = declarator_below(found)
         if found is not None:
             named = found
         return Declarator(
@@ -203,22 +223,16 @@ def implicit_int(node: Branch, name: str) -> Declarator:
     )
 
 
+def _is_broken_value(node: Branch) -> bool:
+    """Whether something that is no C stands behind the `=` of an initialiser."""
+    if not node.has_error:
+        return False
+    kinds = [child.type for child in node.children]
+    return "=" in kinds and "ERROR" in kinds[kinds.index("=") :]
+
+
 def _is_broken_after(node: Branch, first: Branch) -> bool:
     """Whether something that is no C stands behind the first declarator."""
     return node.has_error and any(
         child.type == "ERROR" and child.start_byte >= first.end_byte for child in node.children
-    )
-
-
-def _inner_declarator(node: Branch) -> Branch | None:
-    named = node.child_by_field_name("declarator")
-    if named is not None:
-        return named
-    return next(
-        (
-            child
-            for child in node.named_children
-            if child.type.endswith("declarator") or child.type == "identifier"
-        ),
-        None,
     )

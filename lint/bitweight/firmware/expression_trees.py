@@ -8,6 +8,7 @@ from collections.abc import Callable, Mapping
 
 from bitweight.firmware.declarators import Declarators
 from bitweight.firmware.grammar import (
+    AMBIGUOUS_SIGNS,
     Branch,
     broken,
     inner,
@@ -39,8 +40,6 @@ from bitweight.firmware.syntax import (
     Text,
     TypeSyntax,
 )
-
-_SIGN_OR_ADDRESS = frozenset({"-", "+", "*", "&"})
 
 
 class ExpressionTrees(Declarators):
@@ -207,7 +206,7 @@ class ExpressionTrees(Declarators):
         if left is None or right is None:
             return broken(node)
         sign = self._operator(node)
-        cast = self._type_in_parentheses(left) if sign in _SIGN_OR_ADDRESS else None
+        cast = self._type_in_parentheses(left) if sign in AMBIGUOUS_SIGNS else None
         if cast is not None:
             return self._cast_of_sign(cast, sign, node, right)
         return Pair(

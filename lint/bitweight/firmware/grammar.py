@@ -12,6 +12,7 @@ import tree_sitter
 import tree_sitter_c
 
 from bitweight.firmware.syntax import Block, Expr, Name, Opaque
+from bitweight.firmware.typeofs import rewritten
 
 Branch = tree_sitter.Node
 """A node of the grammar's tree."""
@@ -20,7 +21,12 @@ Marks = Mapping[tuple[int, int], str]
 
 _LANGUAGE = tree_sitter.Language(tree_sitter_c.language())
 _CASTS = tree_sitter.Query(_LANGUAGE, "(cast_expression type: (type_descriptor) @type)")
-_MAY_LOOK_LIKE_A_CAST = re.compile(rb"[)\]]\s*\)\s*[-+*&(]")
+_TYPEDEFS = tree_sitter.Query(_LANGUAGE, "(type_definition declarator: (_) @name)")
+_MAY_LOOK_LIKE_A_CAST = re.compile(rb"[)\]\w]\s*\)\s*[-+*&(]")
+_NAMES = frozenset({"identifier", "type_identifier", "primitive_type"})
+_SPACE = ord(" ")
+AMBIGUOUS_SIGNS = frozenset({"-", "+", "*", "&"})
+"""Operators with one operand or two."""
 _ABSTRACT = ("abstract_function_declarator", "abstract_array_declarator")
 
 
@@ -43,13 +49,14 @@ class Grammar:
         depth: int = 200,
     ) -> None:
         # One byte a character keeps every offset: what is not ASCII stands in comments and strings.
-        self.bytes = text.encode("ascii", "replace")
-        self.types: set[str] = set()
+        self.bytes, self.typeofs = rewritten(text.encode("ascii", "replace"))
         self.marks = marks or {}
         self.depth = depth
         self.level = 0
-        self.root = _parsed(self.bytes)
         self._known = is_type
+        root = tree_sitter.Parser(_LANGUAGE).parse(self.bytes).root_node
+        self.types = frozenset(map(self.text, _typedef_names(root)))
+        self.root = self._without_mistaken_casts(root)
 
     def is_type(self, name: str) -> bool:
         """Whether the name is a type here: declared by the unit or known to the target."""
@@ -80,32 +87,72 @@ class Grammar:
         child = node.child_by_field_name(field)
         return self.expr(child) if child is not None else broken(node)
 
+    def _without_mistaken_casts(self, root: Branch) -> Branch:
+        """The tree of the text without parentheses that the grammar took for those of a cast.
 
-def _parsed(source: bytes) -> Branch:
-    """The tree of a text, parenthesized calls taken for calls.
-
-    The grammar reads `(f()) * x` as a cast to the type `f()`. No cast leads to a function or an
-    array (C11 6.5.4p2), so these parentheses enclose a call, and it means the same without them.
-    """
-    root = tree_sitter.Parser(_LANGUAGE).parse(source).root_node
-    if _MAY_LOOK_LIKE_A_CAST.search(source) is None:
-        return root
-    bare = bytearray(source)
-    for start, end in _parentheses_of_calls(root):
-        bare[start : start + 1] = bare[end : end + 1] = b" "
-    return root if bare == source else tree_sitter.Parser(_LANGUAGE).parse(bytes(bare)).root_node
-
-
-def _parentheses_of_calls(root: Branch) -> Iterator[tuple[int, int]]:
-    """The offsets of both parentheses around each call that was read as a type."""
-    for written in tree_sitter.QueryCursor(_CASTS).captures(root).get("type", []):
-        declarator = written.child_by_field_name("declarator")
-        while declarator is not None and declarator.type in _ABSTRACT:
-            below = declarator.child_by_field_name("declarator")
+        It reads `(f()) * x` as a cast to the type `f()`, `(a) - b * c` as one to the type `a`. No
+        cast leads to a function or an array (C11 6.5.4p2), nor to a name that is no type; a call
+        and a name mean the same without parentheses.
+        """
+        if _MAY_LOOK_LIKE_A_CAST.search(self.bytes) is None:
+            return root
+        bare = bytearray(self.bytes)
+        for written in tree_sitter.QueryCursor(_CASTS).captures(root).get("type", []):
             opening, closing = written.prev_sibling, written.next_sibling
-            if below is None and opening is not None and closing is not None:
-                yield opening.start_byte, closing.start_byte
-            declarator = below
+            mistaken = _is_call(written) or self._is_operand(written)
+            if mistaken and opening is not None and closing is not None:
+                bare[opening.start_byte] = bare[closing.start_byte] = _SPACE
+        if bare == self.bytes:
+            return root
+        return tree_sitter.Parser(_LANGUAGE).parse(bytes(bare)).root_node
+
+    def _is_operand(self, written: Branch) -> bool:
+        """Whether the type of a cast is a name that is no type, before what may be an operator."""
+        names = written.named_children
+        if len(names) != 1 or names[0].type != "type_identifier":
+            return False
+        cast = written.parent
+        value = cast.child_by_field_name("value") if cast is not None else None
+        operator = value.child_by_field_name("operator") if value is not None else None
+        if operator is None or self.text(operator) not in AMBIGUOUS_SIGNS:
+            return False
+        return not self.is_type(self.text(names[0]))
+
+
+def _is_call(written: Branch) -> bool:
+    """Whether the type of a cast is a function or an array."""
+    declarator = written.child_by_field_name("declarator")
+    while declarator is not None and declarator.type in _ABSTRACT:
+        below = declarator.child_by_field_name("declarator")
+        if below is None:
+            return True
+        declarator = below
+    return False
+
+
+def _typedef_names(root: Branch) -> Iterator[Branch]:
+    """The names that the typedefs of a text declare."""
+    for declarator in tree_sitter.QueryCursor(_TYPEDEFS).captures(root).get("name", []):
+        found: Branch | None = declarator
+        while found is not None and found.type not in _NAMES:
+            found = declarator_below(found)
+        if found is not None:
+            yield found
+
+
+def declarator_below(node: Branch) -> Branch | None:
+    """The next declarator inside a declarator, towards the name."""
+    field = node.child_by_field_name("declarator")
+    if field is not None:
+        return field
+    return next(
+        (
+            child
+            for child in node.named_children
+            if child.type.endswith("declarator") or child.type in _NAMES
+        ),
+        None,
+    )
 
 
 def span(node: Branch) -> Span:

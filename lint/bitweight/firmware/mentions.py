@@ -22,11 +22,13 @@ from bitweight.firmware.syntax import (
 class Mentions:
     """Names in one function body; its own locals, static ones aside, are only in `names`.
 
-    `addressed` are objects whose address is taken, `passes` what stands as an argument.
+    `through` are pointers through which is written, `addressed` objects whose address is taken,
+    `passes` what stands as an argument.
     """
 
     names: frozenset[str]
     writes: frozenset[str]
+    through: frozenset[str]
     addressed: frozenset[str]
     passes: frozenset[str]
     calls: frozenset[str]
@@ -35,13 +37,14 @@ class Mentions:
     @property
     def changes(self) -> frozenset[str]:
         """Names through which something may be written."""
-        return self.writes | self.addressed | self.passes
+        return self.writes | self.through | self.addressed | self.passes
 
 
 def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
     """Look through a body once."""
     names: set[str] = set()
     writes: set[str] = set()
+    through: set[str] = set()
     addressed: set[str] = set()
     passes: set[str] = set()
     calls: set[str] = set()
@@ -54,7 +57,7 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
             case Member():
                 names.add(node.name)
             case Assign() | Increment():
-                writes |= _root(node.target)
+                (through if _is_pointed(node.target) else writes).update(_root(node.target))
             case Operation(operator="&"):
                 addressed |= _root(node.operand)
             case Call():
@@ -70,6 +73,7 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
     return Mentions(
         names=frozenset(names),
         writes=frozenset(writes - declared),
+        through=frozenset(through - declared),
         addressed=frozenset(addressed - declared),
         passes=frozenset(passes - declared),
         calls=frozenset(calls),
@@ -97,7 +101,14 @@ def nodes(root: Node) -> Iterator[Node]:
             yield node
             pending.extend(getattr(node, field.name) for field in fields(node))
         elif hasattr(node, "value") and hasattr(node, "designators"):
-            pending.append(node.value)
+            pending.extend((node.value, node.designators))
+
+
+def _is_pointed(node: Node) -> bool:
+    """Whether an lvalue leads through a pointer that `*` or `->` follows."""
+    while isinstance(node, Member | Index):
+        node = node.base
+    return isinstance(node, Operation) and node.operator == "*"
 
 
 def _root(node: Node) -> set[str]:

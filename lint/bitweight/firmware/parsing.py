@@ -61,12 +61,6 @@ class Parser(StatementTrees):
     def unit(self) -> UnitSyntax:
         """All top-level definitions and declarations."""
         nodes = self._top_level()
-        self.types.update(
-            self.declarator(child, Specifiers()).name
-            for node in nodes
-            if node.type == "type_definition"
-            for child in node.children_by_field_name("declarator")
-        )
         outside = _Outside()
         for node, following in zip(nodes, [*nodes[1:], None], strict=True):
             self._add_outside(outside, node, following)

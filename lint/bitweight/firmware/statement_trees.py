@@ -9,6 +9,7 @@ from bitweight.firmware.syntax import (
     Case,
     Declare,
     Evaluate,
+    Expr,
     If,
     Jump,
     Label,
@@ -124,12 +125,23 @@ class StatementTrees(ExpressionTrees):
     def _case(self, node: Branch) -> Stmt:
         value = node.child_by_field_name("value")
         items = [child for child in inner(node) if value is None or child.id != value.id]
-        last = None
-        if items and any(child.type == "..." for child in node.children):
-            last = self.expr(items.pop(0))
+        last: Expr | None = None
+        if value is not None and items and self._is_before_colon(items[0], node):
+            last = self._range_end(items.pop(0))
         return Case(
             **span(node), value=self.optional(value), last=last, items=self._statements(items)
         )
+
+    @staticmethod
+    def _is_before_colon(item: Branch, node: Branch) -> bool:
+        colon = next((child for child in node.children if child.type == ":"), None)
+        return colon is not None and item.start_byte < colon.start_byte
+
+    def _range_end(self, node: Branch) -> Expr:
+        """The end of GNU's `case first ... last`, which the grammar does not know."""
+        below = inner(node)
+        is_range = self.text(node).startswith("...") and len(below) == 1
+        return self.expr(below[0]) if is_range else broken(node)
 
     def _return(self, node: Branch) -> Stmt:
         below = inner(node)

@@ -48,7 +48,7 @@ class Program:
         """Every function of that name with external linkage, each once, strong ones first."""
         self.load(name)
         found = {
-            unit.functions[name].key: unit.functions[name]
+            unit.functions[name].identity: unit.functions[name]
             for unit in self.units.values()
             if name in unit.functions and not unit.functions[name].static
         }
@@ -81,7 +81,7 @@ class Program:
     def all_functions(self, name: str) -> tuple[Function, ...]:
         """Every function in a loaded unit whose body mentions the name, each once."""
         self.load(name)
-        found: dict[Place, Function] = {}
+        found: dict[tuple[Place, str], Function] = {}
         word = re.compile(rf"(?<![\w$]){re.escape(name)}(?![\w$])")
         for unit in self.units.values():
             if name not in unit.translation.text:
@@ -89,7 +89,7 @@ class Program:
             text = unit.translation.text
             for one in unit.functions.values():
                 if word.search(text, one.syntax.body_start, one.syntax.end):
-                    found.setdefault(one.key, one)
+                    found.setdefault(one.identity, one)
         return tuple(found[key] for key in sorted(found))
 
     def _unit(self, file: SourceFile) -> Unit:

@@ -41,7 +41,10 @@ class Enumerator(Node):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Specifiers:
-    """The first part of a declaration: `words` (arithmetic, typedef names) or a tagged type."""
+    """The first part of a declaration: `words` (arithmetic, typedef names) or a tagged type.
+
+    `like` is the operand of a GNU or C23 `typeof`.
+    """
 
     words: tuple[str, ...] = ()
     record: str | None = None
@@ -50,6 +53,7 @@ class Specifiers:
     enumerators: tuple[Enumerator, ...] | None = None
     storage: frozenset[str] = frozenset()
     qualifiers: frozenset[str] = frozenset()
+    like: "Expr | None" = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -41,6 +41,11 @@ class Function:
     weak: bool
     key: Place
 
+    @property
+    def identity(self) -> tuple[Place, str]:
+        """Where it is defined and its name: one macro use may define several."""
+        return self.key, self.name
+
     @cached_property
     def body(self) -> Block:
         """Its statements."""

@@ -75,6 +75,8 @@ def judge_case(
     if reason is not None:
         return replace(case, reason=reason)
     frames = _frames(channel, trace, board, model, limits)
+    if not frames:
+        return replace(case, reason=_only_raw(channel, trace))
     judged = [judge_conversion(frame) for frame in frames]
     judgements = [one for one in judged if isinstance(one, Judgement)]
     if not judgements:
@@ -131,6 +133,11 @@ def _frames(
         for conversion in own
     ]
     return frames if channel.value else without_bare_copies(frames)
+
+
+def _only_raw(channel: Channel, trace: Trace) -> str:
+    names = dict.fromkeys(one.result for one in trace.conversions)
+    return f"only the raw code leaves ({', '.join(names)}), no conversion of {channel.name} was found"
 
 
 def _ambiguous(judgements: Sequence[Judgement]) -> str:

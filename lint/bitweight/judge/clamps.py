@@ -58,7 +58,21 @@ def _clamp(
     with np.errstate(invalid="ignore"):
         nearer = np.abs(without - wanted) < np.abs(computed.held - wanted)
     mask = outside & taken & nearer
-    return Clamp(node=node, limit=limit, mask=mask, without=without) if mask.any() else None
+    if not _ends_range(computed, without, mask):
+        return None
+    return Clamp(node=node, limit=limit, mask=mask, without=without)
+
+
+def _ends_range(computed: Evaluation, without: Array, mask: Mask) -> bool:
+    """Whether the choice cuts one end of the values off; one that jumps in between is no limit."""
+    inside = computed.in_range & np.isfinite(without)
+    cut = mask & inside
+    if not cut.any():
+        return False
+    held, beyond = computed.held[cut], without[cut]
+    if (held < beyond).all():
+        return bool(beyond.max() == without[inside].max())
+    return bool((held > beyond).all() and beyond.min() == without[inside].min())
 
 
 def _without_reading(root: Expression) -> set[int]:

@@ -9,7 +9,7 @@ from collections.abc import Callable, Iterator
 from bitweight.judge.cases import Case, Judgement
 from bitweight.judge.explanations import WrongConstant
 from bitweight.judge.findings import Finding, Level, Related, Replacement
-from bitweight.judge.statements import edit, quantity, settled, steps, uses
+from bitweight.judge.statements import edit, quantity, steps, uses
 
 Say = Callable[[WrongConstant], str]
 
@@ -74,8 +74,7 @@ def effect(case: Case, wrong: WrongConstant) -> str:
     if wrong.level is Level.NOTE:
         return "no result changes by it"
     worst = max(wrong.effect, key=lambda point: abs(point.error), default=None)
-    lsb = case.judgement.lsb if case.judgement is not None else 0.0
-    if worst is None or not settled(worst.error, lsb):
+    if worst is None or case.judgement is None or not case.judgement.settled(worst.error):
         return ""
     direction = "high" if worst.error > 0 else "low"
     amount = quantity(abs(worst.error), case.channel)

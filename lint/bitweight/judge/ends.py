@@ -7,6 +7,8 @@ from numpy.typing import NDArray
 
 from bitweight.judge.evaluations import Evaluation, Frame, code_grid, evaluated
 from bitweight.judge.judgements import Judgement, wrong_mask
+from bitweight.judge.knobs import is_power
+from bitweight.judge.units import result_unit
 
 _ALIKE = 0.05
 """Part of the span by which two ends may differ and still hold one quantity.
@@ -17,11 +19,18 @@ of ten apart.
 
 
 def without_bare_copies(frames: Sequence[Frame]) -> Sequence[Frame]:
-    """The ends that scale the code, or all of them where none does."""
-    if len(frames) < 2:
-        return frames
+    """The ends that scale the code; where none does, those whose counts stand for a quantity.
+
+    A bare copy of the code is a conversion only where its unit is stated, by the board file or its
+    name, or where one count stands for a power of ten.
+    """
     scaled = [frame for frame in frames if not _is_bare_copy(frame)]
-    return scaled or frames
+    return scaled or [frame for frame in frames if _counts_quantity(frame)]
+
+
+def _counts_quantity(frame: Frame) -> bool:
+    unit = result_unit(frame.side.channel, frame.conversion.result)
+    return unit.scale is not None or is_power(abs(frame.side.gain), 10)
 
 
 def agree(judgements: Sequence[Judgement]) -> bool:

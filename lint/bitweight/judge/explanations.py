@@ -1,9 +1,9 @@
 """Why a conversion's line differs from the board's: wrong constants, and what is left over."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from fractions import Fraction
 
-from bitweight.arithmetic.expressions import Leaf
+from bitweight.arithmetic.expressions import Expression, Leaf
 from bitweight.judge.findings import Level
 from bitweight.places import Place
 
@@ -21,11 +21,11 @@ class WrongConstant:
     """A constant whose correction is part of the smallest set that mends the channel.
 
     `rule` is the rule that reports it; `role` is what it stands for in words ("reference vref");
-    `found` and `expected` are the values shown, as the code writes them and with an everyday unit if
-    they have one; `text` is how a message names the constant, `held` the clause that says what the
-    code has ("ADC_MAX is 1023") and `wanted` the one that says what the board has. `value` is the
-    corrected value; `replacement` is the text to write at the leaf (None where one edit
-    cannot say it). `leaf` is None where no constant is at fault (a shift that is missing); `place`
+    `found` and `expected` are the values shown, as the code writes them and with an everyday unit
+    if they have one; `text` is how a message names the constant, `held` the clause that says what
+    the code has ("ADC_MAX is 1023") and `wanted` the one that says what the board has. `value` is
+    the corrected value; `replacement` is the text to write at the leaf (None where one edit cannot
+    say it). `leaf` is None where no constant is at fault (a shift that is missing); `place`
     is then where the finding stands. `level` comes from the constant's own effect, whose bottom,
     middle and top of the range are `effect`. `remark` is a sentence for the message.
     """
@@ -57,7 +57,8 @@ class Explanation:
     10**`decade` channel units where the unit is inferred. `count` is the full-scale count under
     which it holds, one of the accepted ones. `gain` and `offset` are the real-valued line of the
     code, in channel units per count and channel units, None where it is no line; `wanted_gain` and
-    `wanted_offset` the board's.
+    `wanted_offset` the board's. `mended` is the conversion with the wrong constants corrected, its
+    words first moved down by `moved` bits; None where nothing is wrong or no type holds a value.
     """
 
     wrong: tuple[WrongConstant, ...] = ()
@@ -71,3 +72,5 @@ class Explanation:
     offset: Fraction | None = None
     wanted_gain: Fraction | None = None
     wanted_offset: Fraction | None = None
+    mended: Expression | None = field(default=None, compare=False, repr=False)
+    moved: int = 0

@@ -39,6 +39,7 @@ def question(frame: Frame, unit: ResultUnit, computed: Evaluation) -> Question:
         word_stated=converter.justified_stated or converter.word_bits_stated,
         stated=stated_roles(frame.board),
         others=frame.others,
+        summed=channel.firmware.reading_gain != 1,
     )
 
 

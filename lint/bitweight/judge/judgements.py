@@ -5,7 +5,7 @@ for the user.
 """
 
 import math
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 from functools import reduce
 
@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from bitweight.arithmetic.evaluation import Curve
-from bitweight.arithmetic.expressions import Unknown
+from bitweight.arithmetic.expressions import Convert, Unknown
 from bitweight.arithmetic.values import FaultKind
 from bitweight.board.chains import Ideal
 from bitweight.board.converters import Coding
@@ -31,12 +31,14 @@ from bitweight.judge.evaluations import (
 )
 from bitweight.judge.findings import Level
 from bitweight.judge.inquiries import accepted_line, question
+from bitweight.judge.knobs import bare
 from bitweight.judge.losses import Loss, coarse_end, truncation_loss
-from bitweight.judge.operations import WrongOperation, wrong_operations
+from bitweight.judge.operations import WrongOperation, lasting, wrong_operations
 from bitweight.judge.roles import Explanation, explain
 from bitweight.judge.scalings import inferred_scale, rough_scale
 from bitweight.judge.scans import stride, with_scanned
 from bitweight.judge.sides import Point, Side, firmware_side, range_points
+from bitweight.judge.statements import settled
 from bitweight.judge.suffixes import suffix_for
 from bitweight.judge.units import ResultUnit, result_unit
 from bitweight.trace.conversions import Conversion
@@ -90,6 +92,10 @@ class Judgement:
     def worst_ratio(self) -> float:
         """The largest error in range as a multiple of the allowed one; infinite for no value."""
         return _worst_ratio(self.error, self.allowed, self.in_range)
+
+    def settled(self, value: float) -> float:
+        """A value in the channel's unit, 0 where it is no more than rounding of the arithmetic."""
+        return settled(value, self.lsb)
 
     def quantity_of(self, count: float) -> float:
         """What a count of the result stands for, in the channel's unit."""
@@ -165,8 +171,10 @@ def _judged(
     coding = other_coding(computed, frame, result) if outside else None
     meant = computed.real * result.scale + result.zero - allowed.quantity
     found = _Faults() if coding else _faults(computed, result, allowed)
-    known = computed.in_range & ~(_without_value(found.operations) & ~np.isfinite(meant))
-    meant_ill = _worst_ratio(meant, limit, known) > _ROUNDING
+    if explanation.mended is not None:
+        found = _lasting(found, frame, computed, explanation)
+    known = computed.in_range & ~_unjudged(found.operations, meant)
+    meant_ill = outside and _worst_ratio(meant, limit, known) > _ROUNDING
     worst = _worst_index(error, computed.in_range)
     return Judgement(
         conversion=frame.conversion,
@@ -193,7 +201,12 @@ def _judged(
         points=range_points(computed, allowed.quantity, value),
         explanation=_unblamed(explanation)
         if coding
-        else _completed(explanation, meant_ill=meant_ill and not found.clamps),
+        else _completed(
+            explanation,
+            meant_ill=meant_ill,
+            silent=outside and not found.tell_error,
+            clamped=bool(found.clamps),
+        ),
         operations=found.operations,
         loss=found.loss,
         clamps=found.clamps,
@@ -210,6 +223,26 @@ class _Faults:
     loss: Loss | None = None
     clamps: tuple[Clamp, ...] = ()
 
+    @property
+    def tell_error(self) -> bool:
+        """Whether any of them is an error or a warning by itself."""
+        inside = any(one.in_range for one in self.operations)
+        return inside or self.loss is not None or bool(self.clamps)
+
+
+def _lasting(
+    found: _Faults, frame: Frame, computed: Evaluation, explanation: Explanation
+) -> _Faults:
+    """The faults without the operators that come right when the wrong constants are mended."""
+    mended = explanation.mended
+    if mended is None or not found.operations:
+        return found
+    conversion = replace(frame.conversion, expression=mended)
+    again = evaluated(
+        replace(frame, conversion=conversion), computed.codes, computed.words >> explanation.moved
+    )
+    return replace(found, operations=lasting(found.operations, wrong_operations(again)))
+
 
 def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
     counts = abs(result.scale)
@@ -220,11 +253,21 @@ def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _F
     wanted = (allowed.quantity - result.zero) / result.scale
     limit = allowed.at_step(result.step) / counts
     tolerance = (allowed.lsb + result.step) / counts * _ROUNDING
+    loss = truncation_loss(computed, wrong, tolerance) or coarse_end(
+        computed, wrong, wanted, limit
+    )
     return _Faults(
         operations=operations,
-        loss=truncation_loss(computed, wrong, tolerance)
-        or coarse_end(computed, wrong, wanted, limit),
+        loss=None if loss is None or _is_stored_wrong(loss, operations) else loss,
         clamps=clamps_in_range(computed, wanted, limit),
+    )
+
+
+def _is_stored_wrong(loss: Loss, operations: Iterable[WrongOperation]) -> bool:
+    """Whether what is left by the truncation does not fit where it is put: one cause, told once."""
+    return any(
+        one.in_range and isinstance(one.node, Convert) and bare(one.node.operand) is loss.node
+        for one in operations
     )
 
 
@@ -237,9 +280,15 @@ def wrong_mask(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
     return reduce(np.logical_or, (one.mask for one in operations), np.array([False]))
 
 
-def _without_value(operations: Iterable[WrongOperation]) -> NDArray[np.bool_]:
-    """The codes at which an operator has no value in any type: a fault that is told for itself."""
-    return wrong_mask(one for one in operations if one.exact is None)
+def _unjudged(operations: Sequence[WrongOperation], meant: Array) -> NDArray[np.bool_]:
+    """The codes that say nothing of gain and offset.
+
+    At these an operator has no value in any type, or a conversion takes a word apart wrongly: a
+    fault that is told for itself.
+    """
+    valueless = wrong_mask(one for one in operations if one.exact is None)
+    converted = wrong_mask(one for one in operations if isinstance(one.node, Convert))
+    return (valueless & ~np.isfinite(meant)) | converted
 
 
 def _unblamed(explanation: Explanation) -> Explanation:
@@ -247,10 +296,18 @@ def _unblamed(explanation: Explanation) -> Explanation:
     return replace(explanation, wrong=(), cancelling=(), residual=None, culprit=None)
 
 
-def _completed(explanation: Explanation, *, meant_ill: bool) -> Explanation:
-    """An explanation that does not pass in silence what the code means outside what is allowed."""
+def _completed(
+    explanation: Explanation, *, meant_ill: bool, silent: bool, clamped: bool
+) -> Explanation:
+    """An explanation that leaves nothing over where all is well, and passes nothing in silence.
+
+    `meant_ill` says that what the code means leaves the allowed error, `silent` that the result
+    does and no fault of the arithmetic tells it, `clamped` that a limit does it.
+    """
     blamed = any(wrong.level is not Level.NOTE for wrong in explanation.wrong)
-    if not meant_ill or blamed or explanation.residual:
+    if explanation.residual and not meant_ill and not silent:
+        return replace(explanation, residual=None, culprit=None)
+    if blamed or explanation.residual or not ((meant_ill and not clamped) or silent):
         return explanation
     return replace(explanation, residual=_residual(explanation))
 
@@ -260,7 +317,10 @@ def _residual(explanation: Explanation) -> str:
     gain, wanted = explanation.gain, explanation.wanted_gain
     if gain is None or wanted is None:
         return "curve"
-    return "offset" if math.isclose(gain, wanted, rel_tol=_ALIKE) else "gain"
+    if not math.isclose(gain, wanted, rel_tol=_ALIKE):
+        return "gain"
+    offset, level = explanation.offset, explanation.wanted_offset
+    return "curve" if offset == level else "offset"
 
 
 _ALIKE = 1e-6

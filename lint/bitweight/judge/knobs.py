@@ -34,10 +34,11 @@ class Knob:
     """One constant. `half` is half of its last written digit, `whole` whether it is an integer.
 
     `counts_bits` is true for the right operand of a shift, `on_reading` for one that shifts or
-    divides the bare reading. `hints` are the roles that its name (or comment) speaks of, `exponent`
+    divides the bare reading, `masks` for one of the form 2**n - 1 that keeps its lowest bits. `hints` are the roles that its name (or comment) speaks of, `exponent`
     the power of ten that its unit word says (3 for mV), None without one; `physical` is true where
-    that word is a unit and no plain multiple. `inside` are the constants it is made of, where it is
-    a computed one like `(1 << 12) - 1`.
+    that word is a unit and no plain multiple. `lone` says that it is no resistance: neither its
+    name nor another resistance beside it speaks for one. `inside` are the constants it is made of,
+    where it is a computed one like `(1 << 12) - 1`.
     """
 
     key: Key
@@ -47,10 +48,12 @@ class Knob:
     whole: bool
     counts_bits: bool = False
     on_reading: bool = False
+    masks: bool = False
     hints: frozenset[Role] = frozenset()
     named: bool = False
     exponent: int | None = None
     physical: bool = False
+    lone: bool = False
     stated: StatedRole | None = None
     inside: tuple[Leaf, ...] = ()
 
@@ -121,6 +124,7 @@ def knobs(
     roles = {role.name: role for role in stated}
     shifts = _shift_counts(expression)
     touching = _on_reading(expression)
+    masking = _masks(expression)
     found: dict[Key, Knob] = {}
     for node in walk(expression):
         if not isinstance(node, Literal) or node.leaf is None:
@@ -133,6 +137,7 @@ def knobs(
             earlier,
             counts_bits=earlier.counts_bits or id(node) in shifts,
             on_reading=earlier.on_reading or id(node) in touching,
+            masks=earlier.masks or id(node) in masking,
         )
     return tuple(_group(knob, inside) for knob in found.values())
 
@@ -151,7 +156,7 @@ def _knob(leaf: Leaf, node: Literal, roles: dict[str, StatedRole]) -> Knob | Non
     words = [word for name in names for word in _words(name)]
     stated = next((roles[name] for name in names if name in roles), None)
     hints = _hints(words) or _hints(_words(leaf.comment))
-    if any(word in _OHMS for word in words):
+    if any(word in _OHMS for word in words) or _names_resistor(words):
         hints = (hints & _RESISTIVE) or _RESISTIVE
     return Knob(
         key=leaf_key(leaf),
@@ -194,6 +199,18 @@ def _on_reading(expression: Expression) -> frozenset[int]:
     )
 
 
+def _masks(expression: Expression) -> frozenset[int]:
+    """Identities of the constants 2**n - 1 that keep the lowest bits of the bare reading."""
+    return frozenset(
+        id(mask)
+        for node in walk(expression)
+        if isinstance(node, Binary) and node.operator == "&"
+        for mask, word in ((bare(node.right), node.left), (bare(node.left), node.right))
+        if isinstance(mask, Literal) and isinstance(bare(word), Code)
+        if mask.value > 0 and is_power(Fraction(mask.value) + 1, 2)
+    )
+
+
 _WORD = re.compile(r"[A-Z]+(?![a-z])\d*|[A-Z]?[a-z]+\d*|\d+")
 _HINTS = (
     ("vref aref ref vcc vdd vdda avcc avdd supply reference", (Role.REFERENCE,)),
@@ -214,6 +231,7 @@ _EXPONENTS = {
 }  # fmt: skip
 """Powers of ten that unit words in names stand for (common practice)."""
 _OHMS = frozenset({"ohm", "ohms", "kohm", "kohms", "mohm", "milliohm", "uohm"})
+_SIDES = frozenset("top bot bottom hi lo high low up upper lower".split())
 _RESISTIVE = frozenset({Role.RESISTANCE, Role.SHUNT})
 """What a constant in ohms may be, whatever else its name says (R_TOP_OHM is no full scale)."""
 
@@ -225,6 +243,11 @@ def _words(name: str) -> list[str]:
 
 def _split(part: str) -> list[str]:
     return [part] if part.lower() in _EXPONENTS else _WORD.findall(part)
+
+
+def _names_resistor(words: Sequence[str]) -> bool:
+    """Whether a name says where in a divider a resistor is: R_TOP, R_LO."""
+    return "r" in words and any(word in _SIDES for word in words)
 
 
 def _hints(words: Iterable[str]) -> frozenset[Role]:

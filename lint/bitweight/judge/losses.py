@@ -10,6 +10,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from bitweight.arithmetic.expressions import Binary, Convert, Expression, walk
+from bitweight.arithmetic.wholes import deciding
 from bitweight.judge.evaluations import Array, Evaluation, Mask
 from bitweight.judge.rewrites import realised
 
@@ -105,8 +106,13 @@ def _culprit(computed: Evaluation, looked_at: Mask, tolerance: float) -> Express
 
 
 def _dividing(root: Expression) -> Sequence[Expression]:
-    """Operators that throw digits away, the one nearest to the result first."""
-    found = [node for node in walk(root) if _divides(node)]
+    """Operators that throw digits away, the one nearest to the result first.
+
+    What only decides which way a choice goes throws nothing away.
+    """
+    order = tuple(walk(root))
+    decides = deciding(order)
+    found = [node for node in order if id(node) not in decides and _divides(node)]
     return found[::-1][:_MOST]
 
 

@@ -81,7 +81,7 @@ class Meaning:
         return not self.unit.startswith(("*", "/ 2**"))
 
     def in_words(self, value: Fraction) -> str:
-        """What a constant of this scaling stands for: 250 for "2.5 mV/kPa", 2560 for "10 * 2**8"."""
+        """What a constant of this scaling stands for: "2.5 mV/kPa" for 250, "10 * 2**8"."""
         term = self.term
         if self.doublings:
             return f"{_short(value / 2**self.doublings)} * 2**{self.doublings}"
@@ -95,6 +95,7 @@ def _short(value: Fraction) -> str:
 
 _PREFIXES = {-6: "M", -3: "k", 0: "", 3: "m", 6: "u", 9: "n"}
 _DECIMALS = range(-6, 10)
+_RESISTIVE_EXPONENTS = (0, -3, -6)
 _RATIO_DECIMALS = range(7)
 _FIXED_POINTS = range(4, 25)
 _SUMS = range(11)
@@ -208,6 +209,8 @@ def _allowed(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Term]:
             continue
         if term.role in _FOLDED or (knob.inside and term.role is not Role.FULL_SCALE):
             continue
+        if knob.lone and term.role is Role.RESISTANCE:
+            continue
         yield term
 
 
@@ -251,12 +254,32 @@ def _nearest_powers(knob: Knob, term: Term, ratio: Fraction) -> Iterator[tuple[i
     if knob.exponent is not None and term.scaling is Scaling.QUANTITY:
         yield knob.exponent, 0
         return
+    if term.role is Role.RESISTANCE:
+        yield _nearest_everyday(ratio), 0
+        return
     if term.scaling is Scaling.COUNT and ratio < 2:
         yield 0, 0
     else:
         yield from _powers(term.scaling, ratio)
         if term.scaling is Scaling.COUNT and knob.is_count:
             yield 0, 0
+
+
+def _nearest_everyday(ratio: Fraction) -> int:
+    """The exponent of ten nearest to a ratio that makes ohm, kohm or Mohm of a resistance."""
+    return min(_RESISTIVE_EXPONENTS, key=lambda exponent: abs(decades(ratio) - exponent))
+
+
+def resistances(knob: Knob, all_terms: Sequence[Term]) -> frozenset[str]:
+    """The names of the resistances that the constant says, as its digits can, in ohm to Mohm."""
+    return frozenset(
+        term.name
+        for term in all_terms
+        if term.role is Role.RESISTANCE
+        for exponent in _RESISTIVE_EXPONENTS
+        if not knob.counts_bits and knob.holds(term.value * Fraction(10) ** exponent)
+        if not knob.is_coarse or knob.value == term.value * Fraction(10) ** exponent
+    )
 
 
 def composites(knob: Knob, all_terms: Sequence[Term]) -> tuple[Fraction, ...]:

@@ -5,8 +5,9 @@ extension, byte assembly): it counts only where the result would be nearer to wh
 means without it.
 """
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Collection, Iterable, Iterator, Sequence
 from dataclasses import dataclass, replace
+from functools import reduce
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,6 +20,7 @@ from bitweight.arithmetic.expressions import (
     Default,
     Expression,
     Leaf,
+    Unary,
     children,
     walk,
 )
@@ -67,6 +69,21 @@ class WrongOperation:
     suffix: Suffix | None = None
 
 
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class _Wrong:
+    """A fault that counts, with the other operators of one loop that stand at the same place.
+
+    `fault` is that of the last of them, its mask that of all.
+    """
+
+    fault: Fault
+    nodes: tuple[Expression, ...]
+
+    @property
+    def node(self) -> Expression:
+        return self.fault.node
+
+
 def wrong_operations(computed: Evaluation) -> tuple[WrongOperation, ...]:
     """The first operators on the way that go wrong, in evaluation order.
 
@@ -75,16 +92,24 @@ def wrong_operations(computed: Evaluation) -> tuple[WrongOperation, ...]:
     """
     counted = _counted(computed)
     ends = {id(node) for node in ends_of(computed.expression)}
-    below = _below(computed.expression, {id(fault.node) for fault in counted})
-    inside = [fault for fault in counted if (fault.mask & computed.in_range).any()]
+    below = _below(computed.expression, {id(wrong.node) for wrong in counted})
+    inside = [wrong for wrong in counted if (wrong.fault.mask & computed.in_range).any()]
     causes = _first(inside, below)
-    rest = [fault for fault in counted if not _kin(fault, causes, below)]
-    told = {id(fault.node) for fault in (*causes, *_first(rest, below))}
+    rest = [wrong for wrong in counted if not _kin(wrong, causes, below)]
+    told = {id(wrong.node) for wrong in (*causes, *_first(rest, below))}
     return tuple(
-        _operation(computed, fault, at_end=id(fault.node) in ends)
-        for fault in counted
-        if id(fault.node) in told
+        _operation(computed, wrong, at_end=id(wrong.node) in ends)
+        for wrong in counted
+        if id(wrong.node) in told
     )
+
+
+def lasting(
+    found: Iterable[WrongOperation], mended: Iterable[WrongOperation]
+) -> tuple[WrongOperation, ...]:
+    """The operations that still go wrong when what else is wrong is mended."""
+    left = {_spot(one.node, one.kind) for one in mended}
+    return tuple(one for one in found if _spot(one.node, one.kind) in left)
 
 
 def ends_of(root: Expression) -> tuple[Expression, ...]:
@@ -107,22 +132,72 @@ def ends_of(root: Expression) -> tuple[Expression, ...]:
     return tuple(found.values())
 
 
-def _counted(computed: Evaluation) -> list[Fault]:
+def _counted(computed: Evaluation) -> list[_Wrong]:
     """The faults that make a difference, operands before operators, one a node."""
-    found: dict[int, Fault] = {}
+    found: dict[int, _Wrong] = {}
     looked_at = 0
-    for fault in computed.curve.faults:
-        if fault.kind in UNDEFINED and not _harmless(fault):
-            found.setdefault(id(fault.node), fault)
-        elif fault.kind in REDUCED and looked_at < _MOST:
+    for wrong in _gathered(computed.curve.faults):
+        if wrong.fault.kind in UNDEFINED:
+            found.setdefault(id(wrong.node), wrong)
+        elif looked_at < _MOST:
             looked_at += 1
-            harm = _harm(computed, fault)
+            harm = _harm(computed, wrong)
             if harm.any():
-                mended = Fault(
-                    kind=fault.kind, node=fault.node, first_index=int(harm.argmax()), mask=harm
-                )
-                found.setdefault(id(fault.node), mended)
-    return list(found.values())
+                found.setdefault(id(wrong.node), _at(wrong, harm))
+    return _without_harmless(computed, list(found.values()))
+
+
+def _gathered(faults: Iterable[Fault]) -> Iterator[_Wrong]:
+    """The faults that may count; those of one unrolled loop as one."""
+    groups: dict[object, list[Fault]] = {}
+    for fault in faults:
+        if fault.kind in REDUCED or (fault.kind in UNDEFINED and not _harmless(fault)):
+            groups.setdefault(_spot(fault.node, fault.kind), []).append(fault)
+    for group in groups.values():
+        mask = reduce(np.logical_or, (fault.mask for fault in group))
+        nodes = tuple(fault.node for fault in group)
+        yield _at(_Wrong(fault=group[-1], nodes=nodes), mask)
+
+
+def _spot(node: Expression, kind: FaultKind) -> object:
+    """What the operators of one unrolled loop share; a node without a place shares nothing."""
+    if isinstance(node, Binary | Convert | Unary) and node.place.file:
+        operator = node.type if isinstance(node, Convert) else node.operator
+        return (node.place, kind, operator)
+    return id(node)
+
+
+def _at(wrong: _Wrong, mask: Mask) -> _Wrong:
+    fault = replace(wrong.fault, first_index=int(mask.argmax()), mask=mask)
+    return replace(wrong, fault=fault)
+
+
+def _without_harmless(computed: Evaluation, found: Sequence[_Wrong]) -> list[_Wrong]:
+    """The faults left when those are dropped whose wrap comes right once the others are mended."""
+    if len(found) < 2:
+        return list(found)
+    marked = {id(node) for wrong in found for node in wrong.nodes}
+    below = _below(computed.expression, marked)
+    return [
+        wrong
+        for wrong in found
+        if wrong.fault.kind in UNDEFINED or not _comes_right(computed, wrong, found, below)
+    ]
+
+
+def _comes_right(
+    computed: Evaluation, wrong: _Wrong, found: Iterable[_Wrong], below: "_Below"
+) -> bool:
+    """Whether the result is the exact one with every later fault mended and this one left."""
+    own = {id(node) for node in wrong.nodes}
+    under = own.union(*(below[id(node)] for node in wrong.nodes))
+    later = [node for one in found for node in one.nodes if id(node) not in under]
+    if not later:
+        return False
+    left = computed.of(widened(computed.expression, later))
+    with np.errstate(invalid="ignore"):
+        off = np.abs(left - computed.meant) > _least_harm(computed)
+    return not bool((off & wrong.fault.mask).any())
 
 
 def _harmless(fault: Fault) -> bool:
@@ -130,17 +205,21 @@ def _harmless(fault: Fault) -> bool:
     return fault.kind is FaultKind.DIVISION and not fault.node.type.is_integer
 
 
-def _harm(computed: Evaluation, fault: Fault) -> Mask:
+def _harm(computed: Evaluation, wrong: _Wrong) -> Mask:
     """The codes at which the result would be nearer to what is meant without the reduction.
 
     One count is no harm: modular arithmetic may come back exactly but for the way it rounds.
     """
-    without = computed.of(widened(computed.expression, [fault.node]))
+    without = computed.of(widened(computed.expression, wrong.nodes))
     with np.errstate(invalid="ignore"):
         off = np.abs(computed.held - computed.meant)
         better = np.abs(without - computed.meant) < off
-    counts = 1.0 if computed.expression.type.is_integer else 0.0
-    return np.asarray(fault.mask & better & (off > counts), dtype=np.bool_)
+    least = _least_harm(computed)
+    return np.asarray(wrong.fault.mask & better & (off > least), dtype=np.bool_)
+
+
+def _least_harm(computed: Evaluation) -> float:
+    return 1.0 if computed.expression.type.is_integer else 0.0
 
 
 _Below = dict[int, frozenset[int]]
@@ -159,23 +238,24 @@ def _below(root: Expression, marked: set[int]) -> _Below:
     return known
 
 
-def _first(faults: Sequence[Fault], below: _Below) -> list[Fault]:
-    nodes = {id(fault.node) for fault in faults}
-    return [fault for fault in faults if not below[id(fault.node)] & nodes]
+def _first(found: Sequence[_Wrong], below: _Below) -> list[_Wrong]:
+    nodes = {id(wrong.node) for wrong in found}
+    return [wrong for wrong in found if not below[id(wrong.node)] & nodes]
 
 
-def _kin(fault: Fault, told: Iterable[Fault], below: _Below) -> bool:
-    own = id(fault.node)
+def _kin(wrong: _Wrong, told: Iterable[_Wrong], below: _Below) -> bool:
+    own = id(wrong.node)
     return any(
         own == id(other.node) or own in below[id(other.node)] or id(other.node) in below[own]
         for other in told
     )
 
 
-def _operation(computed: Evaluation, fault: Fault, *, at_end: bool) -> WrongOperation:
+def _operation(computed: Evaluation, cause: _Wrong, *, at_end: bool) -> WrongOperation:
+    fault = cause.fault
     inside = fault.mask & computed.in_range
     index = int(inside.argmax()) if inside.any() else int(fault.mask.argmax())
-    exact = _exact(computed, fault)
+    exact = _exact(computed, cause)
     wrong = WrongOperation(
         node=fault.node,
         kind=fault.kind,
@@ -195,15 +275,15 @@ def _operation(computed: Evaluation, fault: Fault, *, at_end: bool) -> WrongOper
         exact=int(exact[index]),
         low=int(needed.min()),
         high=int(needed.max()),
-        operands=_operands(computed, fault, int(np.where(fault.mask, np.abs(exact), -1).argmax())),
+        operands=_operands(computed, cause, int(np.where(fault.mask, np.abs(exact), -1).argmax())),
     )
 
 
-def _exact(computed: Evaluation, fault: Fault) -> Codes | None:
+def _exact(computed: Evaluation, wrong: _Wrong) -> Codes | None:
     """What the operator gives in unbounded integers, at every code."""
-    if fault.kind in (FaultKind.DIVISION, FaultKind.SHIFT):
+    if wrong.fault.kind in (FaultKind.DIVISION, FaultKind.SHIFT):
         return None
-    values = _wide_values(computed, fault.node)
+    values = _wide_values(computed, wrong.node, wrong.nodes)
     if not np.issubdtype(values.dtype, np.integer):
         values = np.clip(np.nan_to_num(np.trunc(values)), -_FAR, _FAR)
     return values.astype(np.int64)
@@ -213,15 +293,19 @@ _FAR = 2.0**62
 """Floating values beyond this are shown as this: no integer type of a target holds them anyway."""
 
 
-def _operands(computed: Evaluation, fault: Fault, index: int) -> tuple[float, float] | None:
-    if not isinstance(fault.node, Binary):
+def _operands(computed: Evaluation, wrong: _Wrong, index: int) -> tuple[float, float] | None:
+    node = wrong.node
+    if not isinstance(node, Binary):
         return None
     left, right = (
-        _wide_values(computed, node)[index].item() for node in (fault.node.left, fault.node.right)
+        _wide_values(computed, side, (side, *wrong.nodes))[index].item()
+        for side in (node.left, node.right)
     )
     return left, right
 
 
-def _wide_values(computed: Evaluation, node: Expression) -> NDArray[np.generic]:
-    curve = evaluate(widened(node, [node]), computed.read, computed.limits)
+def _wide_values(
+    computed: Evaluation, node: Expression, nodes: Collection[Expression]
+) -> NDArray[np.generic]:
+    curve = evaluate(widened(node, nodes), computed.read, computed.limits)
     return np.broadcast_to(curve.values, computed.codes.shape)

@@ -149,8 +149,20 @@ def _combined(
         if not same(factor, missing) and not _interact(chosen):
             continue
         tries += 1
-        if search.fits({**values, **{option.key: option.repair.exact for option in chosen}}):
-            yield tuple(option.repair for option in chosen)
+        repairs = tuple(option.repair for option in chosen)
+        put = {option.key: option.repair.exact for option in chosen}
+        if one_unit(repairs) and search.fits({**values, **put}):
+            yield repairs
+
+
+def one_unit(repairs: Sequence[Repair]) -> bool:
+    """Whether all resistances are written in the same unit: a ratio of kohm and ohm is none."""
+    exponents = {
+        repair.meaning.exponent
+        for repair in repairs
+        if repair.meaning is not None and repair.meaning.term.role is Role.RESISTANCE
+    }
+    return len(exponents) <= 1
 
 
 def _interact(chosen: Sequence[_Option]) -> bool:

@@ -52,7 +52,8 @@ class Question:
     when one count of the result is `step` channel units (0 for a floating result). The code stands
     `shift` bits above the lowest bit of a word of `word_bits`. `coding` is the converter's.
     `count_stated` and `word_stated` are False where the board file left a default. `others` holds
-    the steady word of other channels' readings, by the channels' names.
+    the steady word of other channels' readings, by the channels' names. `summed` says that the
+    reading is a multiple of one code, as a sum of samples is.
     """
 
     conversion: Conversion
@@ -76,3 +77,4 @@ class Question:
     word_stated: bool = True
     stated: tuple[StatedRole, ...] = ()
     others: Mapping[str, int] = field(default_factory=dict)
+    summed: bool = False

@@ -6,7 +6,7 @@ from fractions import Fraction
 
 from bitweight.board.facts import Role
 from bitweight.judge.knobs import Knob, decades, is_power
-from bitweight.judge.meanings import Meaning, Scaling
+from bitweight.judge.meanings import Meaning, Scaling, Term
 
 RULE_ORDER = (
     "justification",
@@ -40,7 +40,7 @@ class Layout:
     """How a code stands in its word, as far as rules depend on it.
 
     `unit_stated` is False where the unit of the result is inferred: no power of ten is a fault
-    then.
+    then. `summed` says that the conversion adds readings, or is given a sum of them.
     """
 
     bits: int
@@ -49,6 +49,7 @@ class Layout:
     word_bits: int
     word_stated: bool
     unit_stated: bool
+    summed: bool = False
 
     @property
     def widths(self) -> tuple[int, ...]:
@@ -59,6 +60,10 @@ class Layout:
 def fact_repair(knob: Knob, meaning: Meaning, layout: Layout) -> Repair | None:
     """The constant takes the value of a fact; None where that says nothing against the constant."""
     if knob.holds(meaning.exact) or _contradicts_name(knob, meaning):
+        return None
+    if _is_scaled_one(knob, meaning):
+        return None
+    if meaning.term.scaling is Scaling.COUNT and not _may_be_sum(knob, meaning, layout):
         return None
     if _holds_already(knob, meaning):
         names_unit = knob.exponent is not None and knob.exponent == meaning.exponent
@@ -93,6 +98,22 @@ def shift_repairs(knob: Knob, layout: Layout) -> tuple[Repair, ...]:
     return tuple(repair for repair in repairs if repair.exact != knob.value)
 
 
+def mask_repair(knob: Knob, layout: Layout) -> Repair | None:
+    """A mask that drops bits of the code keeps them all."""
+    exact = Fraction((1 << layout.bits) - 1)
+    if not knob.masks or layout.shift or knob.value >= exact:
+        return None
+    term = Term(
+        role=Role.RESOLUTION,
+        rule="resolution",
+        name=f"mask of {layout.bits} bits",
+        value=exact,
+        scaling=Scaling.PLAIN,
+    )
+    meaning = Meaning(term=term, exact=exact, exponent=0, doublings=0)
+    return Repair(rule="resolution", knob=knob, meaning=meaning, exact=exact)
+
+
 def divisor_repair(knob: Knob, exact: Fraction, layout: Layout) -> Repair | None:
     """A power of two that divides the bare reading takes the code to where it stands."""
     if not knob.on_reading or not is_power(knob.value, 2) or exact != 1 << layout.shift:
@@ -114,6 +135,20 @@ def _contradicts_name(knob: Knob, meaning: Meaning) -> bool:
     if meaning.is_natural or hinted:
         return False
     return bool(knob.hints) or (knob.named and scaling is Scaling.QUANTITY)
+
+
+def _is_scaled_one(knob: Knob, meaning: Meaning) -> bool:
+    """Whether a nameless constant would be a bare power of ten: a ratio of 1 times 10, or 0.1."""
+    if meaning.is_natural or meaning.term.role in knob.hints or knob.stated is not None:
+        return False
+    return meaning.term.scaling is Scaling.RATIO and is_power(meaning.exact, 10)
+
+
+def _may_be_sum(knob: Knob, meaning: Meaning, layout: Layout) -> bool:
+    """Whether a count may stand for 2**n results: of a sum, of a word, or as good as written."""
+    if not meaning.doublings or layout.summed or meaning.doublings == layout.shift:
+        return True
+    return abs(knob.value - meaning.exact) <= 1
 
 
 def _holds_already(knob: Knob, meaning: Meaning) -> bool:

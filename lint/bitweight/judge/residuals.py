@@ -83,14 +83,14 @@ def is_level(question: Question) -> bool:
 
 
 def bends(question: Question, view: View) -> bool:
-    """Whether the code leaves its own straight stretch otherwise than by a clamp or a jump."""
+    """Whether the code leaves its own straight stretch otherwise than by a clamp."""
     at = _sample(question)
     value = _real_values(question, at)
     line = _along(view.line, question.codes[at].astype(np.float64))
     distance = value - line
     size = max(1.0, float(np.abs(line).max()))
     off = np.isfinite(value) & (np.abs(distance) > _STRAIGHT * size)
-    if not off.any() or _is_level(value[off], size) or _is_level(distance[off], size):
+    if not off.any() or _is_level(value[off], size):
         return False
     return _leaves(question, view.scale, at[off], distance[off] * nearest(view.scale, 64))
 

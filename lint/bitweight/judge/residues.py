@@ -58,7 +58,8 @@ def _sentences(case: Case, judgement: Judgement, found: str, expected: str) -> I
     else:
         yield f"the code has {_article(kind)} of {found}, the board wants {expected}"
     worst = judgement.worst_index
-    yield f"{off(float(judgement.error[worst]), judgement.lsb, case.channel)} at code {int(judgement.codes[worst])}"
+    reads = off(float(judgement.error[worst]), judgement.lsb, case.channel)
+    yield f"{reads} at code {int(judgement.codes[worst])}"
     culprit = judgement.explanation.culprit
     if culprit is not None:
         yield f"{culprit.text} would be right as {culprit.expected}"

@@ -19,7 +19,7 @@ from bitweight.judge.meanings import Scaling, nearest, snaps
 from bitweight.judge.questions import BoardLine, Question, StatedRole
 from bitweight.judge.repairs import Repair, fact_repair
 from bitweight.judge.residuals import bends, culprit, curve_leaves, is_level, residual
-from bitweight.judge.substitutions import steadied
+from bitweight.judge.substitutions import corrected, steadied
 from bitweight.judge.views import Answer, View, smallest_answer, views
 from bitweight.judge.wordings import cancelling_constants, wrong_constants
 
@@ -82,7 +82,15 @@ def _steadied(question: Question) -> Question:
 def _wrong(question: Question, answer: Answer) -> Explanation:
     view = answer.view
     found = wrong_constants(question, _bench(question, view), answer.repairs)
-    return _with_line(question, view, Explanation(wrong=found, roles=_roles(view, answer.repairs)))
+    values = {repair.knob.key: repair.exact for repair in answer.repairs if repair.knob}
+    lacking = any(one.rule == "justification" and not one.knob for one in answer.repairs)
+    explanation = Explanation(
+        wrong=found,
+        roles=_roles(view, answer.repairs),
+        mended=corrected(view.expression, values),
+        moved=question.shift if lacking else 0,
+    )
+    return _with_line(question, view, explanation)
 
 
 def _kept(question: Question, view: View, *, explained: bool) -> Explanation:

@@ -33,6 +33,7 @@ class ChannelRule:
     source: str
     check: Callable[[Case, Facts], Iterable[Finding]]
     levels: str = BY_EFFECT
+    mend: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -45,6 +46,7 @@ class TreeRule:
     source: str
     check: Callable[[Facts], Iterable[Finding]]
     levels: str = BY_EFFECT
+    mend: str = ""
 
 
 Rule = ChannelRule | TreeRule

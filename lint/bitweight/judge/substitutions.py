@@ -5,6 +5,7 @@ An expression enters; one whose nodes are rebuilt above what changed leaves, the
 
 from collections.abc import Mapping
 from dataclasses import replace
+from fractions import Fraction
 
 from bitweight.arithmetic.building import Folder
 from bitweight.arithmetic.expressions import (
@@ -22,8 +23,9 @@ from bitweight.arithmetic.expressions import (
     walk,
 )
 from bitweight.arithmetic.literals import exact_value
-from bitweight.arithmetic.scalars import wrap
+from bitweight.arithmetic.scalars import nearest, wrap
 from bitweight.arithmetic.types import CType, DataModel
+from bitweight.arithmetic.words import words
 from bitweight.judge.knobs import Key, bare, leaf_key
 
 
@@ -32,13 +34,23 @@ def grouped(
 ) -> tuple[Expression, dict[Key, tuple[Leaf, ...]]]:
     """The expression with computed counts like `(1 << 12) - 1` as single constants.
 
-    Returns also the constants inside each, by the key of the constant that stands for it.
+    A quantity shifted right by a constant is divided by such a count. Returns also the constants
+    inside each, by the key of the constant that stands for it.
     """
     folder = Folder(model)
+    order = tuple(walk(expression))
+    bits = words(order)
     rebuilt: dict[int, Expression] = {}
     inside: dict[Key, tuple[Leaf, ...]] = {}
-    for node in walk(expression):
+    for node in order:
         rebuilt[id(node)] = _rebuilt(node, rebuilt)
+        if isinstance(node, Binary) and id(node.left) not in bits:
+            divisor = _divisor(node)
+            if divisor is not None and divisor.leaf is not None:
+                inside[leaf_key(divisor.leaf)] = _leaves(node.right)
+                quotient = replace(node, operator="/", right=divisor)
+                rebuilt[id(node)] = replace(quotient, left=rebuilt[id(node.left)])
+                continue
         if isinstance(node, Binary) and _is_count(node):
             value, leaves = folder.constant(node), _leaves(node)
             if isinstance(value, int) and value > 1 and leaves:
@@ -46,6 +58,17 @@ def grouped(
                 inside[leaf_key(leaf)] = leaves
                 rebuilt[id(node)] = Literal(value=value, type=node.type, leaf=leaf)
     return rebuilt[id(expression)], inside
+
+
+def _divisor(node: Binary) -> Literal | None:
+    """The power of two by which a shift to the right divides, where one constant says it."""
+    count = bare(node.right)
+    if node.operator != ">>" or not isinstance(count, Literal) or count.leaf is None:
+        return None
+    if not 1 < count.value < node.type.bits - node.type.signed:
+        return None
+    value = 1 << int(count.value)
+    return Literal(value=value, type=node.type, leaf=replace(count.leaf, text=str(value)))
 
 
 def _is_count(node: Binary) -> bool:
@@ -117,3 +140,25 @@ def replaced(expression: Expression, literals: dict[Key, Literal]) -> Expression
         else:
             rebuilt[id(node)] = _rebuilt(node, rebuilt)
     return rebuilt[id(expression)]
+
+
+def corrected(expression: Expression, values: Mapping[Key, Fraction]) -> Expression | None:
+    """The expression with other values for some constants; None where a type cannot hold one."""
+    found: dict[Key, Literal] = {}
+    for node in walk(expression):
+        if not isinstance(node, Literal) or node.leaf is None:
+            continue
+        key = leaf_key(node.leaf)
+        if key in values:
+            value = _held(values[key], node.type)
+            if value is None:
+                return None
+            found[key] = replace(node, value=value)
+    return replaced(expression, found)
+
+
+def _held(value: Fraction, type_: CType) -> int | float | None:
+    if not type_.is_integer:
+        return nearest(value, type_.bits)
+    whole = round(value)
+    return whole if type_.low <= whole <= type_.high else None

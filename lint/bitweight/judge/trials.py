@@ -16,6 +16,7 @@ from bitweight.judge.repairs import (
     Repair,
     divisor_repair,
     fact_repair,
+    is_likely,
     power_repair,
     shift_repairs,
 )
@@ -69,6 +70,20 @@ def is_settled(search: Search, knob: Knob) -> bool:
     return any(
         meaning.is_natural and (meaning.term.role in knob.hints or not knob.hints)
         for meaning in snaps(knob, search.terms)
+    )
+
+
+def is_fact_already(search: Search, repair: Repair) -> bool:
+    """Whether a constant is exactly another fact, and its name says nothing for the new meaning.
+
+    The middle of a reference and the like are no facts here: they move an offset, no gain.
+    """
+    knob, meaning = repair.knob, repair.meaning
+    if knob is None or meaning is None or is_likely(repair) or repair.rule == "unit-prefix":
+        return False
+    return any(
+        one.is_natural and one.exact == knob.value and one.term.role not in OFFSETS
+        for one in snaps(knob, search.terms)
     )
 
 
@@ -128,5 +143,5 @@ def _repairs_at(search: Search, knob: Knob, root: Fraction) -> Iterator[Repair]:
     yield from (repair for repair in (special, power) if repair is not None)
     for meaning in matches(knob, root, search.terms):
         repair = fact_repair(knob, meaning, search.layout)
-        if repair is not None:
+        if repair is not None and not is_fact_already(search, repair):
             yield replace(repair, settled=settled)

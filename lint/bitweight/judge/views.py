@@ -10,15 +10,24 @@ from fractions import Fraction
 
 import numpy as np
 
-from bitweight.arithmetic.expressions import Expression, Leaf
-from bitweight.judge.knobs import Key, Knob, decades, knobs
-from bitweight.judge.meanings import terms
+from bitweight.arithmetic.expressions import (
+    Binary,
+    Code,
+    Expression,
+    Leaf,
+    Literal,
+    children,
+    walk,
+)
+from bitweight.board.facts import Role
+from bitweight.judge.knobs import Key, Knob, decades, knobs, leaf_key
+from bitweight.judge.meanings import resistances, terms
 from bitweight.judge.questions import BoardLine, Question
-from bitweight.judge.repairs import Layout, Repair, is_doubtful, rank
+from bitweight.judge.repairs import Layout, Repair, is_doubtful, mask_repair, rank
 from bitweight.judge.roots import Target
 from bitweight.judge.searches import smallest
 from bitweight.judge.sketches import RealLine, Sketch, sketch
-from bitweight.judge.substitutions import grouped
+from bitweight.judge.substitutions import grouped, replaced
 from bitweight.judge.trials import Search
 
 _MOST_WRONG = 3
@@ -76,9 +85,14 @@ def smallest_answer(ways: Sequence[View]) -> Answer | None:
 def _answer(view: View, most: int) -> Answer | None:
     left = most - _cost(view.given)
     solution = smallest(view.search, left) if left >= 0 else None
-    if solution is None:
+    if solution is None or (solution.repairs and any(map(_is_free_power, view.given))):
         return None
     return Answer(view=view, repairs=(*view.given, *solution.repairs))
+
+
+def _is_free_power(repair: Repair) -> bool:
+    """Whether a power of ten is taken that no constant carries: with others it fits by chance."""
+    return repair.rule == "unit-prefix" and repair.knob is None
 
 
 def _cost(repairs: Sequence[Repair]) -> int:
@@ -87,7 +101,7 @@ def _cost(repairs: Sequence[Repair]) -> int:
     Named constants that contradict the board go before it.
     """
     return sum(
-        2 if is_doubtful(repair) or (repair.rule == "unit-prefix" and not repair.knob) else 1
+        2 if is_doubtful(repair) or _is_free_power(repair) else 1
         for repair in repairs
     )
 
@@ -112,8 +126,31 @@ def views(question: Question) -> Iterator[View]:
         lacking = Repair(rule="justification")
         for view in _plain_views(question, moved) if moved is not None else ():
             yield replace(view, given=(lacking,))
+    yield from _unmasked_views(question, plain)
     if question.scale is not None:
         yield from filter(None, map(_other_prefix, list(_plain_views(question, plain))))
+
+
+def _unmasked_views(question: Question, plain: _Reading) -> Iterator[View]:
+    """The code with the masks widened that drop bits of it."""
+    layout = _layout(question)
+    masks = [repair for knob in plain.knobs if (repair := mask_repair(knob, layout)) is not None]
+    if not masks:
+        return
+    wide = _widened(plain.expression, {one.knob.key: one.exact for one in masks if one.knob})
+    whole = _reading(question, wide, {}, 0)
+    for view in _plain_views(question, whole) if whole is not None else ():
+        yield replace(view, expression=plain.expression, given=tuple(masks))
+
+
+def _widened(expression: Expression, masks: Mapping[Key, Fraction]) -> Expression:
+    """The expression with other masks, spelled as before so that they are the same constants."""
+    found = {
+        leaf_key(node.leaf): replace(node, value=int(masks[leaf_key(node.leaf)]))
+        for node in walk(expression)
+        if isinstance(node, Literal) and node.leaf is not None and leaf_key(node.leaf) in masks
+    }
+    return replaced(expression, found)
 
 
 def _reading(
@@ -128,8 +165,29 @@ def _reading(
     line = None if drawn is None else drawn.line({})
     if drawn is None or line is None or not line.gain:
         return None
-    found = knobs(expression, question.stated, inside)
+    found = _with_company(knobs(expression, question.stated, inside), question)
     return _Reading(expression=expression, knobs=found, sketch=drawn, line=line)
+
+
+def _with_company(found: tuple[Knob, ...], question: Question) -> tuple[Knob, ...]:
+    """The constants, marked where no resistance stands beside them and no name speaks of one."""
+    known = terms(question.facts, question.lines[0].count)
+    said = [resistances(knob, known) for knob in found]
+    named = [_speaks_of_resistance(knob) for knob in found]
+    return tuple(
+        replace(knob, lone=not _has_company(index, said, named)) for index, knob in enumerate(found)
+    )
+
+
+def _speaks_of_resistance(knob: Knob) -> bool:
+    stated = knob.stated is not None and knob.stated.role == Role.RESISTANCE.value
+    return stated or Role.RESISTANCE in knob.hints
+
+
+def _has_company(index: int, said: Sequence[frozenset[str]], named: Sequence[bool]) -> bool:
+    """Whether the constant's name or another constant speaks for its being a resistance."""
+    others = [one for at, one in enumerate(said) if at != index]
+    return named[index] or any(named) or any(one - said[index] or len(one) > 1 for one in others)
 
 
 def _plain_views(question: Question, reading: _Reading) -> Iterator[View]:
@@ -188,7 +246,20 @@ def _layout(question: Question) -> Layout:
         word_bits=question.word_bits,
         word_stated=question.word_stated,
         unit_stated=question.scale is not None,
+        summed=question.summed or _adds_readings(question.conversion.expression),
     )
+
+
+def _adds_readings(expression: Expression) -> bool:
+    """Whether two terms of a sum hold a reading: samples that are averaged."""
+    holding: set[int] = set()
+    for node in walk(expression):
+        below = [id(child) in holding for child in children(node)]
+        if isinstance(node, Binary) and node.operator == "+" and all(below):
+            return True
+        if isinstance(node, Code) or any(below):
+            holding.add(id(node))
+    return False
 
 
 def _other_prefix(view: View) -> View | None:

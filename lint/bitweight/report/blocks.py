@@ -4,18 +4,18 @@ One finding and what surrounds it go in, styled lines come out.
 """
 
 import re
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping
 
 from rich.cells import cell_len
 from rich.text import Text
 
 from bitweight.judge.cases import Case
-from bitweight.judge.explanations import EffectPoint
 from bitweight.judge.findings import Finding, Level
+from bitweight.report.consequences import consequence
 from bitweight.report.drawings import Ink
-from bitweight.report.rulings import BOLD, entry
+from bitweight.report.rulings import BOLD, STACKED, entry
 from bitweight.report.sides import place_text
-from bitweight.report.texts import figure, shown, wrapped
+from bitweight.report.texts import ELIDED, shown, wrapped
 
 _LEVEL_STYLES = {Level.ERROR: "bold red", Level.WARNING: "bold yellow", Level.NOTE: "bold cyan"}
 
@@ -85,17 +85,19 @@ def _source(finding: Finding, sources: Sources, width: int, ink: Ink) -> Iterato
     if line is None or not line.strip():
         return
     before, culprit, after = _split(line.rstrip("\r\n"), finding)
-    room = width - 16
+    margin = _INDENT + (0 if width < STACKED else 10)
+    room = width - margin - 2
     culprit = _cut(culprit, room)
     before = _tail(before.lstrip(), room - cell_len(culprit))
     after = _cut(after, max(0, room - cell_len(before) - cell_len(culprit)))
-    row = Text(f"{' ' * _INDENT}{'code':<10}", style="dim")
+    label = "" if width < STACKED else "code"
+    row = Text(f"{' ' * _INDENT}{label:<{margin - _INDENT}}", style="dim")
     row.append(before, style="not dim")
     row.append(culprit, style="not dim bold")
     row.append(after, style="not dim")
     yield row
     marks = ink.under * max(1, cell_len(culprit))
-    yield Text(" " * (_INDENT + 10 + cell_len(before)) + marks, style=_LEVEL_STYLES[finding.level])
+    yield Text(" " * (margin + cell_len(before)) + marks, style=_LEVEL_STYLES[finding.level])
 
 
 def _split(line: str, finding: Finding) -> tuple[str, str, str]:
@@ -115,36 +117,23 @@ def _shown(text: str) -> str:
 
 
 def _cut(text: str, room: int) -> str:
-    return text if len(text) <= room else text[: max(0, room - 2)] + ".."
+    if len(text) <= room:
+        return text
+    mark = ELIDED[: max(0, room)]
+    return text[: max(0, room - len(mark))] + mark
 
 
 def _tail(text: str, room: int) -> str:
     if len(text) <= max(0, room):
         return text
-    return ".." + text[len(text) - max(0, room - 12) :] if room > 14 else ""
+    return ELIDED + text[len(text) - max(0, room - 13) :] if room > 16 else ""
 
 
 def _effect(finding: Finding, case: Case | None, width: int) -> Iterator[Text]:
-    """What this cause does alone to the reading at the bottom, middle and top of the range."""
-    if case is None or case.judgement is None:
-        return
-    points = _own_effect(finding, case)
-    unit = case.channel.unit.text
-    names: Sequence[str] = ("bottom", "middle", "top") if len(points) == 3 else [""] * len(points)
-    parts = [
-        f"{name} {figure(point.error, unit, digits=3, sign=True)}".strip()
-        for name, point in zip(names, points, strict=True)
-    ]
-    if parts:
-        yield from _entry("effect", ", ".join(parts), width)
-
-
-def _own_effect(finding: Finding, case: Case) -> tuple[EffectPoint, ...]:
-    for each in case.each:
-        for wrong in () if each.judgement is None else each.judgement.explanation.wrong:
-            if (wrong.rule, wrong.place) == (finding.rule, finding.place):
-                return wrong.effect
-    return ()
+    """What this cause does alone to the reading."""
+    text = "" if case is None else consequence(finding, case)
+    if text:
+        yield from _entry("effect", text, width)
 
 
 def _mend(finding: Finding, width: int) -> Iterator[Text]:
@@ -159,9 +148,12 @@ def _mend(finding: Finding, width: int) -> Iterator[Text]:
 
 
 def _related(finding: Finding, width: int) -> Iterator[Text]:
-    for number, one in enumerate(finding.related[:_MOST_RELATED]):
-        text = f"{place_text(one.place.file, one.place.line)}: {one.message}"
-        yield from _entry("see" if number == 0 else "", text, width)
-    hidden = len(finding.related) - _MOST_RELATED
+    """The places that belong to it: of many the first ones and the last, which is the result."""
+    texts = [
+        f"{place_text(one.place.file, one.place.line)}: {one.message}" for one in finding.related
+    ]
+    hidden = len(texts) - _MOST_RELATED
     if hidden > 0:
-        yield from _entry("", f"and {hidden} more", width)
+        texts[_MOST_RELATED - 1 : -1] = [f"{ELIDED} {hidden} more {ELIDED}"]
+    for number, text in enumerate(texts):
+        yield from _entry("see" if number == 0 else "", text, width)

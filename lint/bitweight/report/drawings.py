@@ -4,7 +4,7 @@ Arrays of one channel go in, lines of text come out. Nothing is smoothed: every 
 code without a value leaves its place empty, what lies beyond the rows is marked at their edge.
 """
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 from enum import Enum
 
@@ -71,8 +71,9 @@ class Curve:
     """A drawn curve.
 
     `top` and `bottom` are the values of the outermost rows, in the unit of the arrays; `zero` is
-    the row of zero. `outside` has an `x` in each column with a code outside the band. `clipped`:
-    some values lie beyond the rows (marks `^`, `v`). `gaps`: some codes have no value.
+    the row of zero. `thin` says that the whole band lies within one row. `outside` has an `x` in
+    each column with a code outside the band. `clipped`: some values lie beyond the rows (marks `^`,
+    `v`). `gaps`: some codes have no value.
     """
 
     rows: tuple[str, ...]
@@ -82,6 +83,7 @@ class Curve:
     outside: str
     clipped: bool
     gaps: bool
+    thin: bool
 
 
 def curve(error: Array, allowed: Array, *, width: int, height: int, ink: Ink) -> Curve:
@@ -112,6 +114,7 @@ def curve(error: Array, allowed: Array, *, width: int, height: int, ink: Ink) ->
         outside="".join(np.where(over, "x", " ")),
         clipped=bool(above.any() or below.any()),
         gaps=bool(gaps.any()),
+        thin=_is_thin(allowed, scale, ink),
     )
 
 
@@ -135,7 +138,7 @@ def drawing(
     labels = figures((top, 0.0, bottom), unit, resolution=(top - bottom) / 50, sign=True)
     margin = max(map(len, labels)) + 1
     drawn = curve(error, allowed, width=width - margin - 1, height=height, ink=ink)
-    legend = _legend(drawn, _band_text(allowed, unit), ink)
+    legend = _legend(drawn, _band_text(allowed, unit), ink, width - margin - 1)
     return tuple(line.rstrip() for line in _labelled(drawn, labels, margin, codes, legend))
 
 
@@ -162,17 +165,21 @@ def _bar(share: float, ink: Ink) -> str:
 
 
 def _labelled(
-    drawn: Curve, labels: tuple[str, ...], margin: int, codes: NDArray[np.int64], legend: str
+    drawn: Curve,
+    labels: tuple[str, ...],
+    margin: int,
+    codes: NDArray[np.int64],
+    legend: Iterable[str],
 ) -> Iterator[str]:
     at = {0: labels[0], len(drawn.rows) - 1: labels[2], drawn.zero: labels[1]}
     for number, row in enumerate(drawn.rows):
         yield f"{at.get(number, ''):>{margin - 1}} |{row}"
     if "x" in drawn.outside:
-        yield f"{'outside':>{margin - 1}} |{drawn.outside}"
+        yield f"{'too far':>{margin - 1}} |{drawn.outside}"
     first, last = f"code {codes[0]}", f"code {codes[-1]}"
     blank = " " * (margin + 1)
     yield f"{blank}{first}{last:>{len(drawn.outside) - len(first)}}"
-    yield blank + legend
+    yield from (blank + line for line in legend)
 
 
 def _band_text(allowed: Array, unit: str) -> str:
@@ -181,13 +188,17 @@ def _band_text(allowed: Array, unit: str) -> str:
     return narrow if narrow == wide else f"{narrow} to {wide}"
 
 
-def _legend(drawn: Curve, band: str, ink: Ink) -> str:
+def _legend(drawn: Curve, band: str, ink: Ink, room: int) -> tuple[str, ...]:
+    """What the marks mean, on one line where there is room."""
     parts = [f"{ink.edge * 3} allowed {band}"]
+    if drawn.thin:
+        parts[0] += " (too thin to draw)"
     if drawn.clipped:
         parts.append("^ v beyond the drawing")
     if drawn.gaps:
         parts.append("blank: no value")
-    return "   ".join(parts)
+    line = "   ".join(parts)
+    return (line,) if len(line) <= room else tuple(part[:room] for part in parts)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -275,6 +286,15 @@ def _characters(dots: Mask, ink: Ink) -> NDArray[np.str_]:
     return np.array(
         [[chr(0x2800 + pattern) if pattern else " " for pattern in row] for row in patterns]
     )
+
+
+def _is_thin(allowed: Array, scale: _Scale, ink: Ink) -> bool:
+    """Whether no row lies between the edges of the band anywhere."""
+    widest = float(allowed.max())
+    if not widest <= scale.top or not -widest >= scale.bottom:
+        return False
+    high, low = scale.dot(np.array([widest, -widest])) // ink.dots[0]
+    return bool(low - high < 1)
 
 
 def _edges(allowed: Array, scale: _Scale, width: int, height: int, ink: Ink) -> NDArray[np.str_]:

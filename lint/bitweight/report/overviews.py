@@ -12,7 +12,7 @@ from bitweight.judge.cases import Case, Status
 from bitweight.judge.findings import Finding
 from bitweight.judge.outcomes import Outcome
 from bitweight.report.drawings import Ink
-from bitweight.report.rulings import BOLD, STATUS_STYLES, entry, table_row
+from bitweight.report.rulings import BOLD, STACKED, STATUS_STYLES, entry, table_row
 from bitweight.report.sides import worst_texts
 from bitweight.report.texts import shown, wrapped
 
@@ -47,7 +47,8 @@ def overview(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterat
     yield Text(shown(board.file), style="dim")
     yield Text(ink.light * width, style="dim")
     columns = _columns(outcome.facts.cases, width)
-    yield table_row(("", *columns, "findings"), tuple(columns.values()), width)
+    if width >= STACKED:
+        yield table_row(("", *columns, "findings"), tuple(columns.values()), width)
     for case in outcome.facts.cases:
         status = outcome.statuses[case.channel.name]
         own = [
@@ -55,7 +56,10 @@ def overview(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterat
             for index, finding in enumerate(outcome.findings)
             if case.channel.name in finding.channels
         ]
-        yield from _overview_rows(case, status, _by_level(own), columns, width)
+        if width < STACKED:
+            yield from _stacked_rows(case, status, _by_level(own), width)
+        else:
+            yield from _overview_rows(case, status, _by_level(own), columns, width)
     rest = elsewhere(outcome)
     if rest:
         listed = _by_level([(outcome.findings[index], numbers[index]) for index in rest])
@@ -78,6 +82,20 @@ def _columns(cases: Sequence[Case], width: int) -> Mapping[str, int]:
     if width < 76:
         del columns["allowed"]
     return columns
+
+
+def _stacked_rows(case: Case, status: Status, findings: str, width: int) -> Iterator[Text]:
+    """A channel on its own lines, for a narrow sheet."""
+    first, *rest = wrapped(f"{case.channel.name}: {status.value}", width - 2)
+    yield Text(f"{_MARKS[status]:<2}{first}", style=STATUS_STYLES[status])
+    for line in rest:
+        yield Text(f"  {line}", style=STATUS_STYLES[status])
+    if case.judgement is not None:
+        worst, allowed = worst_texts(case.judgement)
+        yield from entry("worst", f"{worst}, allowed {allowed}", width, indent=4)
+    if findings != "-":
+        for line in wrapped(findings, width - 4):
+            yield Text(f"    {line}")
 
 
 def _overview_rows(

@@ -60,6 +60,7 @@ def _channel(case: Case, outcome: Outcome) -> Record:
         "worst_error": None if judgement is None else _worst(judgement),
         "allowed_error": None if judgement is None else _allowed(judgement),
         "points": [] if judgement is None else _points(judgement),
+        **({"code_step": judgement.stride} if judgement and judgement.stride > 1 else {}),
     }
 
 

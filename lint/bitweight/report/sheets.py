@@ -6,7 +6,6 @@ stand in words, so that nothing is lost without colour; text from a tree is a li
 
 from collections.abc import Iterator
 from dataclasses import dataclass
-from itertools import zip_longest
 
 from rich.console import Console, ConsoleOptions, RenderResult
 from rich.text import Text
@@ -17,7 +16,7 @@ from bitweight.judge.outcomes import Outcome
 from bitweight.report.blocks import finding_block, reminder
 from bitweight.report.drawings import Ink, bars, drawing
 from bitweight.report.overviews import Numbers, elsewhere, numbered, overview
-from bitweight.report.rulings import BOLD, entry, heading, table_row
+from bitweight.report.rulings import BOLD, STACKED, entry, heading
 from bitweight.report.sides import (
     chain_text,
     full_scale_text,
@@ -25,12 +24,12 @@ from bitweight.report.sides import (
     measures_text,
     place_text,
     reference_text,
-    rows,
     worst_texts,
 )
-from bitweight.report.texts import CAUTION, accepted, closing, figure, figures, wrapped
+from bitweight.report.tables import points_table, sides_table
+from bitweight.report.texts import CAUTION, accepted, closing, figure, wrapped, wrapped_formula
 
-NARROWEST, WIDEST = 60, 120
+NARROWEST, WIDEST = 30, 120
 """Columns a sheet is laid out for; a terminal outside gets the nearer bound."""
 
 _HEIGHT = 7
@@ -83,7 +82,9 @@ def _sheet(case: Case, outcome: Outcome, numbers: Numbers, width: int, ink: Ink)
     elif status is Status.VERIFIED:
         yield from _compact(case, case.judgement, width, ink)
     else:
-        yield from _full(case, case.judgement, width, ink)
+        own = [one for one in outcome.findings if case.channel.name in one.channels]
+        yield from sides_table(case, case.judgement, own, width)
+        yield from _full(case.judgement, width, ink)
     for index, finding in sorted(enumerate(outcome.findings), key=lambda one: numbers[one[0]]):
         if case.channel.name not in finding.channels:
             continue
@@ -120,53 +121,48 @@ def _compact(case: Case, judgement: Judgement, width: int, ink: Ink) -> Iterator
         gain_text(judgement.hardware, unit),
     )
     yield from entry("board", "; ".join(sides), width)
-    formula = f"{_formula(judgement)}; {gain_text(judgement.firmware, unit)}"
-    yield from entry("firmware", formula, width)
-    yield from entry("", _conversion_place(judgement), width)
+    yield from _formula("firmware", judgement, width)
+    place = f"{gain_text(judgement.firmware, unit)}, {_conversion_place(judgement)}"
+    yield from entry("", place, width)
     yield from entry("error", _error_text(judgement), width)
+    yield from _share(judgement, width, ink)
+
+
+def _share(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
+    """One line of bars, and what they are."""
     held = judgement.in_range
     codes = judgement.codes[held]
     if len(codes):
-        line = bars(judgement.error[held], judgement.allowed[held], width=width - 38, ink=ink)
-        ends = f"code {codes[0]} {line} {codes[-1]}"
-        yield from entry("of allowed", ends, width)
+        margin = 4 if width < STACKED else 14
+        room = width - margin - 2
+        line = bars(judgement.error[held], judgement.allowed[held], width=room, ink=ink)
+        text = f"share of allowed error, code {codes[0]} to {codes[-1]}"
+        yield from entry("drawn", text, width)
+        yield Text(" " * margin + line)
 
 
-def _full(case: Case, judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
-    yield from _sides(case, judgement, width)
-    yield from entry("formula", _formula(judgement), width)
+def _full(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
+    yield from _formula("formula", judgement, width)
     yield from entry("", _conversion_place(judgement), width)
     for assumption in judgement.conversion.assumed:
         yield from entry("assumed", assumption, width)
     yield from entry("error", _error_text(judgement), width)
-    yield from _drawn(judgement, width, ink)
-    yield from _points(judgement, width)
+    if width < STACKED:
+        yield from _share(judgement, width, ink)
+    else:
+        yield from _drawn(judgement, width, ink)
+    yield from points_table(judgement, width)
 
 
-def _sides(case: Case, judgement: Judgement, width: int) -> Iterator[Text]:
-    """The board beside the firmware; `=` and `<>` say whether constants agree."""
-    column = (width - 20) // 2
-    widths = (10, column, 2)
-    yield table_row(("", "", "board", "", "firmware"), widths, width, style="dim")
-    for row in rows(case, judgement):
-        sign = {None: "", True: "=", False: "<>"}[row.agrees]
-        texts = zip_longest(
-            (row.label,),
-            wrapped(row.board, column),
-            (sign,),
-            wrapped(row.firmware, column),
-            fillvalue="",
-        )
-        style = BOLD if row.agrees is False else ""
-        for cells in texts:
-            yield table_row(("", *cells), widths, width, style=style)
-
-
-def _formula(judgement: Judgement) -> str:
+def _formula(label: str, judgement: Judgement, width: int) -> Iterator[Text]:
+    """The formula as the code has it, broken before operators."""
     conversion = judgement.conversion
-    if conversion.formula.startswith(conversion.result):
-        return conversion.formula
-    return f"{conversion.result} = {conversion.formula}"
+    text = conversion.formula
+    if not text.startswith(conversion.result):
+        text = f"{conversion.result} = {text}"
+    margin = 6 + len(label) if width < STACKED else 14
+    for number, line in enumerate(wrapped_formula(text, width - margin)):
+        yield from entry(label if number == 0 else "", line, width)
 
 
 def _conversion_place(judgement: Judgement) -> str:
@@ -177,12 +173,17 @@ def _conversion_place(judgement: Judgement) -> str:
 def _error_text(judgement: Judgement) -> str:
     worst, allowed = worst_texts(judgement)
     span = float(judgement.ideal.span)
-    share = 100 * float(judgement.error[judgement.worst_index]) / span if span else 0.0
+    error = judgement.settled(float(judgement.error[judgement.worst_index]))
+    share = 100 * error / span if span else 0.0
     code = judgement.codes[judgement.worst_index]
     origin = {"board": "board file", "budget": "uncertainty budget"}
     source = origin.get(judgement.allowed_from, judgement.allowed_from)
     percent = figure(share, "%", digits=3, sign=True)
-    return f"worst {worst} at code {code} ({percent} of span); allowed {allowed} ({source})"
+    looked_at = f", looking at every {judgement.stride}th code" if judgement.stride > 1 else ""
+    return (
+        f"worst, all together: {worst} at code {code} ({percent} of span){looked_at}; "
+        f"allowed {allowed} ({source})"
+    )
 
 
 def _drawn(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
@@ -197,28 +198,6 @@ def _drawn(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
         ink=ink,
     ):
         yield Text(f"  {line}")
-
-
-def _points(judgement: Judgement, width: int) -> Iterator[Text]:
-    """The reading at the bottom, middle and top of the range, both sides and the difference."""
-    unit, points = judgement.ideal.channel.unit.text, judgement.points
-    if not points:
-        return
-    resolution = judgement.lsb / 3
-    sides = figures(
-        [*(point.hardware for point in points), *(point.firmware for point in points)],
-        unit,
-        resolution=resolution,
-    )
-    count = len(points)
-    widths = (10, 8, 12, 12)
-    titles = ("", "reading", "code", "board", "firmware", "error")
-    yield table_row(titles, widths, width, style="dim")
-    for index, point in enumerate(points):
-        error = figure(point.firmware - point.hardware, unit, digits=3, sign=True)
-        name = ("bottom", "middle", "top")[index] if count == 3 else ""
-        cells = ("", name, str(point.at_count), sides[index], sides[count + index], error)
-        yield table_row(cells, widths, width)
 
 
 def _outside(outcome: Outcome, numbers: Numbers, width: int, ink: Ink) -> Iterator[Text]:

@@ -3,64 +3,13 @@
 A case goes in, short texts come out; sheets arrange them. Nothing is judged here.
 """
 
-from collections.abc import Container, Iterable, Mapping, Sequence
-from dataclasses import dataclass
-from itertools import starmap
-
-from bitweight.arithmetic.expressions import Leaf
 from bitweight.board.chains import ideal, not_computed
 from bitweight.board.hardware import Channel, Converter
 from bitweight.board.parts import Part, Share
 from bitweight.board.stages import Amplifier, Divider, Linear, LowPass, Shunt, Stage
 from bitweight.judge.cases import Case, Judgement, Side
-from bitweight.places import Place
 from bitweight.quantities import spelled
 from bitweight.report.texts import figure, number, shown
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Row:
-    """One line of the comparison; `agrees` is None where there are no constants to compare."""
-
-    label: str
-    board: str
-    firmware: str
-    agrees: bool | None = None
-
-
-def rows(case: Case, judgement: Judgement) -> tuple[Row, ...]:
-    """Reference, full-scale count, chain, gain and offset, the board's beside the firmware's."""
-    channel = case.channel
-    explained = judgement.explanation
-    wrong = {one.place for one in (*explained.wrong, *explained.cancelling)}
-    groups = _grouped(explained.roles, wrong)
-    constants = (
-        ("reference", reference_text(channel.converter)),
-        ("full scale", full_scale_text(channel.converter)),
-        ("chain", chain_text(channel)),
-    )
-    unit = channel.unit.text
-    return (
-        *(
-            Row(
-                label=label,
-                board=board,
-                firmware=", ".join(starmap(_leaf_text, groups[label])),
-                agrees=_agrees(groups[label], wrong),
-            )
-            for label, board in constants
-        ),
-        Row(
-            label="gain",
-            board=gain_text(judgement.hardware, unit),
-            firmware=gain_text(judgement.firmware, unit) + _gain_difference(judgement),
-        ),
-        Row(
-            label="offset",
-            board=offset_text(judgement.hardware, unit),
-            firmware=offset_text(judgement.firmware, unit),
-        ),
-    )
 
 
 def hardware_side(case: Case) -> Side:
@@ -75,7 +24,10 @@ def hardware_side(case: Case) -> Side:
 
 def measures_text(channel: Channel) -> str:
     """What the channel measures and where it enters: `0 V to 16 V, converter acq input 2`."""
-    span = f"{channel.range[0]} to {channel.range[1]}" if channel.range else channel.unit.text
+    unit = channel.unit.text
+    span = f"{unit}, no range stated, all codes".removeprefix(", ")
+    if channel.range is not None:
+        span = f"{channel.range[0]} to {channel.range[1]}"
     entry = f"converter {channel.converter.name}"
     if channel.input is not None:
         entry += f" input {channel.input}"
@@ -107,9 +59,9 @@ def gain_text(side: Side, unit: str) -> str:
     return "no straight line" if side.gain is None else f"{figure(side.gain, unit)}/count"
 
 
-def offset_text(side: Side, unit: str) -> str:
+def offset_text(offset: float | None, unit: str) -> str:
     """Offset in engineering notation."""
-    return "no straight line" if side.offset is None else figure(side.offset, unit)
+    return "no straight line" if offset is None else figure(offset, unit)
 
 
 def result_unit_text(channel: Channel, judgement: Judgement) -> str:
@@ -123,44 +75,9 @@ def result_unit_text(channel: Channel, judgement: Judgement) -> str:
 def worst_texts(judgement: Judgement) -> tuple[str, str]:
     """The worst error in range, with its sign, and what is allowed where it stands."""
     unit = judgement.ideal.channel.unit.text
-    worst = figure(float(judgement.error[judgement.worst_index]), unit, digits=3, sign=True)
+    error = judgement.settled(float(judgement.error[judgement.worst_index]))
+    worst = figure(error, unit, digits=3, sign=True)
     return worst, figure(float(judgement.allowed[judgement.worst_index]), unit, digits=3)
-
-
-def _gain_difference(judgement: Judgement) -> str:
-    board, code = judgement.hardware.gain, judgement.firmware.gain
-    if not board or code is None:
-        return ""
-    percent = 100 * (code / board - 1)
-    return f" ({percent:+.2f} %)" if abs(percent) >= 0.005 else ""
-
-
-_LABELS = {"reference": "reference", "full-scale": "full scale", "resolution": "full scale"}
-"""The row of a constant by the first word of its role; all others belong to the chain."""
-
-
-def _grouped(
-    roles: Iterable[tuple[Leaf, str]], wrong: Container[Place]
-) -> Mapping[str, Sequence[tuple[Leaf, str]]]:
-    """Constants with their role by row, the wrong ones first, each spelling once."""
-    groups: dict[str, dict[Place, tuple[Leaf, str]]] = {
-        "reference": {},
-        "full scale": {},
-        "chain": {},
-    }
-    for leaf, role in sorted(roles, key=lambda one: one[0].place not in wrong):
-        label = _LABELS.get(role.split(" ", 1)[0], "chain")
-        groups[label].setdefault(leaf.place, (leaf, role))
-    return {label: tuple(group.values()) for label, group in groups.items()}
-
-
-def _agrees(group: Sequence[tuple[Leaf, str]], wrong: Container[Place]) -> bool | None:
-    return not any(leaf.place in wrong for leaf, _ in group) if group else None
-
-
-def _leaf_text(leaf: Leaf, role: str) -> str:
-    value = f"{leaf.text} bits" if role.startswith("resolution") else leaf.text
-    return f"{value} ({leaf.name})" if leaf.name else value
 
 
 def _stage_text(stage: Stage) -> str:

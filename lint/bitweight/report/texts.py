@@ -25,6 +25,14 @@ _NUMBER_GAP = re.compile(r"(?<=\d) (?=[^\W\d]{1,6}\b|%)")
 _GLUE = "\0"
 """Stands for a space that is no place to break a line; `shown` leaves no other NUL in a text."""
 
+ELIDED = "..."
+"""Stands where a part of a text is left out."""
+
+_BEFORE_OPERAND = re.compile(r"(?<= )([-+*/%<>&|^=!?:]{1,2}) ")
+"""An operator with spaces around it: a formula is broken before it, never after."""
+
+_CAST = re.compile(r"\((?:unsigned|signed|long) [a-z ]+\)")
+
 _SHORT = {"\n": "\\n", "\r": "\\r", "\t": "\\t"}
 
 _LARGE = 1e9
@@ -136,6 +144,14 @@ def closing(counts: Mapping[str, int], accepted: int) -> str:
 def accepted(findings: Iterable[Finding]) -> int:
     """How many findings are accepted deviations."""
     return sum(finding.deviation is not None for finding in findings)
+
+
+def wrapped_formula(text: str, width: int) -> tuple[str, ...]:
+    """C on lines of at most `width` characters, broken before operators where that is possible."""
+    glued = _BEFORE_OPERAND.sub(rf"\1{_GLUE}", shown(text))
+    glued = _CAST.sub(lambda match: match[0].replace(" ", _GLUE), glued)
+    lines = textwrap.wrap(glued, max(8, width), break_on_hyphens=False)
+    return tuple(line.replace(_GLUE, " ") for line in lines) or ("",)
 
 
 def wrapped(text: str, width: int) -> tuple[str, ...]:

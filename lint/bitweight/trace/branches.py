@@ -93,12 +93,16 @@ class Branches(Calls):
         items = node.body.items if isinstance(node.body, Block) else (node.body,)
         cases = [(index, one) for index, one in enumerate(items) if isinstance(one, Case)]
         known = self.context.constant(subject)
-        if known is None:
+        if known is None or not self._all_constant(cases):
             return self._either(subject, cases, items, node)
         chosen = self._chosen(known, cases)
         if chosen is None:
             return Flow(next=self.state)
         return self.left(self.scoped(items[chosen:]), node)
+
+    def _all_constant(self, cases: list[tuple[int, Case]]) -> bool:
+        labels = [label for _, one in cases for label in (one.value, one.last)]
+        return all(self.fixed(self.number(label)) is not None for label in labels if label)
 
     def _chosen(self, known: float, cases: list[tuple[int, Case]]) -> int | None:
         default: int | None = None

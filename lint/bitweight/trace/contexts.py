@@ -169,14 +169,14 @@ class Context:
             own: tuple[Function, ...] = (declared.function,)
             return own if self._touches(declared.function, root, whole) else ()
         found = {
-            one.key: one
+            one.identity: one
             for one in self.program.all_functions(root.name)
             if self._touches(one, root, whole)
         }
         for alias in self._aliases(root.name):
             for one in self.program.all_functions(alias):
                 if alias in one.mentions.changes:
-                    found.setdefault(one.key, one)
+                    found.setdefault(one.identity, one)
         return tuple(found[key] for key in sorted(found))
 
     def _aliases(self, name: str) -> tuple[str, ...]:
@@ -192,14 +192,14 @@ class Context:
     def written_names(self, function: Function) -> frozenset[str]:
         """The objects that a function may write, itself or by what it calls, by name."""
         found: set[str] = set()
-        seen: set[Place] = set()
+        seen: set[tuple[Place, str]] = set()
         pending = [function]
         while pending and len(seen) < _MOST_CALLEES:
             one = pending.pop()
-            if one.key in seen:
+            if one.identity in seen:
                 continue
-            seen.add(one.key)
-            found |= one.mentions.writes | one.mentions.addressed
+            seen.add(one.identity)
+            found |= one.mentions.writes | one.mentions.through | one.mentions.addressed
             for name in one.mentions.calls:
                 pending.extend(self.program.function(name, one.unit))
         return frozenset(found)

@@ -91,7 +91,7 @@ def _leaves(end: End, context: Context) -> bool:
         return True
     function = end.run.function
     return end.result == function.name and not any(
-        one.key != function.key and function.name in one.mentions.names
+        one.identity != function.identity and function.name in one.mentions.names
         for one in context.program.all_functions(function.name)
     )
 

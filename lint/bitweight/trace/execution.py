@@ -10,6 +10,7 @@ from bitweight.firmware.syntax import (
     Declarator,
     Declare,
     Evaluate,
+    Expr,
     If,
     Jump,
     Label,
@@ -24,7 +25,7 @@ from bitweight.firmware.units import Function
 from bitweight.trace.contexts import Declared
 from bitweight.trace.exits import Exit, ExitKind, Flow
 from bitweight.trace.loops import Loops
-from bitweight.trace.memory import State, Value
+from bitweight.trace.memory import State, Value, value_type
 
 _NOWHERE = Node(start=0, end=0)
 _KINDS: Mapping[str, ExitKind] = MappingProxyType({"break": "break", "continue": "continue"})
@@ -96,6 +97,9 @@ class Execution(Loops):
         storage = one.type.specifiers.storage
         if "extern" in storage or not one.name:
             return
+        if one.value is not None and one.type.specifiers.words == ("__auto_type",):
+            self._declare_like(one, one.value)
+            return
         type_ = self.resolved(one.type)
         if isinstance(type_, FunctionType):
             return
@@ -111,6 +115,14 @@ class Execution(Loops):
             del self.state.values[known]
         if one.value is not None:
             self.fill(location, type_, one.value)
+
+    def _declare_like(self, one: Declarator, initialiser: Expr) -> None:
+        """`__auto_type`: the type is that of the initialiser."""
+        value = self.value(initialiser)
+        type_ = value_type(value)
+        location = Location(Root("local", one.name, self.frame.scope_of(one.start)))
+        self.frame.scopes[-1][one.name] = (location, type_)
+        self.store(location, type_, value, one)
 
     def _declare_static(self, one: Declarator, type_: ObjectType, function: Function) -> None:
         root = Root("object", one.name, f"{function.key.file}:{function.name}:{one.start}")

@@ -90,18 +90,18 @@ class Flows:
     def _mentioning(self, name: str) -> tuple[Function, ...]:
         """Functions that mention a name, use the macro of that name, or bear it."""
         program = self.context.program
-        found = {one.key: one for one in program.all_functions(name)}
+        found = {one.identity: one for one in program.all_functions(name)}
         for one in program.defining(name):
-            found.setdefault(one.key, one)
+            found.setdefault(one.identity, one)
         for unit in program.units.values():
             if name in unit.functions:
-                found.setdefault(unit.functions[name].key, unit.functions[name])
+                found.setdefault(unit.functions[name].identity, unit.functions[name])
             for use in unit.translation.invocations if name in self.context.results else ():
                 if use.name != name:
                     continue
                 for one in unit.functions.values():
                     if one.syntax.body_start <= use.start < one.syntax.end:
-                        found.setdefault(one.key, one)
+                        found.setdefault(one.identity, one)
         return tuple(found[key] for key in sorted(found))
 
     # --- what a run reaches ------------------------------------------------------------------

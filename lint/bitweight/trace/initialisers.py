@@ -61,11 +61,17 @@ class _Filling:
             braced = isinstance(value, Braces) and value.type is None
             if not braced and not isinstance(value, Text):
                 cursor.descend(self.reader.is_whole(value))
-            self._place(value, cursor.type, (*path, *cursor.path), depth)
+            here = (*path, *cursor.path)
+            if not cursor.is_unnamed:
+                self._drop(here)
+            self._place(value, cursor.type, here, depth)
 
-    def _place(self, value: Expr, type_: ObjectType, path: Path, depth: int) -> None:
+    def _drop(self, path: Path) -> None:
+        """Forget earlier initialisers of a part (C11 6.7.9p19)."""
         for known in [one for one in self.parts if one[: len(path)] == path]:
             del self.parts[known]
+
+    def _place(self, value: Expr, type_: ObjectType, path: Path, depth: int) -> None:
         if isinstance(value, Braces) and value.type is None:
             self.fill(value, type_, path, depth + 1)
         else:
@@ -106,6 +112,12 @@ class _Cursor:
                 name = self._members(level)[level.position][0]
                 steps.extend([name] if name else [])
         return tuple(steps)
+
+    @property
+    def is_unnamed(self) -> bool:
+        """Whether the current part is a record without a name, which has no path of its own."""
+        last = self._levels[-1]
+        return isinstance(last.type, Record) and not self._members(last)[last.position][0]
 
     def move(self, entry: Entry) -> bool:
         """Go to the part that an entry is for; False where that is not known."""

@@ -201,6 +201,17 @@ class Machine:
         """Record where an object was written last, and by which function."""
         self.stores[location] = (place, self.function_name)
 
+    def unevaluated(self, node: Expr) -> Value:
+        """The value an expression would have; nothing of it happens."""
+        state, stores, events = self.state.copy(), dict(self.stores), len(self.events)
+        doubts, near, handed = len(self.doubts), self.near, dict(self.handed)
+        try:
+            return self.value(node)
+        finally:
+            self.state, self.stores, self.near, self.handed = state, stores, near, handed
+            del self.events[events:]
+            del self.doubts[doubts:]
+
     # --- numbers --------------------------------------------------------------------------------
 
     def number(self, node: Expr) -> Expression:

@@ -4,7 +4,14 @@ from dataclasses import dataclass, field
 from typing import TypeGuard
 
 from bitweight.arithmetic.expressions import Expression
-from bitweight.firmware.objects import ANYWHERE, Location, ObjectType
+from bitweight.firmware.objects import (
+    ANYWHERE,
+    Arithmetic,
+    Location,
+    ObjectType,
+    Pointer,
+    Strange,
+)
 from bitweight.firmware.units import Function
 from bitweight.places import Place
 
@@ -40,6 +47,19 @@ Value = Expression | Address | Routine | Copy
 def is_number(value: Value) -> TypeGuard[Expression]:
     """Whether a value is an expression rather than a pointer or a struct."""
     return isinstance(value, Expression)
+
+
+def value_type(value: Value) -> ObjectType:
+    """The type of a value, which is no array or function any more (C11 6.3.2.1p3)."""
+    match value:
+        case Address():
+            return Pointer(to=value.type)
+        case Routine():
+            return Pointer(to=Strange(name=""))
+        case _ if is_number(value):
+            return Arithmetic(type=value.type)
+        case _:
+            return value.type
 
 
 @dataclass(slots=True)

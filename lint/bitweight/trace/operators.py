@@ -1,8 +1,8 @@
 """C operators on values of a run: numbers, pointers, structs."""
 
 from bitweight.arithmetic import building
-from bitweight.arithmetic.expressions import Expression, Literal, Purpose
-from bitweight.firmware.objects import ANYWHERE, Arithmetic, Location, ObjectType, Pointer, Root
+from bitweight.arithmetic.expressions import Binary, Expression, Literal, Purpose
+from bitweight.firmware.objects import ANYWHERE, Arithmetic, Location, ObjectType, Pointer, Root, Strange
 from bitweight.firmware.syntax import (
     Assign,
     Cast,
@@ -14,11 +14,13 @@ from bitweight.firmware.syntax import (
     Operation,
     Pair,
     SizeOf,
+    TypeSyntax,
 )
 from bitweight.trace.lvalues import shifted
 from bitweight.trace.matching import Matching
-from bitweight.trace.memory import Address, Routine, Value, is_number
+from bitweight.trace.memory import Address, Routine, Value, is_number, value_type
 
+_TRUTHS = building.COMPARISONS | building.LOGICAL
 _OWN = frozenset({"local", "object"})
 """Objects of which two are never the same under different names."""
 
@@ -123,16 +125,25 @@ class Operators(Matching):
 
     def _logical(self, node: Pair, first: Expression) -> Value:
         known = self.context.constant(first)
-        if known is not None and bool(known) == (node.operator == "||"):
-            return Literal(value=int(bool(known)), type=self.model.int_)
+        if known is not None:
+            if bool(known) == (node.operator == "||"):
+                return Literal(value=int(bool(known)), type=self.model.int_)
+            return self._as_truth(self.decision(node.right), node)
         before = self.state.copy()
         second = self.decision(node.right)
-        if known is None and before.values != self.state.values:
+        if before.values != self.state.values:
             condition = first
             if node.operator == "||":
                 condition = building.unary(self.model, "!", first, self.used(node))
             self.state = self.join(condition, self.state, before, node)
         return building.binary(self.model, node.operator, first, second, self.spelled(node.at))
+
+    def _as_truth(self, value: Expression, node: Pair) -> Expression:
+        """0 or 1: what `&&` and `||` make of the operand that decides."""
+        if isinstance(value, Binary) and value.operator in _TRUTHS:
+            return value
+        zero = Literal(value=0, type=self.model.int_)
+        return building.binary(self.model, "!=", value, zero, self.spelled(node.at))
 
     def _pointer_pair(self, node: Pair, left: Value, right: Value) -> Value:
         if isinstance(left, Address) and is_number(right) and node.operator in "+-":
@@ -201,6 +212,17 @@ class Operators(Matching):
         return self.joined(condition, then, other, node)
 
     # --- types ----------------------------------------------------------------------------------
+
+    def resolved(self, syntax: TypeSyntax) -> ObjectType:
+        """As below; a `typeof` has the type of its operand, which is not evaluated."""
+        like = syntax.specifiers.like
+        if like is None:
+            return super().resolved(syntax)
+        declared = self.declared_type(like)
+        if declared is None or isinstance(declared, Strange):
+            declared = value_type(self.unevaluated(like))
+        made = self.unit.declarations.derived(declared, syntax.derivations)
+        return self.sized(made, syntax, self.unit)
 
     def cast(self, node: Cast) -> Value:
         """`(type)operand`."""

@@ -80,6 +80,7 @@ def parsed(text: str, unit: Unit) -> Expr | None:
 
 def head(tree: Expr) -> tuple[str, str]:
     """A key that a pattern shares with every expression it can match."""
+    tree = _bare(tree)
     match tree:
         case Name():
             return ("name", tree.text)
@@ -93,8 +94,6 @@ def head(tree: Expr) -> tuple[str, str]:
             return ("operation", tree.operator)
         case Pair():
             return ("pair", tree.operator)
-        case Marked():
-            return head(tree.operand)
         case _:
             return (type(tree).__name__, "")
 

@@ -241,14 +241,16 @@ class Resolver:
         carrying = [one for one in others if self.measures(one)]
         if carrying:
             return self._distinct(carrying, node)
-        return self._settled(location, others, node)
+        return self._settled(location, others or written, node)
 
     # --- objects that no reading reaches ------------------------------------------------------
 
     def _settled(self, location: Location, written: list[Expression], node: Code) -> Ways:
         """A constant, or a default that something may overwrite; else a reason."""
-        values = {self.context.constant(one) for one in written}
         initial = self._initialiser(location, node)
+        if initial is not None:
+            written = [one for one in written if id(one) not in self._earlier]
+        values = {self.context.constant(one) for one in written}
         if len(values) == 1 and None not in values:
             value = self.context.constant(initial) if initial is not None else None
             if value is None or value in values or value == 0:

@@ -46,13 +46,13 @@ class Runner:
     """Runs functions once each and remembers what came of it."""
 
     context: Context
-    _runs: dict[Place, Run] = field(default_factory=dict)
+    _runs: dict[tuple[Place, str], Run] = field(default_factory=dict)
 
     def run(self, function: Function) -> Run:
         """The run of a function with unknown parameters."""
-        if function.key not in self._runs:
-            self._runs[function.key] = self._followed(function)
-        return self._runs[function.key]
+        if function.identity not in self._runs:
+            self._runs[function.identity] = self._followed(function)
+        return self._runs[function.identity]
 
     @property
     def runs(self) -> tuple[Run, ...]:
@@ -89,7 +89,7 @@ class Runner:
 
     def _parameters(self, execution: Execution, function: Function) -> list[Value]:
         values: list[Value] = []
-        scope = str(function.key)
+        scope = f"{function.key}:{function.name}"
         for index, one in enumerate(function.syntax.parameters):
             type_ = function.unit.type_of(one.type)
             root = Location(Root("pointee", one.name, scope))

@@ -145,14 +145,14 @@ def _of_register(
 ) -> Iterator[Setting]:
     program = context.program
     program.load(register)
-    functions: dict[Place, tuple[Function, Location]] = {}
+    functions: dict[tuple[Place, str], tuple[Function, Location]] = {}
     for unit in tuple(program.units.values()):
         location = _location(context, unit, register)
         if location is None:
             continue
         for one in unit.functions.values():
             if _mentions(one, register, unit):
-                functions.setdefault(one.key, (one, location))
+                functions.setdefault(one.identity, (one, location))
     for key in sorted(functions):
         function, location = functions[key]
         yield from _written(context, runner.run(function), location, fields)

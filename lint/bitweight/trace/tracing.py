@@ -73,7 +73,7 @@ class Tracer:
         """Whether a value hangs on a parameter of its own function, which something calls."""
         function = run.function
         return self.resolver.writings.waits_for(end.value, function) and any(
-            one.key != function.key and function.name in one.mentions.calls
+            one.identity != function.identity and function.name in one.mentions.calls
             for one in self.context.program.all_functions(function.name)
         )
 

@@ -49,7 +49,7 @@ class Writings:
 
     def _written(self, function: Function, location: Location, node: Code) -> Iterator[Expression]:
         """What a function writes there; where that is its parameter, what its callers give."""
-        seen = {function.key}
+        seen = {function.identity}
         pending = [function]
         asked = 0
         while pending and asked < _MOST_FUNCTIONS:
@@ -59,8 +59,8 @@ class Writings:
             waiting = [value for value in values if self.waits_for(value, one)]
             callers = self._callers(one) if waiting else ()
             for caller in callers:
-                if caller.key not in seen:
-                    seen.add(caller.key)
+                if caller.identity not in seen:
+                    seen.add(caller.identity)
                     pending.append(caller)
             yield from (value for value in values if not callers or value not in waiting)
         if pending:

@@ -11,7 +11,7 @@ from bitweight.board.decoding.shapes import (
     Counts,
     Day,
     Definitions,
-    Each,
+    Tables,
     Flag,
     Inner,
     Number,
@@ -64,7 +64,7 @@ RIGHT: list[tuple[Shape[object], str, object, object]] = [
         (("A", "x"), ("B", "2"), ("C", "1")),
         {"A": "x", "B": 2, "C": True},
     ),
-    (Each(Text()), "['a']", ("a",), ["a"]),
+    (Tables(Text()), "['a']", ("a",), ["a"]),
 ]
 
 
@@ -108,7 +108,7 @@ def test_a_right_value_becomes_a_fact_and_fits_its_schema(
         (Definitions(), "[]", "expected a table like"),
         (Definitions(), "{ '1' = 'x' }", "expected the name of a macro, found '1'"),
         (Definitions(), "{ A = [] }", "expected a text in quotes"),
-        (Each(Text()), "3", "expected a list"),
+        (Tables(Text()), "3", "expected a list"),
         (INNER, "{ m = 1 }", "missing key 'n' in x"),
     ],
 )

@@ -15,10 +15,17 @@ from bitweight.board.decoding.tables import (
     Field,
     Mistakes,
     described,
+    near,
     nearest,
-    read_all,
     read_table,
     shortened,
+)
+from bitweight.board.decoding.variants import (
+    of_variant,
+    read_variants,
+    used_tables,
+    with_defaults,
+    without,
 )
 from bitweight.board.hardware import (
     Board,
@@ -31,7 +38,7 @@ from bitweight.board.hardware import (
     Variant,
 )
 from bitweight.board.stages import parts_of
-from bitweight.documents import Array, Key, Table, merged, parse_document, read_document, replaced
+from bitweight.documents import Array, Key, Table, merged, parse_document, read_document
 from bitweight.errors import UsageError
 from bitweight.places import Place
 
@@ -68,11 +75,16 @@ def board_from_text(text: str, *, file: str, variant: str | None = None) -> Boar
 def decode_board(root: Table, *, file: str, variant: str | None = None) -> Board:
     """The facts of a board file's tree. Base and variants are all checked, whichever is asked."""
     mistakes = Mistakes()
-    variants = _variants(root, mistakes)
-    base = replaced(root, _EMPTY)
+    base = _with_known_tables(root, mistakes)
+    variants = read_variants(base, TABLES, mistakes)
+    base = without(base, "variant")
+    shared = with_defaults(base)
     boards: dict[str | None, Board] = {None: _board(base, file, mistakes)}
     for name, table in variants.items():
-        boards[name] = replace(_board(merged(base, table), file, mistakes), variant=name)
+        own = Mistakes()
+        board = _board(merged(shared, used_tables(name, base, table, own)), file, own)
+        mistakes.extend(of_variant(name, table, own, mistakes))
+        boards[name] = replace(board, variant=name)
     mistakes.raise_any()
     if variant not in boards:
         hint = nearest(str(variant), variants)
@@ -81,41 +93,24 @@ def decode_board(root: Table, *, file: str, variant: str | None = None) -> Board
     return replace(boards[variant], variants=found)
 
 
-def _variants(root: Table, mistakes: Mistakes) -> dict[str, Table]:
-    """For each variant the tables it overrides; `define` goes to [board]."""
-    found: dict[str, Table] = {}
-    for name, (_, value) in read_all(root.get("variant"), "variant", mistakes).items():
-        if not isinstance(value, Table):
-            mistakes.add(
-                value.place, f"expected a table [variant.{name}], found {described(value)}"
-            )
+def _with_known_tables(root: Table, mistakes: Mistakes) -> Table:
+    """The tree with unknown tables noted, and read as the known ones they are slips of."""
+    known = Table(
+        keys={name: key for name, key in root.keys.items() if name in TABLES}, place=root.place
+    )
+    for key in root.keys.values():
+        if key.name in TABLES:
             continue
-        found[name] = _lifted(value)
-        for key in value.keys.values():
-            if key.name == "variant":
-                mistakes.add(key.place, "a variant cannot have variants")
-    return found
-
-
-def _lifted(variant: Table) -> Table:
-    """A variant's table shaped like a board file."""
-    keys = {name: key for name, key in variant.keys.items() if name not in ("define", "variant")}
-    define = variant.keys.get("define")
-    if define is None:
-        return Table(keys=keys, place=variant.place)
-    inner = Table(keys={"define": define}, place=define.place)
-    board = keys.get("board")
-    if board is not None and isinstance(board.value, Table):
-        inner = merged(board.value, inner)
-    keys["board"] = Key(name="board", place=define.place, value=inner)
-    return Table(keys=keys, place=variant.place)
+        hint = nearest(key.name, TABLES) or f"; known tables: {', '.join(TABLES)}"
+        mistakes.add(key.place, f"unknown table '{shortened(key.name)}'{hint}")
+        meant = near(key.name, TABLES)
+        if meant is not None:
+            slip = Key(name=meant, place=key.place, value=key.value)
+            known = merged(Table(keys={meant: slip}, place=root.place), known)
+    return known
 
 
 def _board(root: Table, file: str, mistakes: Mistakes) -> Board:
-    for key in root.keys.values():
-        if key.name not in TABLES:
-            hint = nearest(key.name, TABLES) or f"; known tables: {', '.join(TABLES)}"
-            mistakes.add(key.place, f"unknown table '{shortened(key.name)}'{hint}")
     rails = supplies(root, mistakes)
     known = references(root, rails, mistakes)
     sources: dict[str, Source | None] = {**known, **rails}
@@ -145,7 +140,17 @@ def _board(root: Table, file: str, mistakes: Mistakes) -> Board:
         variant=None,
         deviations=_deviations(root, mistakes),
         place=facts.table.place,
+        paths=_paths(facts, _section(root, "target", TargetFields.ALL, mistakes)),
     )
+
+
+def _paths(board: Decoded, target: Decoded) -> Mapping[str, Place]:
+    """Where the keys that name files and folders stand."""
+    fields = (BoardFields.FIRMWARE, BoardFields.INCLUDE, BoardFields.EXCLUDE, BoardFields.BUILD)
+    found = {field.name: board.place(field) for field in fields if board.given(field)}
+    if target.given(TargetFields.FAMILIES):
+        found[TargetFields.FAMILIES.name] = target.place(TargetFields.FAMILIES)
+    return found
 
 
 def _check_names(
@@ -180,6 +185,7 @@ def _target(root: Table, mistakes: Mistakes) -> Target:
         family=decoded.get(fields.FAMILY),
         families=decoded.get(fields.FAMILIES) or (),
         place=decoded.table.place,
+        family_place=decoded.place(fields.FAMILY),
     )
 
 
@@ -217,6 +223,7 @@ def _deviations(root: Table, mistakes: Mistakes) -> tuple[Deviation, ...]:
                 reason=decoded.get(fields.REASON) or "",
                 until=decoded.get(fields.UNTIL),
                 place=decoded.table.place,
+                rule_place=decoded.place(fields.RULE),
             )
         )
     return tuple(found)

@@ -5,14 +5,14 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from bitweight.board.converters import Converter, ConverterKind
-from bitweight.board.decoding.allowed import AllowedShape, allowed_error
+from bitweight.board.decoding.allowed import AllowedShape, allowed_error, with_steps
 from bitweight.board.decoding.converters import linked, only_one
 from bitweight.board.decoding.fields import FirmwareFields, LimitFields
 from bitweight.board.decoding.measures import Ends, Measure, UnitWord
 from bitweight.board.decoding.shapes import (
-    Each,
     Inner,
     Sign,
+    Tables,
     Text,
     Whole,
 )
@@ -23,7 +23,7 @@ from bitweight.board.decoding.tables import (
     Field,
     Mistakes,
     nearest,
-    read_all,
+    read_named,
     read_table,
     shortened,
 )
@@ -63,7 +63,7 @@ class ChannelFields:
     FIRMWARE = Field(
         "firmware", Inner("firmware", FirmwareFields.ALL), "where the firmware has the channel"
     )
-    LIMIT = Field("limit", Each(Inner("a limit", LimitFields.ALL)), "thresholds in the firmware")
+    LIMIT = Field("limit", Tables(Inner("a limit", LimitFields.ALL)), "thresholds in the firmware")
     ALL = (
         CONVERTER,
         INPUT,
@@ -105,7 +105,7 @@ def channels(
 ) -> dict[str, Channel | None]:
     """The channels by name; None stands for one that is defined, but wrong."""
     around = _Surroundings(converters, StageMaker(sources, mistakes), mistakes)
-    tables = read_all(root.get("channel"), "channel", mistakes)
+    tables = read_named(root.get("channel"), _F.ALL, "channel", mistakes)
     if not tables:
         mistakes.add(root.place, "no channel is defined: add a table [channel.NAME]")
     found: dict[str, Channel | None] = {}
@@ -149,16 +149,19 @@ def _channel(name: str, place: Place, decoded: Decoded, around: _Surroundings) -
     converter = _converter(decoded, around)
     chain = _chain(decoded, around)
     to_pin = converter is None or converter.kind is ConverterKind.ADC
-    unit = decoded.get(_F.UNIT) or default_unit(chain or (), to_pin=to_pin)
-    if chain is not None and converter is not None:
+    unit = decoded.get(_F.UNIT)
+    if unit is None and chain is not None and not decoded.given(_F.UNIT):
+        unit = default_unit(chain, to_pin=to_pin)
+    if unit is not None and chain is not None and converter is not None:
         check_flow(chain, unit, decoded.place(_F.UNIT), around.mistakes, to_pin=to_pin)
-    _check_units(decoded, unit, around.mistakes)
+    if unit is not None:
+        _check_units(decoded, unit, around.mistakes)
     firmware = _firmware(decoded, unit, around.mistakes)
     limits = _limits(decoded, unit, around.mistakes)
-    allowed = _allowed(decoded, unit, around.mistakes)
-    if converter is None or chain is None:
+    if converter is None or chain is None or unit is None:
         return None
-    return Channel(
+    allowed = decoded.get(_F.ALLOWED_ERROR)
+    channel = Channel(
         name=name,
         converter=converter,
         input=decoded.get(_F.INPUT),
@@ -167,7 +170,7 @@ def _channel(name: str, place: Place, decoded: Decoded, around: _Surroundings) -
         unit=unit,
         unit_stated=decoded.given(_F.UNIT),
         range=decoded.get(_F.RANGE),
-        allowed_error=allowed,
+        allowed_error=_allowed(decoded, unit, around.mistakes),
         hazard=decoded.get(_F.HAZARD),
         pin_limit=decoded.get(_F.PIN_LIMIT),
         sample_rate=decoded.get(_F.SAMPLE_RATE),
@@ -179,6 +182,7 @@ def _channel(name: str, place: Place, decoded: Decoded, around: _Surroundings) -
         place=place,
         range_place=decoded.place(_F.RANGE) if decoded.given(_F.RANGE) else place,
     )
+    return with_steps(channel, allowed.steps, around.mistakes) if allowed is not None else channel
 
 
 def _converter(decoded: Decoded, around: _Surroundings) -> Converter | None:
@@ -196,7 +200,7 @@ def _chain(decoded: Decoded, around: _Surroundings) -> tuple[Stage, ...] | None:
     tables = decoded.get(_F.CHAIN)
     if tables is None:
         return None if decoded.given(_F.CHAIN) else ()
-    stages = [around.maker.stage(table) for table in tables]
+    stages = [around.maker.stage(one) if one is not None else None for one in tables]
     whole = tuple(stage for stage in stages if stage is not None)
     return whole if len(whole) == len(stages) else None
 
@@ -230,16 +234,16 @@ def _allowed(decoded: Decoded, unit: Unit, mistakes: Mistakes) -> AllowedError |
         return None
 
 
-def _firmware(decoded: Decoded, unit: Unit, mistakes: Mistakes) -> Firmware:
+def _firmware(decoded: Decoded, unit: Unit | None, mistakes: Mistakes) -> Firmware:
     inner = decoded.get(_F.FIRMWARE)
     fields = FirmwareFields
     if inner is None:
         place = decoded.place(_F.FIRMWARE)
         return Firmware(place=place, reading_place=place, value_place=place)
     scaled = inner.get(fields.UNIT)
-    if scaled is not None and not scaled.fits(unit):
-        message = f"unit {named(scaled)} of value does not convert to the channel's {named(unit)}"
-        mistakes.add(inner.place(fields.UNIT), message)
+    if scaled is not None and unit is not None and not scaled.fits(unit):
+        message = f'unit: expected {_like(unit)}, found "{shortened(scaled.text)}"'
+        mistakes.add(inner.place(fields.UNIT), f"{message}; the channel's unit is {named(unit)}")
     return Firmware(
         reading=inner.get(fields.READING) or (),
         value=inner.get(fields.VALUE) or (),
@@ -251,18 +255,29 @@ def _firmware(decoded: Decoded, unit: Unit, mistakes: Mistakes) -> Firmware:
     )
 
 
-def _limits(decoded: Decoded, unit: Unit, mistakes: Mistakes) -> tuple[Limit, ...]:
+def _like(unit: Unit) -> str:
+    """An example of what one count may stand for."""
+    if unit.dimension == VOLT:
+        return 'a voltage like "1 mV"'
+    return f'a quantity like "0.1 {unit.text}"' if unit.text else 'a plain number like "0.1"'
+
+
+def _limits(decoded: Decoded, unit: Unit | None, mistakes: Mistakes) -> tuple[Limit, ...]:
     tables = decoded.get(_F.LIMIT) or ()
     found = [_limit(inner, unit, mistakes) for inner in tables]
     return tuple(limit for limit in found if limit is not None)
 
 
-def _limit(inner: Decoded, unit: Unit, mistakes: Mistakes) -> Limit | None:
+def _limit(inner: Decoded, unit: Unit | None, mistakes: Mistakes) -> Limit | None:
     fields = LimitFields
     at, constant = inner.get(fields.AT), inner.get(fields.CONSTANT)
+    if at is not None and unit is not None:
+        _check_unit("at", at, unit, inner.place(fields.AT), mistakes)
+    if inner.given(fields.BITS) and inner.get(fields.MEASURE) is LimitMeasure.VALUE:
+        message = 'bits is the width of counts, but in = "value" says that it is no count'
+        mistakes.add(inner.place(fields.BITS), message)
     if at is None or constant is None:
         return None
-    _check_unit("at", at, unit, inner.place(fields.AT), mistakes)
     return Limit(
         name=inner.get(fields.NAME) or constant,
         at=at,

@@ -18,7 +18,7 @@ from bitweight.board.parts import Part
 from bitweight.board.stages import parts_of
 from bitweight.documents import Key, Scalar, Table, Value
 from bitweight.places import Place
-from bitweight.units import named
+from bitweight.units import OHM, VOLT, Dimension, coherent, named
 
 ROLES = (
     "full-scale",
@@ -35,6 +35,17 @@ ROLES = (
     "code",
 )
 """What a constant can stand for; a name may follow ("reference vref", "resistance R12")."""
+
+_KINDS: Mapping[str, Dimension] = {
+    "full-scale": (),
+    "reference": VOLT,
+    "resolution": (),
+    "divider": (),
+    "inverse divider": (),
+    "resistance": OHM,
+    "code": (),
+}
+"""What kind of quantity a role always is."""
 
 _F = ConstantFields
 
@@ -89,11 +100,14 @@ def _constant(
     mistakes: Mistakes,
 ) -> ConstantFact | None:
     decoded = _decoded(expression, value, mistakes)
-    text, _, where = expression.partition(" @ ")
+    text, at, where = expression.partition(" @ ")
     if not text.strip():
         mistakes.add(place, "expected a C expression as the key, in quotes where it is no name")
+    if at and not where.strip():
+        mistakes.add(place, "expected a function or a file after @")
     role, name = _role(decoded, names, mistakes)
     _check(decoded, role, mistakes)
+    _check_unit(decoded, role, mistakes)
     _check_at(decoded, found.get(name or ""), mistakes)
     return ConstantFact(
         expression=text.strip(),
@@ -148,11 +162,20 @@ def _check(decoded: Decoded, role: str | None, mistakes: Mistakes) -> None:
     place = decoded.table.place
     if decoded.given(_F.IS) and decoded.given(_F.VALUE):
         mistakes.add(decoded.place(_F.VALUE), "is and value are both given; keep one of them")
-    if decoded.values and not decoded.given(_F.IS) and not decoded.given(_F.VALUE):
+    if decoded.is_table and not decoded.given(_F.IS) and not decoded.given(_F.VALUE):
         message = f"missing key 'is' or 'value' in {decoded.where}; a key with . or -> needs quotes"
         mistakes.add(place, message)
     if role == "code" and not decoded.given(_F.AT):
         mistakes.add(place, f"missing key 'at' in {decoded.where}: the quantity of the code")
+
+
+def _check_unit(decoded: Decoded, role: str | None, mistakes: Mistakes) -> None:
+    """The unit of a count is of the kind of the role, where that is always the same."""
+    unit, kind = decoded.get(_F.UNIT), _KINDS.get(role or "")
+    if unit is None or kind is None or unit.dimension == kind:
+        return
+    message = f"a {role} is in {named(coherent(kind))}, found the unit {named(unit)}"
+    mistakes.add(decoded.place(_F.UNIT), message)
 
 
 def _check_at(decoded: Decoded, owner: Channel | None, mistakes: Mistakes) -> None:

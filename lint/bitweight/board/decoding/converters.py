@@ -25,14 +25,15 @@ from bitweight.board.decoding.fields import (
 )
 from bitweight.board.decoding.tables import (
     Decoded,
+    Field,
     Mistakes,
     nearest,
-    read_all,
+    read_named,
     read_table,
     shortened,
 )
 from bitweight.board.parts import Reference, ReferenceSource, Supply
-from bitweight.documents import Table
+from bitweight.documents import Table, Value
 from bitweight.places import Place
 
 _F = ConverterFields
@@ -44,18 +45,24 @@ _STEPS = {"0.5 LSB": Fraction(1, 2), "1 LSB": Fraction(1)}
 def supplies(root: Table, mistakes: Mistakes) -> dict[str, Supply | None]:
     """The supplies by name; None stands for one that is defined, but wrong."""
     found: dict[str, Supply | None] = {}
-    for name, (place, value) in read_all(root.get("supply"), "supply", mistakes).items():
+    for name, (place, value) in _named(root, "supply", SupplyFields.ALL, mistakes).items():
         decoded = read_table(value, SupplyFields.ALL, f"[supply.{name}]", mistakes)
         voltage = decoded.get(SupplyFields.VOLTAGE)
         found[name] = Supply(name=name, voltage=voltage, place=place) if voltage else None
     return found
 
 
+def _named(
+    root: Table, what: str, fields: tuple[Field[object], ...], mistakes: Mistakes
+) -> Mapping[str, tuple[Place, Value]]:
+    return read_named(root.get(what), fields, what, mistakes)
+
+
 def references(
     root: Table, rails: Mapping[str, Supply | None], mistakes: Mistakes
 ) -> dict[str, Reference | None]:
     """The references by name, each with its supply."""
-    tables = read_all(root.get("reference"), "reference", mistakes)
+    tables = _named(root, "reference", ReferenceFields.ALL, mistakes)
     found: dict[str, Reference | None] = {}
     for name, (place, value) in tables.items():
         decoded = read_table(value, ReferenceFields.ALL, f"[reference.{name}]", mistakes)
@@ -74,8 +81,12 @@ def _reference(
     if decoded.given(fields.SUPPLY) and decoded.given(fields.VOLTAGE):
         message = "voltage and supply are both given; keep one of them"
         mistakes.add(decoded.place(fields.VOLTAGE), message)
-    if not decoded.given(fields.SUPPLY) and not decoded.given(fields.VOLTAGE):
+    neither = not decoded.given(fields.SUPPLY) and not decoded.given(fields.VOLTAGE)
+    if neither and decoded.is_table:
         mistakes.add(decoded.table.place, f"missing key 'voltage' (or 'supply') in {decoded.where}")
+    if decoded.given(fields.SUPPLY) and decoded.get(fields.SOURCE) is ReferenceSource.INTERNAL:
+        message = "an internal reference is no supply; keep source or supply"
+        mistakes.add(decoded.place(fields.SOURCE), message)
     supply = None
     supply_name = decoded.get(fields.SUPPLY)
     if supply_name is not None:
@@ -130,7 +141,7 @@ def converters(
 ) -> dict[str, Converter | None]:
     """The converters by name, each with its reference."""
     found: dict[str, Converter | None] = {}
-    for name, (place, value) in read_all(root.get("converter"), "converter", mistakes).items():
+    for name, (place, value) in _named(root, "converter", _F.ALL, mistakes).items():
         decoded = read_table(value, _F.ALL, f"[converter.{name}]", mistakes)
         found[name] = _converter(name, place, decoded, known, mistakes)
     return found
@@ -160,6 +171,7 @@ def _converter(
         name=name,
         kind=decoded.get(_F.KIND) or ConverterKind.ADC,
         family=decoded.get(_F.FAMILY),
+        family_place=decoded.place(_F.FAMILY),
         bits=bits,
         reference=reference,
         reference_gain=decoded.get(_F.REFERENCE_GAIN) or Fraction(1),
@@ -218,7 +230,9 @@ def _word(decoded: Decoded, width: int, mistakes: Mistakes) -> tuple[int, int]:
     word = stated or (_NARROW_WORD if needed <= _NARROW_WORD else WIDEST)
     if needed > word:
         place = decoded.place(_F.WORD_BITS if stated else _F.SHIFT)
-        message = f"{width} bits shifted by {shift or 0} do not fit in a word of {word} bits"
+        moved = f" shifted by {shift}" if shift else ""
+        key = "word_bits" if stated else "shift"
+        message = f"{key}: {word} bits cannot hold a {width}-bit code{moved}"
         mistakes.add(place, message)
         return WIDEST, 0
     if decoded.get(_F.JUSTIFIED) is not Justification.LEFT:

@@ -25,6 +25,9 @@ class Measure:
         quantity = spoken(value, parse_quantity, value.value)
         if self.kinds and quantity.unit.dimension not in self.kinds:
             raise wrong(value.place, f"{self._expected()}, found {described(value)}")
+        if quantity.unit.zero and quantity.value < 0:
+            found = shortened(quantity.text)
+            raise wrong(value.place, f'expected no less than -273.15 degC, found "{found}"')
         if not self.sign.holds(quantity.difference):
             found = shortened(quantity.text)
             raise wrong(value.place, f'expected a value {self.sign.value}, found "{found}"')

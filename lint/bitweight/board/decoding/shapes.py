@@ -31,6 +31,10 @@ _LARGEST_EXPONENT = 40
 """Powers of ten of a plain number; beyond it exact fractions grow without use."""
 
 
+_MACRO_BITS = 64
+"""Widest whole number that a macro may stand for: that of C's widest type."""
+
+
 class Sign(Enum):
     """Which numbers make sense."""
 
@@ -151,7 +155,8 @@ class Number:
         """The number as a fraction."""
         number = plain_number(value)
         if not self.sign.holds(number):
-            raise wrong(value.place, f"expected a number {self.sign.value}, found {number}")
+            found = described(value)
+            raise wrong(value.place, f"expected a number {self.sign.value}, found {found}")
         return number
 
     def schema(self) -> Schema:
@@ -269,8 +274,11 @@ class Day:
         content = value.value if isinstance(value, Scalar) else None
         if type(content) is date:
             return content
-        if isinstance(content, str) and re.fullmatch(r"\d{4}-\d{2}-\d{2}", content):
-            return spoken(value, date.fromisoformat, content)
+        if isinstance(content, str) and re.fullmatch(r"\d{4}-\d{2}-\d{2}", content, re.ASCII):
+            try:
+                return date.fromisoformat(content)
+            except ValueError:
+                raise wrong(value.place, f"there is no day {content}") from None
         raise wrong(value.place, f"expected a date like 2027-06-30, found {described(value)}")
 
     def schema(self) -> Schema:
@@ -307,8 +315,10 @@ def _replacement(value: Value) -> str:
     match value:
         case Scalar(value=bool() as flag):
             return "1" if flag else "0"
-        case Scalar(value=int() as number):
+        case Scalar(value=int() as number) if number.bit_length() <= _MACRO_BITS:
             return str(number)
+        case Scalar(value=int()):
+            raise wrong(value.place, f"expected a number of at most {_MACRO_BITS} bits")
         case Scalar(value=str() as text):
             return text
         case _:
@@ -325,9 +335,13 @@ class Inner:
     def decode(self, value: Value) -> Decoded:
         """The inner table's fields."""
         mistakes = Mistakes()
-        decoded = read_table(value, self.fields, self.what, mistakes)
+        decoded = self.read(value, mistakes, "")
         mistakes.raise_any()
         return decoded
+
+    def read(self, value: Value, mistakes: Mistakes, path: str) -> Decoded:
+        """The inner table's fields that are right."""
+        return read_table(value, self.fields, self.what, mistakes, path)
 
     def schema(self) -> Schema:
         """An object with its properties."""
@@ -335,16 +349,24 @@ class Inner:
 
 
 @dataclass(frozen=True, slots=True)
-class Each(Generic[T]):
-    """A list of values of one shape."""
+class Tables:
+    """A list of tables of one kind: `[[channel.NAME.limit]]`."""
 
-    shape: Shape[T]
+    shape: Inner
 
-    def decode(self, value: Value) -> tuple[T, ...]:
-        """The values in order."""
+    def decode(self, value: Value) -> tuple[Decoded, ...]:
+        """The fields of every table in order."""
+        mistakes = Mistakes()
+        found = self.read(value, mistakes, "")
+        mistakes.raise_any()
+        return found
+
+    def read(self, value: Value, mistakes: Mistakes, path: str) -> tuple[Decoded, ...]:
+        """The fields of every table that are right."""
         if not isinstance(value, Array):
-            raise wrong(value.place, f"expected a list, found {described(value)}")
-        return each(value, self.shape)
+            mistakes.add(value.place, f"{path}expected a list, found {described(value)}")
+            return ()
+        return tuple(self.shape.read(item, mistakes, path) for item in value.items)
 
     def schema(self) -> Schema:
         """An array."""

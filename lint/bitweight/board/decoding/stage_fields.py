@@ -70,9 +70,13 @@ def _factor(value: Value, operator: str | None, number: str | None) -> Fraction:
         return Fraction(1)
     try:
         factor = parse_number(number)
-        return factor if operator == "*" else 1 / factor
-    except (ValueError, ZeroDivisionError):
+    except ValueError:
         raise wrong(value.place, f'expected a number, found "{shortened(number)}"') from None
+    if operator == "*":
+        return factor
+    if not factor:
+        raise wrong(value.place, f"expected a divisor other than 0, found {described(value)}")
+    return 1 / factor
 
 
 class StageFields:
@@ -145,16 +149,23 @@ FIELDS: Mapping[str, tuple[Field[object], ...]] = {
 class ChainTables:
     """A list of stages, each a table whose `kind` says which keys it has."""
 
-    def decode(self, value: Value) -> tuple[Decoded, ...]:
+    def decode(self, value: Value) -> tuple[Decoded | None, ...]:
         """The fields of every stage."""
-        if not isinstance(value, Array):
-            raise wrong(value.place, f"expected a list of stages, found {described(value)}")
-        if len(value.items) > _LONGEST_CHAIN:
-            raise wrong(value.place, f"expected at most {_LONGEST_CHAIN} stages")
         mistakes = Mistakes()
-        found = [_stage_fields(item, mistakes) for item in value.items]
+        found = self.read(value, mistakes, "")
         mistakes.raise_any()
-        return tuple(decoded for decoded in found if decoded is not None)
+        return found or ()
+
+    def read(
+        self, value: Value, mistakes: Mistakes, path: str
+    ) -> tuple[Decoded | None, ...] | None:
+        """The fields that are right of every stage; None stands for one of no known kind."""
+        many = len(value.items) if isinstance(value, Array) else 0
+        if not isinstance(value, Array) or many > _LONGEST_CHAIN:
+            most = f"at most {_LONGEST_CHAIN} stages" if many else "a list of stages"
+            mistakes.add(value.place, f"{path}expected {most}, found {described(value)}")
+            return None
+        return tuple(_stage_fields(item, mistakes, path) for item in value.items)
 
     def schema(self) -> Schema:
         """An array of objects, one shape for each kind."""
@@ -167,7 +178,7 @@ class ChainTables:
         return {"type": "array", "items": {"oneOf": kinds}, "maxItems": _LONGEST_CHAIN}
 
 
-def _stage_fields(value: Value, mistakes: Mistakes) -> Decoded | None:
+def _stage_fields(value: Value, mistakes: Mistakes, path: str) -> Decoded | None:
     """One stage's fields; without a known kind none of its keys can be judged."""
     if not isinstance(value, Table):
         mistakes.add(
@@ -185,4 +196,4 @@ def _stage_fields(value: Value, mistakes: Mistakes) -> Decoded | None:
         mistakes.add(kind.place, f"unknown kind of stage, found {described(kind)}{known}")
         return None
     article = "an" if name in ("amplifier", "rtd", "against") else "a"
-    return read_table(value, FIELDS[name], f"{article} {name} stage", mistakes)
+    return read_table(value, FIELDS[name], f"{article} {name} stage", mistakes, path)

@@ -43,7 +43,7 @@ class StageMaker:
         kind = decoded.get(_F.KIND) or ""
         before = len(self.mistakes.found)
         stage = _MAKERS[kind](self, decoded)
-        return stage if len(self.mistakes.found) == before else None
+        return stage if decoded.sound and len(self.mistakes.found) == before else None
 
     def part(self, decoded: Decoded, field: Field[Quantity]) -> Part | None:
         """The part that a key names; without a designator it is one of its own."""
@@ -61,7 +61,7 @@ class StageMaker:
         part = self.part(decoded, field)
         if part is not None:
             return part
-        if not decoded.given(field):
+        if not decoded.given(field) and not field.required:
             self.mistakes.add(decoded.table.place, f"missing key '{field.name}' in {why}")
         stand_in = Quantity(value=Fraction(1), unit=_UNITLESS)
         return Part(key="", label=field.name, quantity=stand_in, place=decoded.table.place)
@@ -187,6 +187,7 @@ def _thermistor(maker: StageMaker, decoded: Decoded) -> Stage | None:
     if decoded.given(_F.BETA) == decoded.given(_F.STEINHART):
         message = f"expected either beta or steinhart_hart in {what}"
         maker.mistakes.add(decoded.table.place, message)
+    companion = maker.needed(decoded, _F.WITH, what)
     supply = _feed(maker, decoded, what)
     if supply is None:
         return None
@@ -194,7 +195,7 @@ def _thermistor(maker: StageMaker, decoded: Decoded) -> Stage | None:
         r25=maker.needed(decoded, _F.R25, what),
         beta=maker.part(decoded, _F.BETA),
         steinhart_hart=decoded.get(_F.STEINHART) or (),
-        companion=maker.needed(decoded, _F.WITH, what),
+        companion=companion,
         side=decoded.get(_F.SIDE) or Side.BOTTOM,
         supply=supply,
         place=decoded.table.place,

@@ -38,7 +38,7 @@ def check_flow(
 ) -> None:
     """Follow a channel's unit to its pin (an output: from the pin); note what does not fit."""
     try:
-        end = _through(stages, unit.dimension if to_pin else VOLT)
+        end = _through(stages, unit if to_pin else None)
     except BoardError as error:
         mistakes.extend(error.mistakes)
         return
@@ -47,7 +47,7 @@ def check_flow(
     if not stages:
         mistakes.add(place, f"unit is {named(unit)}, but without a chain it is V, as at the pin")
         return
-    what = "the pin takes V" if to_pin else f"the channel's unit is {named(unit)}"
+    what = "the pin takes V" if to_pin else _channel_unit(unit)
     mistakes.add(stages[-1].place, f"the chain ends in {_word(end)}, but {what}")
 
 
@@ -55,7 +55,7 @@ def default_unit(stages: tuple[Stage, ...], *, to_pin: bool) -> Unit:
     """The unit of a channel that states none: what its chain takes (an output: gives)."""
     if not to_pin:
         try:
-            return coherent(_through(stages, VOLT))
+            return coherent(_through(stages, None))
         except BoardError:
             return coherent(VOLT)
     match stages[:1]:
@@ -77,10 +77,22 @@ def default_unit(stages: tuple[Stage, ...], *, to_pin: bool) -> Unit:
             return coherent(VOLT)
 
 
-def _through(stages: tuple[Stage, ...], kind: Dimension) -> Dimension:
-    for stage in stages:
-        kind = _leaving(stage, kind)
+def _through(stages: tuple[Stage, ...], unit: Unit | None) -> Dimension:
+    """What leaves a chain that a unit enters; None: the pin of an output, with its voltage."""
+    kind, origin = VOLT, "the pin gives V"
+    if unit is not None:
+        kind, origin = unit.dimension, _channel_unit(unit)
+    for position, stage in enumerate(stages):
+        if position and isinstance(stage, Against):
+            message = "an against stage comes first in its chain: its voltage is what the pin sees"
+            raise wrong(stage.place, message)
+        kind = _leaving(stage, kind, origin)
+        origin = f"the {stage.KIND} stage before it gives {_word(kind)}"
     return kind
+
+
+def _channel_unit(unit: Unit) -> str:
+    return f"the channel's unit is {named(unit)}"
 
 
 def _takes(stage: Stage) -> Dimension:
@@ -98,13 +110,16 @@ def _takes(stage: Stage) -> Dimension:
             return VOLT
 
 
-def _leaving(stage: Stage, entering: Dimension) -> Dimension:
-    """What leaves a stage; raises `BoardError` where it does not take what enters."""
+def _leaving(stage: Stage, entering: Dimension, origin: str) -> Dimension:
+    """What leaves a stage; raises `BoardError` where it does not take what enters.
+
+    `origin` says in a sentence what enters and where that was stated.
+    """
     if isinstance(stage, Linear):
-        return _leaving_linear(stage, entering)
+        return _leaving_linear(stage, entering, origin)
     if entering != _takes(stage):
-        message = f"a {stage.KIND} stage takes {_word(_takes(stage))}, but {_word(entering)}"
-        raise wrong(stage.place, f"{_article(message)} reaches it")
+        message = f"a {stage.KIND} stage takes {_word(_takes(stage))}, but {origin}"
+        raise wrong(stage.place, _article(message))
     if isinstance(stage, Amplifier):
         _check_offset(stage.offset, VOLT)
     match stage:
@@ -116,16 +131,16 @@ def _leaving(stage: Stage, entering: Dimension) -> Dimension:
             return VOLT
 
 
-def _leaving_linear(stage: Linear, entering: Dimension) -> Dimension:
+def _leaving_linear(stage: Linear, entering: Dimension, origin: str) -> Dimension:
     sensitivity = stage.sensitivity
     unit = sensitivity.quantity.unit
     leaving = product(unit.dimension, entering)
     if unit.below != entering and leaving not in (VOLT, AMPERE, OHM):
-        message = f"the sensitivity is in {named(unit)}, but {_word(entering)} reaches this stage"
-        raise wrong(sensitivity.place, message)
+        per = f"per {named(under_bar(unit))}" if unit.below else f"in {named(unit)}"
+        raise wrong(sensitivity.place, f"the sensitivity is {per}, but {origin}")
     if stage.at is not None and stage.at.quantity.unit.dimension != entering:
-        message = f"at is in {named(stage.at.quantity.unit)}, but {_word(entering)}"
-        raise wrong(stage.at.place, f"{message} reaches this stage")
+        message = f"at is in {named(stage.at.quantity.unit)}, but {origin}"
+        raise wrong(stage.at.place, message)
     _check_offset(stage.offset, leaving)
     return leaving
 
