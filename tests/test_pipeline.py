@@ -103,8 +103,33 @@ def test_a_channel_that_does_not_exist() -> None:
 def test_a_family_that_does_not_exist() -> None:
     """A family that no data file describes is refused with those that are known."""
     Path("board.toml").write_text('[target]\nfamily = "nowhere-99"\n' + BOARD)
-    with pytest.raises(UsageError, match="a family 'nowhere-99' that does not exist"):
+    with pytest.raises(BoardError, match="board.toml:2:10: error: no family 'nowhere-99' is known"):
         _run()
+
+
+def test_an_include_folder_that_does_not_exist() -> None:
+    """A folder for headers that is not there is refused before anything is read."""
+    with pytest.raises(UsageError, match="-I nowhere: no such folder"):
+        _run(includes=("nowhere",))
+
+
+def test_a_source_with_another_ending() -> None:
+    """A file that is named is read whatever its name, and the run says so."""
+    Path("src/poll.c").rename("src/poll.inc")
+    outcome = _run(sources=("src/poll.inc",))
+    assert outcome.counts["verified"] == 2
+    assert outcome.problems == (
+        "src/poll.inc: note: read as C, although its name ends neither in .c nor in .h",
+    )
+
+
+def test_everything_missing_is_said_at_once() -> None:
+    """Paths, families and rules that do not exist are reported in one run, in order."""
+    head = '[board]\ninclude = "no"\n[target]\nfamily = "no"\n'
+    Path("board.toml").write_text(head + BOARD + DEVIATION.replace("full-scale", "fullscale"))
+    with pytest.raises(BoardError) as caught:
+        _run()
+    assert [one.place.line for one in caught.value.mistakes] == [2, 4, 20]
 
 
 @pytest.mark.parametrize(

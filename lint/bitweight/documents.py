@@ -22,21 +22,16 @@ from tree_sitter import Language, Node, Parser
 
 from bitweight.errors import BoardError, Mistake, SourceError
 from bitweight.places import LineIndex, Place
+from bitweight.toml_texts import DEPTH, on_one_line, with_short_numbers
 
 FILE_BYTES = 1 << 20
 """Largest TOML file read; a board of a hundred channels takes about 50 KB."""
-
-DEPTH = 32
-"""Deepest nesting of tables and arrays; a chain's table needs six."""
 
 KeyPath = tuple[str | int, ...]
 """Names of keys and positions in arrays, from the root."""
 
 ScalarValue = str | int | bool | Decimal | date | time
 """A value without parts; numbers with a point are `Exact` decimals."""
-
-_MOST_DIGITS = 400
-"""Digits of a whole number that are read; every range of the board file ends far below."""
 
 
 class Exact(Decimal):
@@ -96,8 +91,8 @@ def read_document(path: Path, *, shown: str) -> Table:
 
 def parse_document(text: str, *, file: str) -> Table:
     """The tree of a TOML text. Raises `BoardError` with one mistake when it is not TOML."""
-    plain = _with_short_numbers(text.removeprefix("\ufeff").replace("\r\n", "\n"))
-    flat = _on_one_line(plain, file)
+    plain = with_short_numbers(text.removeprefix("\ufeff").replace("\r\n", "\n"))
+    flat = on_one_line(plain, file)
     places = _Places(flat, plain, file)
     try:
         data = tomli.loads(plain, parse_float=_exact)
@@ -159,68 +154,7 @@ def _exact(text: str) -> Decimal:
     return number
 
 
-def _with_short_numbers(text: str) -> str:
-    """The text with endless whole numbers cut, every other character kept where it is.
-
-    Python refuses to read them; what is left is still larger than any key accepts, so that the
-    mistake is reported at its key and the others with it.
-    """
-    if not _ENDLESS.search(text):
-        return text
-    return "".join(
-        _ENDLESS.sub(_cut, match.group()) if match.lastgroup == "other" else match.group()
-        for match in _PIECE.finditer(text)
-    )
-
-
-def _cut(match: re.Match[str]) -> str:
-    digits = match.group()
-    kept = digits[:_MOST_DIGITS].rstrip("_")
-    return kept.ljust(len(digits))
-
-
 # What follows finds the places.
-
-_ENDLESS = re.compile(rf"(?<![\w.])[1-9][0-9_]{{{_MOST_DIGITS},}}(?![\w.])")
-
-_PIECE = re.compile(
-    r"""(?P<comment>\#[^\n]*)
-      | \"\"\"(?:\\.|(?!\"\"\").)*\"{3,5} | '''(?:(?!''').)*'{3,5}
-      | "(?:\\.|[^"\\\n])*" | '[^'\n]*'
-      | (?P<open>[\[{]) | (?P<close>[\]}]) | (?P<comma>,) | (?P<line>\n)
-      | (?P<blank>[ \t]+) | (?P<other>[^\#"'\[\]{},\n\ \t]+|.)""",
-    re.VERBOSE | re.DOTALL,
-)
-
-
-def _on_one_line(text: str, file: str) -> str:
-    """The text with inline tables written on one line, every character kept where it is.
-
-    Newer TOML allows line ends, comments and a last comma inside inline tables; the syntax tree
-    does not. Raises `BoardError` where brackets nest too deeply.
-    """
-    pieces: list[str] = []
-    inside: list[str] = []
-    comma: int | None = None
-    for match in _PIECE.finditer(text):
-        piece, kind = match.group(), match.lastgroup
-        in_table = "{" in inside
-        if kind == "open":
-            inside.append(piece)
-            if len(inside) > DEPTH:
-                place = LineIndex(text).place(file, match.start())
-                raise _mistake(place, f"nested more than {DEPTH} deep")
-        elif kind == "close":
-            if piece == "}" and in_table and comma is not None:
-                pieces[comma] = " "
-            if inside:
-                inside.pop()
-        elif in_table and kind in ("line", "comment"):
-            piece = " " * len(piece)
-        if kind not in ("line", "comment", "blank"):
-            comma = len(pieces) if kind == "comma" else None
-        pieces.append(piece)
-    return "".join(pieces)
 
 
 @dataclass(frozen=True, slots=True)
@@ -440,7 +374,7 @@ def _complaint(error: tomli.TOMLDecodeError, text: str) -> str:
     day = _DAY.match(rest)
     if day is not None and "date" in error.msg:
         return f"there is no day {day.group()}"
-    in_name = "key" in error.msg or "declaration" in error.msg
+    in_name = error.msg == "Invalid statement" or "key" in error.msg or "declaration" in error.msg
     if in_name and rest[:1].isalpha() and not rest[:1].isascii():
         return "put a name with other letters than a to z in quotes"
     return _EXPECTED.get(error.msg, error.msg[:1].lower() + error.msg[1:])

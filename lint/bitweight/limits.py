@@ -33,6 +33,8 @@ class Limits:
     """Turns of a loop with constant bounds that are unrolled."""
     expression_nodes: int = 200_000
     """Nodes of one traced expression."""
+    forks: int = 1_000
+    """Conditions on the way to one result; tables as chains of `if` reach 300."""
     block_codes: int = 1 << 16
     """Codes evaluated at a time, so that 24 bits fit in memory."""
     seconds: float = 600.0

@@ -13,7 +13,7 @@ from pathlib import Path
 from bitweight.arithmetic.expressions import Literal, walk
 from bitweight.board.decoding.boards import load_board
 from bitweight.board.hardware import Board
-from bitweight.errors import SourceError, UsageError
+from bitweight.errors import BoardError, SourceError, UsageError
 from bitweight.firmware.constants import Conflict, conflicts
 from bitweight.firmware.files import SourceTree
 from bitweight.firmware.outlines import line_text
@@ -23,8 +23,10 @@ from bitweight.firmware.units import Unit
 from bitweight.judge.aims import aim, givens, limit_aims
 from bitweight.judge.cases import Case, Facts, judge_case
 from bitweight.judge.deviations import Remark, remarks_in
+from bitweight.judge.expressions_given import wrong_expressions
 from bitweight.judge.findings import Finding
 from bitweight.judge.outcomes import Outcome
+from bitweight.judge.requirements import unused_keys, wrong_names
 from bitweight.judge.rules import load_rules, run_rules
 from bitweight.judge.statuses import counts, reasons_of, settle, statuses_of
 from bitweight.limits import Deadline
@@ -64,6 +66,7 @@ def verify(request: Request, progress: Progress) -> Outcome:
     path = Path(request.board)
     board = load_board(path, shown=_shown(path), variant=request.variant)
     board = _only(board, request.channel)
+    _check(board, path, request, tuple(rule.name for rule in rules))
     progress("reading sources", 0, 0)
     tree = _tree(board, path, request)
     with _deep_recursion():
@@ -79,7 +82,7 @@ def verify(request: Request, progress: Progress) -> Outcome:
         reasons=reasons_of(facts.cases),
         counts=counts(findings, statuses),
         source_lines=_source_lines(tree, findings),
-        problems=_problems(tree, traced.context.program),
+        problems=(*unused_keys(board), *_problems(tree, traced.context.program)),
     )
 
 
@@ -92,6 +95,22 @@ def _only(board: Board, channel: str | None) -> Board:
         hint = f", did you mean {near[0]!r}?" if near else ""
         raise UsageError(f"{board.file} has no channel {channel!r}{hint}")
     return replace(board, channels=kept)
+
+
+def _check(board: Board, path: Path, request: Request, rules: tuple[str, ...]) -> None:
+    """Refuse a board file or a request that names what does not exist."""
+    for include in request.includes:
+        if not Path(include).is_dir():
+            raise UsageError(f"-I {include}: no such folder")
+    mistakes = wrong_names(
+        board,
+        path.parent,
+        sources_given=bool(request.sources),
+        families=load_families(),
+        rules=rules,
+    )
+    if mistakes:
+        raise BoardError(mistakes)
 
 
 def _shown(path: Path) -> str:
@@ -135,11 +154,6 @@ def _families(board: Board) -> tuple[Family, ...]:
     known = load_families()
     by_name = {alias: one for one in known.values() for alias in (one.name, *one.aliases)}
     wanted = {board.target.family, *(one.family for one in board.converters)} - {None}
-    for name in sorted(str(one) for one in wanted):
-        if name not in by_name:
-            near = get_close_matches(name, by_name, 1)
-            hint = f", did you mean {near[0]!r}?" if near else f"; known: {', '.join(known)}"
-            raise UsageError(f"{board.file} names a family {name!r} that does not exist{hint}")
     if not wanted:
         architecture = board.target.architecture
         return tuple(one for one in known.values() if one.architecture == architecture)
@@ -160,6 +174,9 @@ def _trace(board: Board, tree: SourceTree, request: Request, progress: Progress)
         limits=request.limits,
         marks=results,
     )
+    mistakes = wrong_expressions(board, program)
+    if mistakes:
+        raise BoardError(mistakes)
     context = Context(
         program=program,
         model=model,
@@ -228,6 +245,11 @@ def _source_lines(tree: SourceTree, findings: tuple[Finding, ...]) -> Mapping[tu
 
 def _problems(tree: SourceTree, program: Program) -> tuple[str, ...]:
     found = [f"{path}: note: not read: {reason}" for path, reason in tree.skipped]
+    found += [
+        f"{file.path}: note: read as C, although its name ends neither in .c nor in .h"
+        for file in tree.files
+        if not file.path.endswith((".c", ".h"))
+    ]
     for unit in program.units.values():
         found += [f"{one.place}: note: {one.message}" for one in unit.translation.problems]
     return tuple(dict.fromkeys(found))

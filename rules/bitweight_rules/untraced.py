@@ -14,10 +14,28 @@ from bitweight.api import (
 
 
 def check(case: Case, facts: Facts) -> Iterator[Finding]:
-    """A warning with the reason, and one for each limit whose constant has no value."""
+    """A warning with the reason, and one for each limit whose constant has no value.
+
+    What was followed only by taking a variable at its default is a note.
+    """
     if case.judgement is None and not any(map(reads_another, case.trace.conversions)):
         yield _channel(case)
+    yield from _assumed(case)
     yield from _limits(case, facts)
+
+
+def _assumed(case: Case) -> Iterator[Finding]:
+    """A note for each variable that was judged at a default it need not keep."""
+    if case.judgement is None:
+        return
+    for assumption in case.judgement.conversion.assumed:
+        yield Finding(
+            rule=RULE.name,
+            level=Level.NOTE,
+            channels=(case.channel.name,),
+            message=f"{assumption.message}; give its value in [constants] if it is another",
+            place=assumption.place,
+        )
 
 
 def _channel(case: Case) -> Finding:
@@ -58,7 +76,7 @@ RULE = ChannelRule(
     formula="no conversion from the channel's reading to a result could be evaluated",
     source="common practice: what was not seen is never silently fine",
     check=check,
-    levels="warning",
+    levels="warning; note where a variable is judged at its declared default",
     mend="compare the spelling of reading (and value) with the code; limit it by @ FUNCTION or "
     "@ FILE where the same text means several things; select the build with -D and define; give "
     "run-time data a value in [constants]",

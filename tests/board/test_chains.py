@@ -175,7 +175,7 @@ def test_a_bipolar_converter_ends_at_both_references() -> None:
         ("", "kind = 'dac'\nbits = 8", "dac converters are not computed yet"),
         ("", "kind = 'pwm'\nbits = 8", "pwm converters are not computed yet"),
         (
-            "{kind='shunt', resistance='1k'}, {kind='against', voltage='1.1 V'}",
+            "{kind='against', voltage='1.1 V'}",
             "bits = 8",
             "against stages are not computed yet",
         ),

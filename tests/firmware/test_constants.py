@@ -50,9 +50,7 @@ def test_near_misses_are_silent() -> None:
             "b.c": '#include "b.h"\n' + USE,
         }
     )
-    assert not found(
-        {"a.c": "#define VREF_MV 3300\n" + USE, "b.c": "#define VREF_MV 5000\n" + USE}
-    )
+    assert not found({"a.c": "#define VREF_MV 3300\n" + USE, "b.c": "#define VREF_MV 5000\n" + USE})
     assert not found(
         {
             "a.h": "#if 0\n#define VREF_MV 5000\n#else\n#define VREF_MV 3300\n#endif\n",

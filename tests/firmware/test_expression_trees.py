@@ -146,9 +146,7 @@ def test_a_marked_stretch_is_named() -> None:
     """An expression that is the whole expansion of a wanted macro bears its name."""
     text = snippet("x = a + b;")
     start = text.index("a + b")
-    tree = Parser(
-        text, is_type=lambda name: False, marks={(start, start + 5): "MV"}
-    ).expression()
+    tree = Parser(text, is_type=lambda name: False, marks={(start, start + 5): "MV"}).expression()
     assert drawn(tree) == "(x = MV:(a + b))"
 
 

@@ -100,6 +100,20 @@ def test_a_source_without_c_is_an_error(tmp_path: Path, source: str) -> None:
         read(tmp_path, source)
 
 
+def test_why_no_file_could_be_read(tmp_path: Path) -> None:
+    """The reason of each file that was not read stands on the line of the error."""
+    put(tmp_path, "src/a.c", b"\0")
+    with pytest.raises(SourceError, match=r"src: error: .* can be read: src/a.c: not a text file"):
+        read(tmp_path, "src")
+
+
+def test_patterns_that_leave_nothing(tmp_path: Path) -> None:
+    """Where the exclusions take every file, they are named as the cause."""
+    put(tmp_path, "src/a.c")
+    with pytest.raises(SourceError, match="exclude in .board. leaves all of them out"):
+        read(tmp_path, "src", exclude=["*"])
+
+
 TREE = ("src/app/main.c", "src/app/own.h", "src/own.h", "src/drv/adc.h", "src/boards/b1/pins.h")
 
 

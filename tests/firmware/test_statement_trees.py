@@ -79,7 +79,9 @@ def test_cases_hold_their_statements() -> None:
 
 def test_jumps_know_where_they_lead() -> None:
     """A goto carries its label, break and continue their kind alone."""
-    jumps = [one for one in body("goto out; out: ; break; continue;").items if isinstance(one, Jump)]
+    jumps = [
+        one for one in body("goto out; out: ; break; continue;").items if isinstance(one, Jump)
+    ]
     assert [(one.kind, one.label) for one in jumps] == [
         ("goto", "out"),
         ("break", ""),

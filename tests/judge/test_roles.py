@@ -257,6 +257,34 @@ WRONG = {
         MILLI,
         [("resolution", "12 bits", "10 bits")],
     ),
+    "shift for a count of 2**n - 1": (
+        Board(counts=(1023,)),
+        (raw() * const("5000UL", "VREF_MV")) >> const("10"),
+        MILLI,
+        [("full-scale", "1024", "1023")],
+    ),
+    "mask that drops bits": (
+        TWELVE_BITS,
+        (raw() & const("0x3FF", "ADC_MASK")) * const("3300UL") / const("4096"),
+        MILLI,
+        [("resolution", "0x3FF", "0xFFF")],
+    ),
+    "mask and count of other bits": (
+        TWELVE_BITS,
+        (raw() & const("0x3FF", "ADC_MASK")) * const("3300UL") / const("1024", line=7),
+        MILLI,
+        [("resolution", "0x3FF", "0xFFF"), ("resolution", "1024", "4096")],
+    ),
+    "resistors swapped, named by their side": (
+        DIVIDED,
+        raw().cast("float")
+        * const("5.0f")
+        / const("1024.0f")
+        * (const("10000.0f", "R_TOP") + const("100e3f", "R_BOT"))
+        / const("100e3f", "R_BOT"),
+        Fraction(1),
+        [("divider-ratio", "10000.0 ohm", "100000.0 ohm"), ("divider-ratio", "100e3 ohm", "10e3 ohm")],
+    ),
     "left read as right": (
         LEFT,
         scaled("5000ULL", "1024"),
@@ -518,3 +546,35 @@ def test_no_board_line_needs_no_explanation() -> None:
     """Where the board's side is no straight line there is nothing to explain."""
     asked = question(TEN_BITS, scaled("5000UL", "1023"))
     assert explain(replace(asked, lines=())) == Explanation()
+
+
+UNEXPLAINED = {
+    "a factor two too many": scaled("5000UL", "1024", name=None) * const("11") * const("2", line=8),
+    "a fact that is another one already": scaled("5000UL", "1024", name=None) * const("22"),
+    "samples divided by too few": (raw("uint32_t") + raw("uint32_t") + raw("uint32_t"))
+    / const("2")
+    * const("5000UL")
+    * const("11")
+    / const("1024"),
+    "a missing pair of parentheses": raw().cast("float")
+    * const("5.0f")
+    / const("1024.0f")
+    * const("100e3f", "R_TOP")
+    + const("10e3f", "R_LO") / const("10e3f", "R_LO"),
+}
+
+
+@pytest.mark.parametrize("code", UNEXPLAINED.values(), ids=UNEXPLAINED.keys())
+def test_a_constant_that_is_a_fact_is_not_blamed(code: Operand) -> None:
+    """A count, a reference or a resistance that is the board's stands, whatever else is wrong."""
+    explanation = explain(question(DIVIDED, code, MILLI))
+    board = {"5000UL", "5.0f", "1024", "1024.0f", "11", "100e3f", "10e3f"}
+    assert not board & {wrong.leaf.text for wrong in explanation.wrong if wrong.leaf}
+    assert all(wrong.leaf for wrong in explanation.wrong)
+
+
+def test_nameless_constant_alone_is_no_resistance() -> None:
+    """A divisor of samples is no resistor of 8 kohm, unless its neighbour is one."""
+    code = scaled("5000UL", "1024") * const("11") * const("10") / const("8", line=8)
+    rules = {wrong.rule for wrong in explain(question(DIVIDED, code, MILLI)).wrong}
+    assert "divider-ratio" not in rules

@@ -2,7 +2,7 @@
 
 import facts
 from bitweight.judge.findings import Level
-from bitweight.trace.conversions import Trace
+from bitweight.trace.conversions import Step, Trace
 from bitweight.trace.thresholds import Threshold
 from bitweight_rules.untraced import RULE
 from facts import C, at, findings_of
@@ -47,3 +47,16 @@ def test_limit_without_a_value() -> None:
     (found,) = findings_of(RULE.check, case, thresholds=(open_,))
     assert found.message == "limit relief: LIMIT was not compared: LIMIT is not defined"
     assert found.place.line == 26
+
+
+def test_a_default_is_a_note() -> None:
+    """What was judged at a declared value that the program may overwrite is told where it is used."""
+    c = C()
+    scaled = c.op(c.op(c.code(), "*", "5000"), "/", "1024")
+    used = Step(place=at(21, 9), message="cal is judged at its declared value")
+    traced = Trace(channel="tank", conversions=(facts.conversion(scaled, assumed=(used,)),))
+    (found,) = findings_of(RULE.check, facts.case(traced=traced))
+    assert (found.level, found.place) == (Level.NOTE, used.place)
+    assert found.message == (
+        "cal is judged at its declared value; give its value in [constants] if it is another"
+    )

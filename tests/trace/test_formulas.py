@@ -1,57 +1,39 @@
-"""A traced expression as one line of C."""
+"""Expressions as C text."""
 
 import pytest
 
-from bitweight.arithmetic.expressions import Expression
 from bitweight.trace.formulas import formula
-from facts import C
-
-
-def clamped(c: C, *, low_first: bool) -> Expression:
-    """A reading held between two constants."""
-    code, low, high = c.code(), c.number("4", "LOW"), c.number("900", "HIGH")
-    upper = c.choose(c.op(code, ">", high), high, code)
-    lower = c.choose(c.op(code, "<", low), low, code)
-    if low_first:
-        return c.choose(c.op(code, "<", low), low, upper)
-    return c.choose(c.op(code, ">", high), high, lower)
-
-
-@pytest.mark.parametrize("low_first", [True, False])
-def test_a_clamp_is_written_as_one(low_first: bool) -> None:
-    """Both ends of a clamp, whichever is tested first, stand in one call."""
-    c = C()
-    text = formula(clamped(c, low_first=low_first))
-    assert text == f"clamp({formula(c.code())}, LOW, HIGH)"
+from tracing_cases import entry, traced
 
 
 @pytest.mark.parametrize(
-    ("operator", "swapped", "name"),
-    [("<", False, "max"), ("<", True, "min"), (">=", False, "min"), (">=", True, "max")],
+    ("before", "text", "shown"),
+    [
+        ("", "adc() * 3300 / 4096", "adc() * 3300 / 4096"),
+        ("", "adc() * (3300 / 4)", "adc() * (3300 / 4)"),
+        ("", "(adc() + 1) * 2", "(adc() + 1) * 2"),
+        ("", "adc() - (5 - 2)", "adc() - (5 - 2)"),
+        ("", "adc() - 5 - 2", "adc() - 5 - 2"),
+        ("", "-(adc() + 1)", "-(adc() + 1)"),
+        ("", "(uint32_t)adc() << 2", "(unsigned int)adc() << 2"),
+        ("", "(uint8_t)(adc() >> 4)", "(unsigned char)(adc() >> 4)"),
+        ("", "adc() == 5 ? 1 : adc()", "adc() == 5 ? 1 : adc()"),
+        ("#define FULL 4096", "adc() * 2 / FULL", "adc() * 2 / FULL"),
+        ("#define FULL (1 << 12)", "adc() * 2 / FULL", "adc() * 2 / (1 << 12)"),
+        ("static const int vref = 3300;", "adc() * vref", "adc() * vref"),
+        ("", "~adc() & 0xFFF", "~adc() & 0xFFF"),
+        ("", "adc() > 3000 ? 3000 : adc()", "min(adc(), 3000)"),
+    ],
 )
-def test_a_bound_is_written_as_one(operator: str, swapped: bool, name: str) -> None:
-    """The larger or the smaller of two values, by what the condition compares."""
-    c = C()
-    code, limit = c.code(), c.number("900", "LIMIT")
-    arms = (code, limit) if swapped else (limit, code)
-    text = formula(c.choose(c.op(code, operator, limit), *arms))
-    assert text == f"{name}({formula(code)}, LIMIT)"
+def test_formulas_are_c(before: str, text: str, shown: str) -> None:
+    """Parentheses only where C needs them, casts as written, constants by name."""
+    trace = traced(entry(f"mv = {text};", before), value="mv")
+    assert formula(trace.conversions[0].expression) == shown
 
 
-def test_another_choice_stays_a_choice() -> None:
-    """A choice of something else than what is compared is shown as the code has it."""
-    c = C()
-    code = c.code()
-    chosen = c.choose(c.op(code, "<", c.number("4", "LOW")), c.number("0"), code)
-    assert formula(chosen) == f"{formula(code)} < LOW ? 0 : {formula(code)}"
-
-
-def test_a_long_formula_ends_before_an_operator() -> None:
-    """What is too long is cut between names, with one mark."""
-    c = C()
-    whole: Expression = c.code()
-    for _ in range(60):
-        whole = c.op(whole, "*", c.number("3", "FACTOR"))
-    text = formula(whole)
-    assert len(text) <= 240
-    assert text.endswith("FACTOR ...")
+def test_a_long_formula_is_cut() -> None:
+    """What does not fit a screen line or two ends in dots."""
+    text = " + ".join(f"adc() * {n}" for n in range(100))
+    found = formula(traced(entry(f"mv = {text};"), value="mv").conversions[0].expression)
+    assert len(found) <= 240
+    assert found.endswith("...")

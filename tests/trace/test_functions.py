@@ -57,7 +57,9 @@ def test_goto(body: str, expected: Expected) -> None:
     check(entry(body), expected)
 
 
-LEAVES_EARLY = "int f(void) { int t; uint16_t r = adc(); if (r > 4090) return -1; t = r * 3; return t; }"
+LEAVES_EARLY = (
+    "int f(void) { int t; uint16_t r = adc(); if (r > 4090) return -1; t = r * 3; return t; }"
+)
 
 
 def test_a_local_is_taken_where_it_is_set() -> None:

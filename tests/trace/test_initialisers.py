@@ -94,7 +94,13 @@ def test_lists_nested_without_end_are_not_understood() -> None:
 
 @pytest.mark.parametrize(
     ("text", "count"),
-    [("{1, 2, 3}", 3), ("{[4] = 1}", 5), ("{[4] = 1, 2, [0] = 3}", 6), ("{}", 0), ("{[x] = 1}", None)],
+    [
+        ("{1, 2, 3}", 3),
+        ("{[4] = 1}", 5),
+        ("{[4] = 1, 2, [0] = 3}", 6),
+        ("{}", 0),
+        ("{[x] = 1}", None),
+    ],
 )
 def test_the_length_of_an_open_array(text: str, count: int | None) -> None:
     """An array without a written size ends with its last initialiser (6.7.9p22)."""

@@ -4,9 +4,7 @@ import pytest
 
 from tracing_cases import HEAD, Expected, check, entry
 
-TABLES = (
-    "static const int xs[] = {0, 1000, 2000, 4096};\nstatic const int ys[] = {0, 10, 40, 100};"
-)
+TABLES = "static const int xs[] = {0, 1000, 2000, 4096};\nstatic const int ys[] = {0, 10, 40, 100};"
 
 
 @pytest.mark.parametrize(

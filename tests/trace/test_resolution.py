@@ -52,8 +52,9 @@ def test_a_default_that_something_overwrites_is_assumed() -> None:
     """A declared value that may change is used, and the conversion says so."""
     text = "static int gain = 3;\nvoid tune(int v) { gain = v; }\n"
     trace = traced(entry("mv = adc() * gain;", text), value="mv")
-    assert trace.conversions[0].assumed == (
-        "gain is judged at its declared value, which the program may overwrite",
+    (assumption,) = trace.conversions[0].assumed
+    assert assumption.message == (
+        "gain is judged at its declared value, which the program may overwrite"
     )
     assert at_codes(trace.conversions[0].expression, (100,)) == [300]
 

@@ -73,7 +73,5 @@ def test_without_a_value_every_end_counts(
 ) -> None:
     """Objects that outlive, results and arguments that leave; bare copies beside none."""
     trace = traced(sources)
-    found = {
-        one.result: tuple(at_codes(one.expression, CODES)) for one in trace.conversions
-    }
+    found = {one.result: tuple(at_codes(one.expression, CODES)) for one in trace.conversions}
     assert found == results

@@ -27,6 +27,9 @@ class Numbers(Protocol):
     def divide(self, left: Any, right: Any) -> Any:
         """The quotient; NaN for a division by zero."""
 
+    def within(self, value: Any, low: int, high: int) -> bool:
+        """Whether every value lies between two bounds; False where one has no value."""
+
     def floor(self, value: Any) -> Any:
         """The largest whole number that is not above the value."""
 
@@ -54,6 +57,9 @@ class ExactNumbers:
 
     def divide(self, left: Any, right: Any) -> Any:
         return math.nan if right == 0 else left / right
+
+    def within(self, value: Any, low: int, high: int) -> bool:
+        return bool(low <= value <= high)
 
     def floor(self, value: Any) -> Any:
         return Fraction(math.floor(value)) if value == value else value
@@ -88,7 +94,12 @@ class FloatNumbers:
         return np.array([scalars.nearest(value, 64)])
 
     def divide(self, left: Any, right: Any) -> Any:
+        if np.size(right) == 1 and np.all(right):
+            return left / right
         return np.where(right == 0, np.nan, left / np.where(right == 0, 1.0, right))
+
+    def within(self, value: Any, low: int, high: int) -> bool:
+        return bool(np.size(value) and np.min(value) >= low and np.max(value) <= high)
 
     def floor(self, value: Any) -> Any:
         return np.floor(value)

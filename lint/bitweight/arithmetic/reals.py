@@ -183,6 +183,8 @@ class RealForm:
             return numbers.holds(value != 0, value)
         if word is None or not target.is_integer or node.purpose not in SPELLED:
             return value
+        if numbers.within(value, target.low, target.high):
+            return value
         wrapped = _wrapped(numbers, value, target)
         return numbers.select(_decodes(node, word, value), wrapped, value)
 

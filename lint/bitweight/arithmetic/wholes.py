@@ -145,7 +145,9 @@ def _same_head(one: Expression, other: Expression) -> bool:
             return one.value == other.value
         case Code(), Code():
             return one.channels == other.channels and one.place == other.place
-        case (Unary(), Unary()) | (Binary(), Binary()):
+        case Unary(), Unary():
+            return one.operator == other.operator
+        case Binary(), Binary():
             return one.operator == other.operator
         case Choose(), Choose():
             return True

@@ -21,6 +21,8 @@ from bitweight.places import LineIndex, Place
 
 _Derived = TypeVar("_Derived")
 _SUFFIXES = (".c", ".h")
+_MOST_SHOWN = 3
+"""Files that are named where none could be read."""
 _BYTE_ORDER_MARKS = (
     (b"\xef\xbb\xbf", "utf-8"),
     (b"\xff\xfe", "utf-16-le"),
@@ -95,8 +97,8 @@ class SourceTree:
         self.files = self._load_all(found)
         if not self.files:
             shown = ", ".join(map(str, sources)) or "."
-            reason = "no C file here can be read" if found else "no C file here"
-            raise SourceError(path=shown, message=reason)
+            all_excluded = bool(exclude) and bool(self._find(starts, _nothing))
+            raise SourceError(path=shown, message=self._why_none(all_excluded=all_excluded))
 
     @classmethod
     def of(cls, *files: SourceFile) -> "SourceTree":
@@ -165,6 +167,15 @@ class SourceTree:
                     self._skipped[self._shown(start)] = f"more than {self._limits.files} files"
                     return list(found)
         return list(found)
+
+    def _why_none(self, *, all_excluded: bool) -> str:
+        """Why no file was read, in words for the user."""
+        if self._skipped:
+            reasons = "; ".join(f"{path}: {reason}" for path, reason in self.skipped[:_MOST_SHOWN])
+            return f"no C file here can be read: {reasons}"
+        if all_excluded:
+            return "no C file is left here: exclude in [board] leaves all of them out"
+        return "no C file here"
 
     def _load_all(self, paths: Iterable[str]) -> tuple[SourceFile, ...]:
         files = filter(None, map(self._open, paths))
@@ -246,6 +257,11 @@ def decoded(content: bytes) -> str | None:
         return content.decode("utf-8")
     except UnicodeDecodeError:
         return content.decode("latin-1")
+
+
+def _nothing(path: str, start: str) -> bool:
+    """Excludes no file."""
+    return False
 
 
 def _walk(folder: str) -> Iterator[str]:

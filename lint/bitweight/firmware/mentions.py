@@ -23,7 +23,8 @@ class Mentions:
     """Names in one function body; its own locals, static ones aside, are only in `names`.
 
     `through` are pointers through which is written, `addressed` objects whose address is taken,
-    `passes` what stands as an argument.
+    `passes` what stands as an argument. `members` are those that are written, or are part of what
+    is, or whose address is taken.
     """
 
     names: frozenset[str]
@@ -32,6 +33,7 @@ class Mentions:
     addressed: frozenset[str]
     passes: frozenset[str]
     calls: frozenset[str]
+    members: frozenset[str]
     loops: bool
 
     @property
@@ -48,6 +50,7 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
     addressed: set[str] = set()
     passes: set[str] = set()
     calls: set[str] = set()
+    members: set[str] = set()
     declared: set[str] = set(parameters)
     loops = False
     for node in nodes(body):
@@ -58,8 +61,10 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
                 names.add(node.name)
             case Assign() | Increment():
                 (through if _is_pointed(node.target) else writes).update(_root(node.target))
+                members.update(_members(node.target))
             case Operation(operator="&"):
                 addressed |= _root(node.operand)
+                members.update(_members(node.operand))
             case Call():
                 calls |= _root(node.function)
                 for argument in node.arguments:
@@ -77,6 +82,7 @@ def mentions(body: Node, parameters: frozenset[str]) -> Mentions:
         addressed=frozenset(addressed - declared),
         passes=frozenset(passes - declared),
         calls=frozenset(calls),
+        members=frozenset(members),
         loops=loops,
     )
 
@@ -109,6 +115,14 @@ def _is_pointed(node: Node) -> bool:
     while isinstance(node, Member | Index):
         node = node.base
     return isinstance(node, Operation) and node.operator == "*"
+
+
+def _members(node: Node) -> Iterator[str]:
+    """The members on the way to what an lvalue designates."""
+    while isinstance(node, Member | Index | Operation):
+        if isinstance(node, Member):
+            yield node.name
+        node = node.operand if isinstance(node, Operation) else node.base
 
 
 def _root(node: Node) -> set[str]:

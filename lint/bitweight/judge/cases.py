@@ -137,7 +137,9 @@ def _frames(
 
 def _only_raw(channel: Channel, trace: Trace) -> str:
     names = dict.fromkeys(one.result for one in trace.conversions)
-    return f"only the raw code leaves ({', '.join(names)}), no conversion of {channel.name} was found"
+    return (
+        f"only the raw code leaves ({', '.join(names)}), no conversion of {channel.name} was found"
+    )
 
 
 def _ambiguous(judgements: Sequence[Judgement]) -> str:

@@ -10,6 +10,7 @@ from dataclasses import dataclass, replace
 from fractions import Fraction
 from types import MappingProxyType
 
+from bitweight.arithmetic import wholes
 from bitweight.arithmetic.expressions import (
     Binary,
     Code,
@@ -34,11 +35,12 @@ class Knob:
     """One constant. `half` is half of its last written digit, `whole` whether it is an integer.
 
     `counts_bits` is true for the right operand of a shift, `on_reading` for one that shifts or
-    divides the bare reading, `masks` for one of the form 2**n - 1 that keeps its lowest bits. `hints` are the roles that its name (or comment) speaks of, `exponent`
-    the power of ten that its unit word says (3 for mV), None without one; `physical` is true where
-    that word is a unit and no plain multiple. `lone` says that it is no resistance: neither its
-    name nor another resistance beside it speaks for one. `inside` are the constants it is made of,
-    where it is a computed one like `(1 << 12) - 1`.
+    divides the bare reading, `masks` for one of the form 2**n - 1 that keeps its lowest bits.
+    `hints` are the roles that its name (or comment) speaks of, `exponent` the power of ten that its
+    unit word says (3 for mV), None without one; `physical` is true where that word is a unit and no
+    plain multiple. `lone` says that it is no resistance: neither its name nor another resistance
+    beside it speaks for one. `inside` are the constants it is made of, where it is a computed one
+    like `(1 << 12) - 1`.
     """
 
     key: Key
@@ -119,15 +121,19 @@ def knobs(
 ) -> tuple[Knob, ...]:
     """Every spelled constant of the expression that may be replaced, in order of its first use.
 
-    `inside` is what `grouped` says of the constants that it made.
+    `inside` is what `grouped` says of the constants that it made. What only decides which way a
+    choice goes, as the label of a case does, moves no line.
     """
     roles = {role.name: role for role in stated}
     shifts = _shift_counts(expression)
     touching = _on_reading(expression)
     masking = _masks(expression)
+    deciding = wholes.deciding(tuple(walk(expression)))
     found: dict[Key, Knob] = {}
     for node in walk(expression):
         if not isinstance(node, Literal) or node.leaf is None:
+            continue
+        if id(node) in deciding:
             continue
         knob = _knob(node.leaf, node, roles)
         if knob is None:
@@ -231,7 +237,7 @@ _EXPONENTS = {
 }  # fmt: skip
 """Powers of ten that unit words in names stand for (common practice)."""
 _OHMS = frozenset({"ohm", "ohms", "kohm", "kohms", "mohm", "milliohm", "uohm"})
-_SIDES = frozenset("top bot bottom hi lo high low up upper lower".split())
+_SIDES = frozenset(["top", "bot", "bottom", "hi", "lo", "high", "low", "up", "upper", "lower"])
 _RESISTIVE = frozenset({Role.RESISTANCE, Role.SHUNT})
 """What a constant in ohms may be, whatever else its name says (R_TOP_OHM is no full scale)."""
 

@@ -171,6 +171,8 @@ def matches(
     for term in _allowed(knob, all_terms):
         ratio = wanted / term.value
         for exponent, doublings in _powers(term.scaling, ratio):
+            if term.role is Role.RESISTANCE and exponent not in _RESISTIVE_EXPONENTS:
+                continue
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
             if abs(wanted / exact - 1) <= closeness:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)

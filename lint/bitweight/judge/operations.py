@@ -107,9 +107,12 @@ def wrong_operations(computed: Evaluation) -> tuple[WrongOperation, ...]:
 def lasting(
     found: Iterable[WrongOperation], mended: Iterable[WrongOperation]
 ) -> tuple[WrongOperation, ...]:
-    """The operations that still go wrong when what else is wrong is mended."""
+    """The operations that still go wrong when what else is wrong is mended.
+
+    What has no value in any type stays, whatever mends it.
+    """
     left = {_spot(one.node, one.kind) for one in mended}
-    return tuple(one for one in found if _spot(one.node, one.kind) in left)
+    return tuple(one for one in found if one.exact is None or _spot(one.node, one.kind) in left)
 
 
 def ends_of(root: Expression) -> tuple[Expression, ...]:
@@ -195,8 +198,9 @@ def _comes_right(
     if not later:
         return False
     left = computed.of(widened(computed.expression, later))
+    mended = computed.of(widened(computed.expression, [*later, *wrong.nodes]))
     with np.errstate(invalid="ignore"):
-        off = np.abs(left - computed.meant) > _least_harm(computed)
+        off = ~(np.abs(left - mended) <= _least_harm(computed))
     return not bool((off & wrong.fault.mask).any())
 
 

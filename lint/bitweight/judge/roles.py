@@ -82,15 +82,21 @@ def _steadied(question: Question) -> Question:
 def _wrong(question: Question, answer: Answer) -> Explanation:
     view = answer.view
     found = wrong_constants(question, _bench(question, view), answer.repairs)
-    values = {repair.knob.key: repair.exact for repair in answer.repairs if repair.knob}
-    lacking = any(one.rule == "justification" and not one.knob for one in answer.repairs)
+    constants = [one for one in answer.repairs if one.knob and not _lacks_shift(one)]
     explanation = Explanation(
         wrong=found,
         roles=_roles(view, answer.repairs),
-        mended=corrected(view.expression, values),
-        moved=question.shift if lacking else 0,
+        mended=corrected(
+            view.expression, {one.knob.key: one.exact for one in constants if one.knob}
+        ),
+        moved=question.shift if any(map(_lacks_shift, answer.repairs)) else 0,
     )
     return _with_line(question, view, explanation)
+
+
+def _lacks_shift(repair: Repair) -> bool:
+    """Whether a code is taken unshifted, which shifting mends whatever the count is."""
+    return repair.rule == "justification" and (repair.knob is None or repair.meaning is not None)
 
 
 def _kept(question: Question, view: View, *, explained: bool) -> Explanation:

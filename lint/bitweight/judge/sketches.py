@@ -101,7 +101,7 @@ def _longest_straight(points: Sequence[_Point]) -> tuple[_Point, _Point] | None:
     for index, slope in enumerate(slopes):
         if not same(slope, slopes[start]):
             start = index
-        if slope != 0 and (best is None or index - start >= best[1] - best[0]):
+        if slope != 0 and (best is None or index - start > best[1] - best[0]):
             best = (start, index)
     if best is None or (best[0] == best[1] and len(slopes) > 1):
         return None

@@ -76,14 +76,18 @@ def is_settled(search: Search, knob: Knob) -> bool:
 def is_fact_already(search: Search, repair: Repair) -> bool:
     """Whether a constant is exactly another fact, and its name says nothing for the new meaning.
 
-    The middle of a reference and the like are no facts here: they move an offset, no gain.
+    The middle of a reference and the like are no facts here: they move an offset, no gain. A wrong
+    count is none either, if it happens to be a reference in millivolts.
     """
     knob, meaning = repair.knob, repair.meaning
-    if knob is None or meaning is None or is_likely(repair) or repair.rule == "unit-prefix":
+    moves = repair.rule in ("unit-prefix", "justification")
+    if knob is None or meaning is None or is_likely(repair) or moves:
         return False
+    counts = meaning.term.role is Role.FULL_SCALE
     return any(
         one.is_natural and one.exact == knob.value and one.term.role not in OFFSETS
         for one in snaps(knob, search.terms)
+        if not counts or one.term.role is Role.FULL_SCALE
     )
 
 

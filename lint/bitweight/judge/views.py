@@ -100,10 +100,7 @@ def _cost(repairs: Sequence[Repair]) -> int:
 
     Named constants that contradict the board go before it.
     """
-    return sum(
-        2 if is_doubtful(repair) or _is_free_power(repair) else 1
-        for repair in repairs
-    )
+    return sum(2 if is_doubtful(repair) or _is_free_power(repair) else 1 for repair in repairs)
 
 
 def _order(answer: Answer) -> tuple[object, ...]:

@@ -145,7 +145,7 @@ def _full(judgement: Judgement, width: int, ink: Ink) -> Iterator[Text]:
     yield from _formula("formula", judgement, width)
     yield from entry("", _conversion_place(judgement), width)
     for assumption in judgement.conversion.assumed:
-        yield from entry("assumed", assumption, width)
+        yield from entry("assumed", assumption.message, width)
     yield from entry("error", _error_text(judgement), width)
     if width < STACKED:
         yield from _share(judgement, width, ink)

@@ -28,7 +28,7 @@ class Beginnings(Storage):
     def never_written(self, location: Location, type_: ObjectType, place: Place) -> Value | None:
         """The initialiser of an object that nothing in the sources writes."""
         declared = self.context.declared(location, self.unit)
-        if declared is None or not self.context.is_fixed(location.root, declared):
+        if declared is None or not self.context.is_fixed(location, declared):
             return None
         return self.declared_value(declared, location, type_, place)
 

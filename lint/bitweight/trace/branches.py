@@ -32,6 +32,8 @@ class Branches(Calls):
                 exits = [one for one in exits if one.label != item.name]
                 following = self.behind(arriving, following, item)
             if following is None:
+                if not any(one.label for one in exits):
+                    break
                 continue
             self.state = following
             flow = self.flow(item)

@@ -4,17 +4,15 @@ from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression, Literal, Purpose
 from bitweight.firmware.objects import Arithmetic, Location, Pointer, Record, Root
 from bitweight.firmware.syntax import (
-    ArrayOf,
     Call,
     Expr,
     FunctionOf,
     Name,
     Operation,
-    PointerTo,
-    TypeSyntax,
 )
 from bitweight.firmware.units import Function
 from bitweight.trace.contexts import Reading, shown
+from bitweight.trace.escapes import points_to_const
 from bitweight.trace.functions import Functions
 from bitweight.trace.memory import Address, Copy, Routine, Value, is_number
 
@@ -150,7 +148,7 @@ class Calls(Functions):
         for unit in (self.unit, *self.context.program.units.values()):
             head = unit.prototypes[name].type.derivations if name in unit.prototypes else ()
             if head and isinstance(head[0], FunctionOf):
-                return tuple(_points_to_const(one.type) for one in head[0].parameters)
+                return tuple(points_to_const(one.type) for one in head[0].parameters)
         return ()
 
     def _filled(self, value: Address, reason: str, argument: Expr) -> None:
@@ -205,10 +203,3 @@ class Calls(Functions):
         if isinstance(type_, Arithmetic):
             return building.convert(value, type_.type, Purpose.ARGUMENT, self.used(argument))
         return value
-
-
-def _points_to_const(type_: TypeSyntax) -> bool:
-    """Whether a parameter is a pointer to what the function only reads."""
-    if not type_.derivations or not isinstance(type_.derivations[0], PointerTo | ArrayOf):
-        return False
-    return len(type_.derivations) == 1 and "const" in type_.specifiers.qualifiers

@@ -15,6 +15,7 @@ from bitweight.firmware.syntax import Expr, TypeSyntax
 from bitweight.firmware.units import Function, Unit, Variable
 from bitweight.limits import Limits
 from bitweight.places import Place
+from bitweight.trace.escapes import Escapes
 from bitweight.trace.families import Family
 from bitweight.trace.initialisers import Parts
 from bitweight.trace.memory import Input
@@ -91,11 +92,14 @@ class Context:
     """Where each channel's code was read first."""
     initialisers: dict[int, tuple[Expr, Parts | None]] = field(default_factory=dict)
     in_progress: dict[Root, set[tuple[str | int, ...]]] = field(default_factory=dict)
+    reading_objects: dict[str, list[tuple[Location, Wanted]]] = field(default_factory=dict)
+    """The objects that readings name, by unit."""
     pattern_constants: dict[tuple[str, int], tuple[Expr, int | float | None]] = field(
         default_factory=dict
     )
     _declared: dict[Root, Declared | None] = field(default_factory=dict)
     _fixed: dict[Root, bool] = field(default_factory=dict)
+    _members_fixed: dict[Location, bool] = field(default_factory=dict)
     _wanted: dict[str, Mapping[tuple[str, str], tuple[Wanted, ...]]] = field(default_factory=dict)
     _comments: dict[tuple[str, int], str] = field(default_factory=dict)
 
@@ -126,6 +130,11 @@ class Context:
         return frozenset(name for one in self.readings for name in one.pattern.names)
 
     @cached_property
+    def names_objects(self) -> bool:
+        """Whether any reading may be the name of an object rather than a call."""
+        return any("(" not in one.pattern.text for one in self.readings)
+
+    @cached_property
     def registers(self) -> tuple[str, ...]:
         """The registers of the families whose contents matter where a reading is taken."""
         return tuple(sorted({one.register for family in self.families for one in family.fields}))
@@ -154,13 +163,33 @@ class Context:
             self._declared[root] = _declared(variable) if variable is not None else None
         return self._declared[root]
 
-    def is_fixed(self, root: Root, declared: Declared) -> bool:
+    def is_fixed(self, location: Location, declared: Declared) -> bool:
         """Whether an object keeps its initialiser: const, or never written in the sources."""
+        root = location.root
         if root not in self._fixed:
             self._fixed[root] = declared.value is not None and (
                 declared.constant or not self.writers(root, declared)
             )
-        return self._fixed[root]
+        return self._fixed[root] or (declared.value is not None and self._keeps(location, declared))
+
+    def _keeps(self, location: Location, declared: Declared) -> bool:
+        """Whether a member keeps its initialiser in an object whose address is handed on."""
+        if not location.path or declared.function is not None:
+            return False
+        if location not in self._members_fixed:
+            root = location.root
+            names = (root.name, *self._aliases(root.name))
+            users = {
+                one.identity: one for name in names for one in self.program.all_functions(name)
+            }
+            found = self.escapes.keeps(location.path, names, tuple(users.values()))
+            self._members_fixed[location] = found
+        return self._members_fixed[location]
+
+    @cached_property
+    def escapes(self) -> Escapes:
+        """What becomes of the addresses of objects."""
+        return Escapes(program=self.program)
 
     def writers(self, root: Root, declared: Declared | None) -> tuple[Function, ...]:
         """The functions that write an object, or hand out its address."""

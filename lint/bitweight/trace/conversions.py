@@ -20,7 +20,7 @@ class Conversion:
 
     `result` names the variable, member, function or macro that holds it; `declared` is where that
     is declared with its type, if it is an object; `assumed` says what had to be assumed, one
-    sentence each.
+    sentence each, where that is used.
     """
 
     channel: str
@@ -30,7 +30,7 @@ class Conversion:
     function: str
     formula: str
     steps: tuple[Step, ...] = ()
-    assumed: tuple[str, ...] = ()
+    assumed: tuple[Step, ...] = ()
     other_readings: tuple[str, ...] = ()
     declared: Place | None = None
 

@@ -5,11 +5,12 @@ from dataclasses import dataclass
 
 from bitweight.arithmetic.expressions import Code, Expression, walk
 from bitweight.firmware.objects import Location
-from bitweight.firmware.syntax import Call, Expr, Index, Marked, Member, Name, Number, Operation
+from bitweight.firmware.syntax import Call, Expr, Index, Marked, Member, Name, Operation
 from bitweight.places import Place
 from bitweight.trace.contexts import Context, shown
 from bitweight.trace.machines import Event
 from bitweight.trace.memory import is_number
+from bitweight.trace.patterns import Constant
 from bitweight.trace.runs import Run
 
 _OUTLIVING = frozenset({"object", "register", "pointee", "address"})
@@ -107,9 +108,10 @@ def consumed(ends: Iterable[End], context: Context) -> frozenset[Location]:
     return frozenset(found)
 
 
-def wanted_ends(runs: tuple[Run, ...], tree: Expr) -> tuple[End, ...]:
-    """The ends that a `value` expression of the board file names."""
-    names = _path(tree)
+def wanted_ends(
+    runs: tuple[Run, ...], tree: Expr, names: tuple[str | int, ...] | None
+) -> tuple[End, ...]:
+    """The ends that a `value` expression of the board file names; `names` is its path."""
     if isinstance(tree, Call):
         return tuple(
             end
@@ -154,31 +156,24 @@ def _names(location: Location, names: tuple[str | int, ...]) -> bool:
     return False
 
 
-def _path(tree: Expr) -> tuple[str | int, ...] | None:
+def path_of(tree: Expr, constant: Constant) -> tuple[str | int, ...] | None:
     """Names and constant subscripts of an object expression."""
     match tree:
         case Name():
             return (tree.text,)
         case Marked():
-            return _path(tree.operand)
+            return path_of(tree.operand, constant)
         case Member():
-            below = _path(tree.base)
+            below = path_of(tree.base, constant)
             return (*below, tree.name) if below is not None else None
         case Index():
-            below = _path(tree.base)
-            step = _constant(tree.index)
-            return (*below, step) if below is not None and step is not None else None
+            below = path_of(tree.base, constant)
+            step = constant(tree.index)
+            return (*below, step) if below is not None and isinstance(step, int) else None
         case Operation(operator="*"):
-            return _path(tree.operand)
+            return path_of(tree.operand, constant)
         case _:
             return None
-
-
-def _constant(tree: Expr) -> int | None:
-    try:
-        return int(tree.text.rstrip("uUlL"), 0) if isinstance(tree, Number) else None
-    except ValueError:
-        return None
 
 
 def _same_call(wanted: Call, given: Call) -> bool:

@@ -108,7 +108,8 @@ class Lowering(Operators):
         found = self.lvalue(node)
         if found is None:
             return self.unknown("an expression of this form is not followed", node)
-        return self.read(*found, node)
+        code = self.located(found[0], node)
+        return code if code is not None else self.read(*found, node)
 
     def _compound(self, node: Braces) -> Value:
         if node.type is None:

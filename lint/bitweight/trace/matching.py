@@ -1,11 +1,12 @@
 """The board file's expressions, found where they stand in the code: readings and stated values."""
 
+from collections.abc import Iterator
 from dataclasses import replace
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Code, Expression, Literal
 from bitweight.arithmetic.types import DataModel
-from bitweight.firmware.objects import Arithmetic, ObjectType
+from bitweight.firmware.objects import ANYWHERE, Arithmetic, Location, ObjectType
 from bitweight.firmware.syntax import (
     Call,
     Cast,
@@ -18,10 +19,11 @@ from bitweight.firmware.syntax import (
     Operation,
     Pair,
 )
+from bitweight.firmware.units import Unit
 from bitweight.trace.contexts import Given, Reading, Wanted
 from bitweight.trace.lvalues import Lvalues
 from bitweight.trace.memory import is_number
-from bitweight.trace.patterns import delivered, head, matches
+from bitweight.trace.patterns import delivered, head, is_object, matches
 
 _UNARY = ("-", "+", "~", "!")
 
@@ -46,6 +48,37 @@ class Matching(Lvalues):
         )
         self.near = near
         return found
+
+    def located(self, location: Location, node: Expr) -> Expression | None:
+        """The code, if what a pointer leads to is an object that a reading names."""
+        if location.root.kind == "local" or not self.context.names_objects:
+            return None
+        found = [
+            wanted
+            for place, wanted in self._reading_objects()
+            if _is_element(location, place)
+            and wanted.source.pattern.applies(self.frame.function, self.unit)
+        ]
+        return self._delivered(_shared(found), node) if found else None
+
+    def _reading_objects(self) -> list[tuple[Location, Wanted]]:
+        """The objects that readings name, in any unit."""
+        units = tuple(self.context.program.units.values())
+        known = self.context.reading_objects
+        for unit in units:
+            if unit.path not in known:
+                known[unit.path] = []
+                known[unit.path] = [*self._objects_read(unit)]
+        return list({one: None for some in known.values() for one in some})
+
+    def _objects_read(self, unit: Unit) -> Iterator[tuple[Location, Wanted]]:
+        outside = type(self)(self.context, unit)
+        for some in self.context.wanted(unit).values():
+            for wanted in some:
+                if isinstance(wanted.source, Reading) and is_object(wanted.tree):
+                    found = outside.lvalue(wanted.tree)
+                    if found is not None:
+                        yield found[0], wanted
 
     def _matches(self, wanted: Wanted, node: Expr) -> bool:
         pattern = wanted.source.pattern
@@ -167,6 +200,18 @@ class Matching(Lvalues):
                 return self.resolved(node.type)
             case _:
                 return None
+
+
+def _is_element(location: Location, wanted: Location) -> bool:
+    """Whether a location is the one that a reading names, `$any` subscripts considered."""
+    return (
+        location.root == wanted.root
+        and len(location.path) == len(wanted.path)
+        and all(
+            mine == theirs or (theirs == ANYWHERE and isinstance(mine, int))
+            for mine, theirs in zip(location.path, wanted.path, strict=True)
+        )
+    )
 
 
 def _shared(found: list[Wanted]) -> Wanted:

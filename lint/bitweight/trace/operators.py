@@ -2,13 +2,23 @@
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Binary, Expression, Literal, Purpose
-from bitweight.firmware.objects import ANYWHERE, Arithmetic, Location, ObjectType, Pointer, Root, Strange
+from bitweight.firmware.objects import (
+    ANYWHERE,
+    Arithmetic,
+    Array,
+    Location,
+    ObjectType,
+    Pointer,
+    Root,
+    Strange,
+)
 from bitweight.firmware.syntax import (
     Assign,
     Cast,
     Conditional,
     Expr,
     Increment,
+    Marked,
     Name,
     Node,
     Operation,
@@ -71,7 +81,8 @@ class Operators(Matching):
         base = self.pointed(value, node.operand)
         if base is None:
             return self.unknown("a pointer of this form is not followed", node)
-        return self.read(base.target, base.type, node)
+        code = self.located(base.target, node)
+        return code if code is not None else self.read(base.target, base.type, node)
 
     def increment(self, node: Increment) -> Value:
         """`++` and `--`."""
@@ -105,6 +116,9 @@ class Operators(Matching):
 
     def pair(self, node: Pair) -> Value:
         """A binary operator, the comma included."""
+        count = self._element_count(node)
+        if count is not None:
+            return Literal(value=count, type=self.model.size_t)
         left = self.value(node.left)
         if node.operator == ",":
             return self.value(node.right)
@@ -150,10 +164,23 @@ class Operators(Matching):
             return self._moved(left, right, 1 if node.operator == "+" else -1)
         if isinstance(right, Address) and is_number(left) and node.operator == "+":
             return self._moved(right, left, 1)
-        same = self._same(left, right) if node.operator in ("==", "!=") else None
-        if same is None:
-            return self.unknown("pointers compared or subtracted", node)
-        return Literal(value=int(same == (node.operator == "==")), type=self.model.int_)
+        if node.operator in ("==", "!="):
+            same = self._same(left, right)
+            if same is not None:
+                return Literal(value=int(same == (node.operator == "==")), type=self.model.int_)
+        elif isinstance(left, Address) and isinstance(right, Address):
+            apart = _elements_apart(left.target, right.target)
+            if apart is not None:
+                return self._distance(node, apart)
+        return self.unknown("pointers compared or subtracted", node)
+
+    def _distance(self, node: Pair, apart: int) -> Value:
+        """Two pointers into one array compared or subtracted, by the elements between them."""
+        number = Literal(value=apart, type=self.model.long)
+        if node.operator == "-":
+            return number
+        zero = Literal(value=0, type=self.model.long)
+        return building.binary(self.model, node.operator, number, zero, self.spelled(node.at))
 
     def _same(self, left: Value, right: Value) -> bool | None:
         """Whether two pointers point to the same object; None where that is not known."""
@@ -172,6 +199,16 @@ class Operators(Matching):
         step = self.context.constant(by)
         target, type_ = shifted(base, sign * step if isinstance(step, int) else None)
         return Address(target=target, type=type_)
+
+    def _element_count(self, node: Pair) -> int | None:
+        """`sizeof a / sizeof a[0]` whatever an element's size is."""
+        left, right = _operand(node.left), _operand(node.right)
+        if node.operator != "/" or left is None or right is None:
+            return None
+        whole, part = self.declared_type(left), self.declared_type(right)
+        if isinstance(whole, Array) and part is not None and whole.of == part:
+            return whole.length
+        return None
 
     # --- assignment and choice ------------------------------------------------------------------
 
@@ -259,3 +296,20 @@ class Operators(Matching):
         if size is None:
             return self.unknown("the size of a type that is not known", node, self.model.size_t)
         return Literal(value=size, type=self.model.size_t)
+
+
+def _operand(node: Expr) -> Expr | None:
+    """The expression whose size a `sizeof` asks for."""
+    while isinstance(node, Marked):
+        node = node.operand
+    return node.operand if isinstance(node, SizeOf) else None
+
+
+def _elements_apart(left: Location, right: Location) -> int | None:
+    """How many elements of one array lie between two of them."""
+    if left.root != right.root or left.path[:-1] != right.path[:-1]:
+        return None
+    if not left.path or not right.path:
+        return 0 if left.path == right.path else None
+    first, second = left.path[-1], right.path[-1]
+    return first - second if isinstance(first, int) and isinstance(second, int) else None

@@ -63,9 +63,14 @@ def pattern(text: str, place: Place) -> Pattern:
     return Pattern(text=body.strip(), where=where.strip(), place=place)
 
 
+def spelled(text: str) -> str:
+    """A pattern's text as C: placeholders as names, without the semicolon of a statement."""
+    return text.replace("$any", ANY).replace("$code", CODE).rstrip("; \t")
+
+
 def excerpt(text: str, unit: Unit) -> Unit:
     """The unit of a pattern: its text with the macros of `unit` expanded."""
-    return unit.excerpt(text.replace("$any", ANY).replace("$code", CODE).rstrip("; \t"))
+    return unit.excerpt(spelled(text))
 
 
 def parsed(text: str, unit: Unit) -> Expr | None:
@@ -202,3 +207,17 @@ def substituted(tree: Expr, name: str, by: Expr) -> Expr:
     if isinstance(tree, Call):
         return replace(tree, arguments=tuple(substituted(one, name, by) for one in tree.arguments))
     return tree
+
+
+def is_object(tree: Expr) -> bool:
+    """Whether a pattern names an object: names, members, subscripts and `*` alone."""
+    while True:
+        match tree:
+            case Name():
+                return tree.text not in (ANY, CODE)
+            case Member() | Index():
+                tree = tree.base
+            case Operation(operator="*") | Marked():
+                tree = tree.operand
+            case _:
+                return False

@@ -41,6 +41,11 @@ class Run:
     reason: str | None
 
 
+def pointee_scope(function: Function) -> str:
+    """The `scope` of what the parameters of a function point to while no call gives them."""
+    return f"{function.key}:{function.name}"
+
+
 @dataclass(kw_only=True)
 class Runner:
     """Runs functions once each and remembers what came of it."""
@@ -89,7 +94,7 @@ class Runner:
 
     def _parameters(self, execution: Execution, function: Function) -> list[Value]:
         values: list[Value] = []
-        scope = f"{function.key}:{function.name}"
+        scope = pointee_scope(function)
         for index, one in enumerate(function.syntax.parameters):
             type_ = function.unit.type_of(one.type)
             root = Location(Root("pointee", one.name, scope))

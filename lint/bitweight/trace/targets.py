@@ -4,11 +4,11 @@ from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 
 from bitweight.arithmetic.expressions import Code
-from bitweight.firmware.syntax import Name
+from bitweight.firmware.syntax import Expr, Name
 from bitweight.firmware.units import Unit
 from bitweight.places import Place
 from bitweight.trace.contexts import Context, Reading
-from bitweight.trace.ends import End, flow_ends, wanted_ends
+from bitweight.trace.ends import End, flow_ends, path_of, wanted_ends
 from bitweight.trace.execution import Execution
 from bitweight.trace.memory import is_number
 from bitweight.trace.patterns import CODE, Pattern, excerpt, matches, parsed
@@ -53,16 +53,19 @@ def _named(
 def _candidates(value: Pattern, runs: tuple[Run, ...], context: Context) -> Iterator[End]:
     """The ends that a `value` may mean, as the units read its text."""
     # Most units read the text alike: what they ask for is looked up once.
-    trees = dict.fromkeys(
-        parsed(value.text, unit) for unit in tuple(context.program.units.values())
-    )
-    for tree in trees:
-        if tree is not None:
-            yield from wanted_ends(runs, tree)
+    asked = set[tuple[Expr, tuple[str | int, ...] | None]]()
+    for unit in tuple(context.program.units.values()):
+        tree = parsed(value.text, unit)
+        if tree is None:
+            continue
+        path = path_of(tree, Execution(context, unit).plain_constant)
+        if (tree, path) not in asked:
+            asked.add((tree, path))
+            yield from wanted_ends(runs, tree, path)
     if "(" not in value.text:
         # A macro is gone after expansion: its uses are known by its name.
         plain = Name(start=0, end=0, text=value.text.strip())
-        yield from (end for end in wanted_ends(runs, plain) if end.kind == "macro")
+        yield from (end for end in wanted_ends(runs, plain, (plain.text,)) if end.kind == "macro")
 
 
 def _allowed(end: End, value: Pattern) -> bool:

@@ -3,11 +3,19 @@
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 
-from bitweight.arithmetic.expressions import Code, Convert, Default, Expression, Unknown, walk
+from bitweight.arithmetic.expressions import (
+    Choose,
+    Code,
+    Convert,
+    Default,
+    Expression,
+    Unknown,
+    walk,
+)
 from bitweight.errors import LimitReached
 from bitweight.limits import Deadline
 from bitweight.trace.contexts import Context
-from bitweight.trace.conversions import Conversion, Trace
+from bitweight.trace.conversions import Conversion, Step, Trace
 from bitweight.trace.declared import declared_place
 from bitweight.trace.ends import End, consumed
 from bitweight.trace.flows import Flows, Progress
@@ -89,6 +97,11 @@ class Tracer:
             carrying.extend((end, way) for way in own)
             if not own:
                 foreign.extend((end, way) for way in ways)
+        forks = self.context.limits.forks
+        for end, way in carrying:
+            if sum(isinstance(node, Choose) for node in walk(way)) > forks:
+                reason = f"{end.result} depends on more than {forks} conditions"
+                return Trace(channel=aim.channel, reason=reason, place=end.place)
         last = carrying if aim.values else self._last(carrying)
         for end, way in last:
             if isinstance(way, Unknown):
@@ -120,7 +133,7 @@ class Tracer:
 
     def _conversion(self, aim: Aim, end: End, way: Expression) -> Conversion:
         nodes = list(walk(way))
-        defaults = dict.fromkeys(node.name for node in nodes if isinstance(node, Default))
+        defaults = {node.name: node.place for node in nodes if isinstance(node, Default)}
         return Conversion(
             channel=aim.channel,
             result=end.result,
@@ -130,8 +143,12 @@ class Tracer:
             formula=formula(way),
             steps=steps(nodes, end.result, end.place),
             assumed=tuple(
-                f"{name} is judged at its declared value, which the program may overwrite"
-                for name in defaults
+                Step(
+                    place=place,
+                    message=f"{name} is judged at its declared value, "
+                    "which the program may overwrite",
+                )
+                for name, place in defaults.items()
             ),
             other_readings=tuple(sorted(self.resolver.measures(way) - {aim.channel})),
             declared=declared_place(self.context, end.location) if end.location else None,

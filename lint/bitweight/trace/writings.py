@@ -8,7 +8,7 @@ from bitweight.firmware.objects import Arithmetic, Location, Strange
 from bitweight.firmware.units import Function
 from bitweight.trace.contexts import Context
 from bitweight.trace.memory import Copy, Value, is_number
-from bitweight.trace.runs import Runner
+from bitweight.trace.runs import Runner, pointee_scope
 
 _MOST_FUNCTIONS = 64
 """Functions asked for one writer: itself and its callers, direct and indirect."""
@@ -69,9 +69,11 @@ class Writings:
             )
 
     def waits_for(self, value: Expression, function: Function) -> bool:
-        """Whether a value hangs on a parameter of the function itself."""
+        """Whether a value hangs on a parameter of the function itself, or on what it points to."""
+        scope = pointee_scope(function)
         return any(
-            known.kind == "parameter" and known.function is function
+            (known.kind == "parameter" and known.function is function)
+            or (known.location is not None and known.location.root.scope == scope)
             for node in walk(value)
             if isinstance(node, Code) and (known := self.context.inputs.get(id(node))) is not None
         )

@@ -32,6 +32,9 @@ def decode(text: str) -> AllowedText:
         ("0.5 degC", "degC", "0.5", "0", "0"),
         ("0.5 K", "degC", "0.5", "0", "0"),
         ("0.1 pH", "pH", "0.1", "0", "0"),
+        ("100 ppm", "V", "0", "0.0001", "0"),
+        ("± 20 mV", "V", "0.02", "0", "0"),
+        ("+-1 % of reading", "V", "0", "0", "0.01"),
     ],
 )
 def test_terms_add_up_in_the_channels_unit(
@@ -48,7 +51,22 @@ def test_terms_add_up_in_the_channels_unit(
 
 
 @pytest.mark.parametrize(
-    "text", ["'a bit'", "'1 % of it'", "'-1 V'", "'+'", "3", "'1 V ± 1 %'", "'0 %'", "''"]
+    "text",
+    [
+        "'a bit'",
+        "'1 % of it'",
+        "'-1 V'",
+        "'+'",
+        "3",
+        "'1 V ± 1 %'",
+        "'0 %'",
+        "'0 V'",
+        "'5V%'",
+        "'1 %%'",
+        "'100 %'",
+        "'5000 % of reading'",
+        "''",
+    ],
 )
 def test_what_is_no_error_is_refused(text: str) -> None:
     """Each refusal says what was expected."""

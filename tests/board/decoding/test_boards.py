@@ -60,7 +60,11 @@ CASES = [
     case("clock", BOARD + "[target]\nclock = ¦'16 MV'\n", "expected a quantity in Hz"),
     # Supplies and references
     case("no voltage", BOARD + "¦[supply.v33]\n", "missing key 'voltage' in [supply.v33]"),
-    case("plain voltage", BOARD + "[supply.v33]\nvoltage = ¦3.3\n", 'like "3.3 V 2%", found 3.3'),
+    case(
+        "plain voltage",
+        BOARD + "[supply.v33]\nvoltage = ¦3.3\n",
+        'like "3.3 V 2%", found the number 3.3',
+    ),
     case("negative", CONVERTER + CHANNEL + "[reference.vref]\nvoltage = ¦'-2.5 V'\n", "above 0"),
     case(
         "no supply", "[reference.vref]\nsupply = ¦'v33'\n" + CONVERTER + CHANNEL, "no supply 'v33'"
@@ -116,11 +120,17 @@ CASES = [
     case("full scale", REFERENCE + CONVERTER + "full_scale_count = ¦0\n" + CHANNEL, "whole number"),
     case("no counts", REFERENCE + CONVERTER + "full_scale_count = ¦[]\n" + CHANNEL, "empty list"),
     case("gain", REFERENCE + CONVERTER + "reference_gain = ¦0\n" + CHANNEL, "a number above 0"),
-    case("infinite", REFERENCE + CONVERTER + "input_gain = ¦inf\n" + CHANNEL, "found Infinity"),
+    case(
+        "infinite", REFERENCE + CONVERTER + "input_gain = ¦inf\n" + CHANNEL, "found the number inf"
+    ),
     case(
         "huge", REFERENCE + CONVERTER + "input_gain = ¦1e999999999\n" + CHANNEL, "expected a number"
     ),
-    case("word", REFERENCE + CONVERTER + "word_bits = ¦8\n" + CHANNEL, "do not fit in a word of 8"),
+    case(
+        "word",
+        REFERENCE + CONVERTER + "word_bits = ¦8\n" + CHANNEL,
+        "word_bits: 8 bits cannot hold a 12-bit code",
+    ),
     case(
         "shift",
         REFERENCE + CONVERTER + "justified='left'\nshift = ¦3\n" + CHANNEL,
@@ -128,9 +138,13 @@ CASES = [
     ),
     case(
         "oversampling",
-        REFERENCE + CONVERTER + "oversampling = ¦{ ¦sample = 16 }\n" + CHANNEL,
-        "oversampling: missing key 'samples'",
-        "oversampling: unknown key 'sample' in oversampling, did you mean 'samples'?",
+        REFERENCE + CONVERTER + "oversampling = { ¦sample = 16 }\n" + CHANNEL,
+        "unknown key 'sample' in oversampling, did you mean 'samples'?",
+    ),
+    case(
+        "oversampling shift",
+        REFERENCE + CONVERTER + "oversampling = ¦{ shift = 2 }\n" + CHANNEL,
+        "missing key 'samples' in oversampling: conversions summed up",
     ),
     case(
         "wide sum",
@@ -172,12 +186,11 @@ CASES = [
     case("circle", BOARD + "like = ¦'tank'\n", "copies itself"),
     case("input", BOARD + "input = ¦-1\n", "from 0 to 1023, found -1"),
     case("reading", BOARD + "firmware.reading = ¦3\n", "firmware: reading: expected a text"),
-    case("result unit", BOARD + "firmware.unit = ¦'mA'\n", "unit mA of value does not convert to"),
+    case("result unit", BOARD + "firmware.unit = ¦'mA'\n", 'a voltage like "1 mV", found "mA"'),
     case(
         "limit",
-        BOARD + "limit = [¦{ at = '3 V', ¦constnt = 'X' }]\n",
-        "limit: missing key 'constant' in a limit",
-        "limit: unknown key 'constnt' in a limit, did you mean 'constant'?",
+        BOARD + "limit = [{ at = '3 V', ¦constnt = 'X' }]\n",
+        "unknown key 'constnt' in a limit, did you mean 'constant'?",
     ),
     case("limit unit", BOARD + "[[channel.tank.limit]]\nat = ¦'3 A'\nconstant='X'\n", "at is in A"),
     # Stages
@@ -205,7 +218,11 @@ CASES = [
         "no supply or reference",
     ),
     case("bare amplifier", stage("¦{ kind='amplifier' }"), "missing gain, or topology"),
-    case("gain 0", stage("{ kind='amplifier', gain=¦0 }"), "a number other than 0, found 0"),
+    case(
+        "gain 0",
+        stage("{ kind='amplifier', gain=¦0 }"),
+        "a number other than 0, found the number 0",
+    ),
     case("both", stage("{ kind='amplifier', gain=2, feedback=¦'1k' }"), "are both given"),
     case(
         "wiring",
@@ -215,13 +232,13 @@ CASES = [
     case(
         "wrong kind",
         stage("¦{ kind='shunt', resistance='R100' }") + "unit = 'V'\n",
-        "takes A, but V reaches it",
+        "takes A, but the channel's unit is V",
     ),
     case("shunt 0", stage("{ kind='shunt', resistance=¦'0 ohm' }"), 'above 0, found "0 ohm"'),
     case(
         "slope",
         stage("{ kind='linear', sensitivity=¦'10 mV/A' }") + "unit='kPa'\n",
-        "the sensitivity is in mV/A, but Pa reaches this stage",
+        "the sensitivity is per A, but the channel's unit is kPa",
     ),
     case(
         "offset",
@@ -233,9 +250,7 @@ CASES = [
         stage("{ kind='amplifier', gain=2, offset=¦'v33 / 2' }"),
         "no supply or reference 'v33'",
     ),
-    case(
-        "share of 0", stage("{ kind='amplifier', gain=2, offset=¦'vref / 0' }"), "expected a number"
-    ),
+    case("share of 0", stage("{ kind='amplifier', gain=2, offset=¦'vref / 0' }"), "divisor other"),
     case("thermistor", stage("¦{ kind='thermistor', r25='10k', with='10k' }"), "either beta or"),
     case("rtd", stage("¦{ kind='rtd', r0='100 ohm' }"), "either current, or with"),
     case("points", stage("{ kind='table', points=¦[['0 V','1 V']] }"), "at least two"),
@@ -262,7 +277,66 @@ CASES = [
         BOARD + "chain = [{kind='divider', top='R1 1k', bottom=¦'R1 2k'}]\n",
         '"R1 2k" contradicts "R1 1k" on line 6',
     ),
+    # Names
+    case("slip of a table", REFERENCE + CONVERTER + "[¦channels.tank]\n", "mean 'channel'?"),
+    case(
+        "slip of a key",
+        CONVERTER + CHANNEL + "[reference.vref]\n¦volt = '3 V'\n",
+        "did you mean 'voltage'?",
+    ),
+    case("no slip", BOARD + "¦bitz = 3\n", "in [channel.tank]; known keys: allowed_error"),
+    case(
+        "no name",
+        "[reference]\n¦voltage = '3 V'\n" + CONVERTER + CHANNEL,
+        "a reference needs a name: write [reference.NAME]",
+    ),
+    case("no tables", "reference = ¦'3 V'\n" + CONVERTER + CHANNEL, "expected a table for"),
+    case("scalar name", BOARD + "[supply]\nv7 = ¦3\n", "expected a table [supply.v7], found"),
+    case("empty name", BOARD + '[channel.¦""]\n', "expected a name in [channel.NAME]"),
+    case("empty variant", BOARD + '[variant.¦""]\n', "expected a name in [variant.NAME]"),
+    # What contradicts itself
+    case("cold", BOARD + "nominal = ¦'-300 degC'\n", 'no less than -273.15 degC, found "-300'),
+    case(
+        "bits of a value",
+        BOARD + "[[channel.tank.limit]]\nat='1 V'\nconstant='X'\nin='value'\nbits=¦8\n",
+        "bits is the width of counts",
+    ),
+    case(
+        "against",
+        stage("{ kind='divider', top='1k', bottom='1k' }, ¦{ kind='against', voltage='1.1 V' }"),
+        "an against stage comes first in its chain",
+    ),
+    case(
+        "internal supply",
+        "[supply.v]\nvoltage='3 V'\n[reference.r]\nsource=¦'internal'\nsupply='v'\n"
+        + CONVERTER
+        + CHANNEL,
+        "an internal reference is no supply",
+    ),
+    case("share", BOARD + "allowed_error = ¦'100 %'\n", "expected a share below 100 %"),
+    case(
+        "curved steps",
+        stage("{ kind='thermistor', r25='10k', beta=3950, with='10k' }")
+        + "allowed_error = ¦'2 LSB'\n",
+        "needs a channel whose LSB is the same everywhere",
+    ),
+    case("endless", BOARD + "input = ¦" + "9" * 5000 + "\npin = ¦3\n", "to 1023", "pin: "),
     # Many at once
+    case(
+        "every limit",
+        BOARD + "limit = [¦{ at = '3 V' }, { at = ¦'1 A', constant = 'X', in = ¦'count' }]\n",
+        "missing key 'constant' in a limit",
+        "at is in A",
+        "limit: in: expected one of",
+    ),
+    case(
+        "every key of a stage",
+        "[supply.v]\nvoltage = '3 V'\n" + stage("¦¦¦¦{ kind='thermistor' }"),
+        "expected either beta or",
+        "missing key 'r25'",
+        "missing key 'supply'",
+        "missing key 'with'",
+    ),
     case(
         "all at once",
         "[reference.vref]\nvoltage = ¦'2.5 A'\n[converter.adc]\nbits = ¦0\n[channel.tank]\n"

@@ -72,11 +72,11 @@ def test_a_limit_stands_for_counts_unless_it_says_value() -> None:
     """The first of the two words is the default; the constant names the limit."""
     made = channel(
         channel="limit = [{ at = '1 V', constant = 'A' },"
-        " { at = '2 V', constant = 'B', in = 'value', name = 'high', bits = 8 }]"
+        " { at = '2 V', constant = 'B', in = 'value', name = 'high' }]"
     )
     first, second = made.limits
     assert (first.measure, first.name, first.bits) == (LimitMeasure.COUNTS, "A", None)
-    assert (second.measure, second.name, second.bits) == (LimitMeasure.VALUE, "high", 8)
+    assert (second.measure, second.name, second.bits) == (LimitMeasure.VALUE, "high", None)
 
 
 def test_the_only_converter_may_be_left_out_and_two_may_not() -> None:

@@ -67,12 +67,15 @@ def test_a_unit_says_what_one_count_is() -> None:
     [
         ("X = 'refrence'", "unknown role \"refrence\", did you mean 'reference'?"),
         ("X = 'zzz'", 'unknown role "zzz"; known roles: full-scale'),
-        ("X = 'resistance R9'", "'R9' is not known as a resistance, did you mean 'R1'?"),
+        ("X = 'resistance R9'", "'R9' is not known as a resistance; known: R1"),
         ("X = { is = 'gain', value = 3 }", "is and value are both given"),
         ("X = { unit = 'mV' }", "missing key 'is' or 'value'"),
         ("X = { is = 'code x' }", "missing key 'at'"),
         ("X = { is = 'code x', at = '1 A' }", "at is in A but the channel's unit is V"),
         ("X = true", "expected a role like"),
+        ("X = { is = 'full-scale', unit = 'V' }", "a full-scale is in a plain number, found"),
+        ("X = { is = 'reference', unit = 'furlong' }", "a reference is in V, found the unit"),
+        ("'x @ ' = 'gain'", "expected a function or a file after @"),
         ("' @ motor.c' = 'gain'", "expected a C expression as the key"),
     ],
 )

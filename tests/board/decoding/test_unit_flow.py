@@ -45,18 +45,22 @@ def test_an_output_has_the_unit_that_its_chain_gives() -> None:
         (
             "{kind='shunt', resistance='1k'}, {kind='shunt', resistance='1k'}",
             "A",
-            "a shunt stage takes A, but V reaches it",
+            "a shunt stage takes A, but the shunt stage before it gives V",
         ),
-        ("{kind='amplifier', gain=2}", "A", "an amplifier stage takes V, but A reaches it"),
+        (
+            "{kind='amplifier', gain=2}",
+            "A",
+            "an amplifier stage takes V, but the channel's unit is A",
+        ),
         (
             "{kind='linear', sensitivity='10 mV/A'}",
             "kPa",
-            "the sensitivity is in mV/A, but Pa reaches this stage",
+            "the sensitivity is per A, but the channel's unit is kPa",
         ),
         (
             "{kind='linear', sensitivity='10 mV/A', at='3 kPa'}",
             "A",
-            "at is in kPa, but A reaches this stage",
+            "at is in kPa, but the channel's unit is A",
         ),
         (
             "{kind='linear', sensitivity='10 mV/A', offset='4 mA'}",
@@ -77,7 +81,7 @@ def test_an_output_has_the_unit_that_its_chain_gives() -> None:
     ],
 )
 def test_stages_that_do_not_fit_are_named(stages: str, unit: str, message: str) -> None:
-    """The mistake says what the stage takes and what reaches it."""
+    """The mistake says what the stage takes, and what enters it in the words of the file."""
     text = (
         f"{SUPPLIES}[converter.adc]\nbits = 12\n[channel.x]\nunit = '{unit}'\nchain = [{stages}]\n"
     )

@@ -149,7 +149,8 @@ def _role(
         if words.startswith(role + " "):
             name = words[len(role) + 1 :]
             if name not in names[role]:
-                hint = nearest(name, names[role])
+                known = ", ".join(sorted(names[role])) or "none"
+                hint = nearest(name, names[role]) or f"; known: {known}"
                 mistakes.add(place, f"'{shortened(name)}' is not known as a {role}{hint}")
             return role, name
     hint = nearest(words, ROLES) or f"; known roles: {', '.join(ROLES)}"

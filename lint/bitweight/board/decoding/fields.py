@@ -2,11 +2,11 @@
 
 from bitweight.arithmetic.types import MODELS
 from bitweight.board.converters import Coding, ConverterKind, Justification
+from bitweight.board.decoding.definitions import Definitions
 from bitweight.board.decoding.measures import Measure, UnitWord
 from bitweight.board.decoding.shapes import (
     Counts,
     Day,
-    Definitions,
     Flag,
     Inner,
     Number,

@@ -5,6 +5,7 @@ from collections.abc import Mapping
 
 from bitweight.board.decoding.boards import TABLES
 from bitweight.board.decoding.channels import ChannelFields
+from bitweight.board.decoding.definitions import Definitions
 from bitweight.board.decoding.fields import (
     BoardFields,
     ConstantFields,
@@ -14,7 +15,7 @@ from bitweight.board.decoding.fields import (
     SupplyFields,
     TargetFields,
 )
-from bitweight.board.decoding.shapes import Definitions, table_schema
+from bitweight.board.decoding.shapes import table_schema
 from bitweight.board.decoding.tables import Field, Schema
 
 _SINGLE: Mapping[str, tuple[Field[object], ...]] = {

@@ -230,7 +230,7 @@ def read_named(
             mistakes.add(place, f"expected a name in [{what}.NAME], found an empty one")
     names = {one.name for one in fields}
     loose = {name: entry for name, entry in entries.items() if not isinstance(entry[1], Table)}
-    for name, (place, inner) in loose.items():
+    for name, (_, inner) in loose.items():
         if name not in names:
             where = f"[{what}.{shortened(name)}]"
             mistakes.add(inner.place, f"expected a table {where}, found {described(inner)}")
