@@ -18,10 +18,12 @@ class Limits:
     include_depth: int = 100
     """Nested includes; C11 5.2.4.1 asks compilers for 15."""
     unit_bytes: int = 64 * 1024 * 1024
-    """Largest expanded translation unit, in characters."""
+    """What the preprocessor reads and writes for one translation unit, in characters."""
+    parsed_bytes: int = 4 * 1024 * 1024
+    """Largest expanded translation unit that is parsed; with a vendor's headers 1 MB is usual."""
     macro_depth: int = 200
     """Nested macro expansions; deeper ones are left as they stand."""
-    macro_tokens: int = 200_000
+    macro_tokens: int = 100_000
     """Tokens one outermost macro use may expand to."""
     syntax_depth: int = 300
     """Nesting of C expressions and statements that is followed."""

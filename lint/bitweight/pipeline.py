@@ -7,7 +7,7 @@ from contextlib import contextmanager
 from dataclasses import dataclass, replace
 from datetime import date
 from difflib import get_close_matches
-from os.path import relpath
+from os.path import isdir, relpath
 from pathlib import Path
 
 from bitweight.arithmetic.expressions import Literal, walk
@@ -100,7 +100,7 @@ def _only(board: Board, channel: str | None) -> Board:
 def _check(board: Board, path: Path, request: Request, rules: tuple[str, ...]) -> None:
     """Refuse a board file or a request that names what does not exist."""
     for include in request.includes:
-        if not Path(include).is_dir():
+        if not isdir(include):
             raise UsageError(f"-I {include}: no such folder")
     mistakes = wrong_names(
         board,

@@ -52,6 +52,24 @@ def test_losses_are_left_out(text: str, word: int, value: Fraction) -> None:
 @pytest.mark.parametrize(
     ("text", "word", "value"),
     [
+        ("x / 64 * 64 + x % 64", 100, Fraction(100)),
+        ("(x / 64) * 6600u / 64u + (x % 64) * 6600u / 4096u", 1521, Fraction(6600 * 1521, 4096)),
+        ("(x >> 6) * 64 + (x & 63)", 100, Fraction(100)),
+        ("(x >> 6) * 64 + (x & 31)", 100, Fraction(104)),
+        ("x / 64 * 64 + x % 32", 100, Fraction(104)),
+        ("(x >> 11) == 0 ? x : 7", 2047, Fraction(2047)),
+        ("(x >> 11) == 1 ? x / 2 : 7", 2049, Fraction(2049, 2)),
+        ("x / 100 > 10 ? 1 : 0", 1099, Fraction(0)),
+    ],
+)
+def test_whole_parts_that_are_meant_stay(text: str, word: int, value: Fraction) -> None:
+    """A quotient beside its own remainder, and what only decides, keep their whole part."""
+    assert meaning(text, word) == value
+
+
+@pytest.mark.parametrize(
+    ("text", "word", "value"),
+    [
         ("(int16_t)(x << 4) >> 4", 0x800, -2048),
         ("(int16_t)(x << 4) >> 4", 0x7FF, 2047),
         ("(int16_t)(x << 4) / 16", 0xFFF, -1),

@@ -41,3 +41,16 @@ def test_clamp_of_the_code() -> None:
     assert judgement is not None
     (clamp,) = judgement.clamps
     assert (int(clamp.mask.argmax()), int(clamp.mask.sum())) == (0, 99)
+
+
+@pytest.mark.parametrize("held", ["0", "50", "4095"])
+def test_a_jump_is_no_clamp(held: str) -> None:
+    """Codes in between that are replaced cut no end of the range off: that bends the curve."""
+    c = C()
+    code = c.code()
+    inside = c.op(c.op(code, ">", "400"), "&&", c.op(code, "<", "500"))
+    jumping = c.choose(inside, held, code)
+    judgement = facts.case(c.op(c.op(jumping, "*", "5000"), "/", "1024")).judgement
+    assert judgement is not None
+    assert judgement.clamps == ()
+    assert judgement.explanation.residual == "curve"

@@ -6,6 +6,7 @@ import facts
 from bitweight.arithmetic.expressions import Expression
 from bitweight.board.hardware import Channel
 from bitweight.judge.cases import Case
+from bitweight.trace.conversions import Conversion
 from facts import C
 
 
@@ -23,6 +24,11 @@ def _case(*expressions: Expression) -> Case:
         ),
     )
     return facts.case(of=_open_end(), traced=trace)
+
+
+def _copy(result: str) -> Conversion:
+    c = C()
+    return facts.conversion(c.store("int", c.code()), result=result)
 
 
 def _scaled(c: C, by: str, count: str = "1024") -> Expression:
@@ -48,12 +54,22 @@ def test_other_quantities_disagree(by: str) -> None:
 
 
 def test_bare_copies_are_left_out() -> None:
-    """A copy of the code does not count beside a scaled end, but does alone."""
+    """A copy of the code does not count beside a scaled end, and is no conversion alone."""
     c = C()
     both = _case(_scaled(c, "5000"), c.store("int", c.code()))
     assert both.judgement is not None
     assert both.others == ()
-    assert _case(c.store("int", c.code())).judgement is not None
+    alone = facts.case(
+        of=_open_end(), traced=facts.Trace(channel="tank", conversions=(_copy("spare"),))
+    )
+    assert alone.judgement is None
+    assert alone.reason == ("only the raw code leaves (spare), no conversion of tank was found")
+
+
+def test_a_bare_copy_with_a_unit_is_a_conversion() -> None:
+    """A name that says millivolts makes a bare copy of the code a claim that can be judged."""
+    traced = facts.Trace(channel="tank", conversions=(_copy("tank_mv"),))
+    assert facts.case(of=_open_end(), traced=traced).judgement is not None
 
 
 def test_overflow_in_one_end_does_not_hide_that_they_agree() -> None:

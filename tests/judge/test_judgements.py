@@ -180,3 +180,28 @@ def test_an_oversized_shift_is_no_curve(shift: str) -> None:
     assert judgement is not None
     assert [one.kind for one in judgement.operations][:1] == [FaultKind.SHIFT]
     assert judgement.explanation.residual != "curve"
+
+
+def test_an_overflow_that_the_wrong_constant_makes_is_not_told() -> None:
+    """A product that overflows only because its factor is ten times the board's is one fault."""
+    c = C(facts.AVR)
+    code = c.op(c.op(c.code("uint32_t"), "*", "50000000UL"), "/", "1024")
+    judgement = facts.case(code, model=facts.AVR).judgement
+    assert judgement is not None
+    assert judgement.explanation.wrong
+    assert judgement.operations == ()
+
+
+@pytest.mark.parametrize(
+    ("limit", "other"), [("200", "0"), ("900", "77"), ("512", "4095"), ("1", "1000")]
+)
+def test_nothing_leaves_the_allowed_error_in_silence(limit: str, other: str) -> None:
+    """Whatever a branch does to the reading, something is told where the error leaves the limit."""
+    c = C()
+    code = c.code()
+    odd = c.op(c.op(c.choose(c.op(code, "<", limit), other, code), "*", "5000"), "/", "1024")
+    judgement = facts.case(odd).judgement
+    assert judgement is not None
+    assert judgement.worst_ratio > 1
+    told = (judgement.explanation.wrong, judgement.operations, judgement.clamps)
+    assert any(told) or judgement.explanation.residual or judgement.loss

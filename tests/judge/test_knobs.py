@@ -4,10 +4,14 @@ from fractions import Fraction
 
 import pytest
 
+from bitweight.arithmetic.building import choose
 from bitweight.board.facts import Role
 from bitweight.judge.knobs import Knob, decades, is_power, knobs
 from bitweight.judge.questions import StatedRole
-from operands import const, raw
+from bitweight.places import Place
+from operands import HOST, const, raw
+
+PLACE = Place("level.c")
 
 
 def one(name: str | None, text: str = "5000", comment: str = "") -> Knob:
@@ -25,6 +29,9 @@ def one(name: str | None, text: str = "5000", comment: str = "") -> Knob:
         ("ADC_BITS", Role.RESOLUTION, None),
         ("VBAT_DIVIDER", Role.INVERSE_DIVIDER, None),
         ("R2_K", Role.RESISTANCE, -3),
+        ("R_TOP", Role.RESISTANCE, None),
+        ("R_BOT", Role.RESISTANCE, None),
+        ("R_HI_OHM", Role.RESISTANCE, 0),
         ("SHUNT_MOHM", Role.SHUNT, 3),
         ("AMP_GAIN", Role.GAIN, None),
         ("T_OFFSET_MV", Role.OFFSET, 3),
@@ -96,3 +103,17 @@ def test_powers_and_decades() -> None:
     assert not is_power(Fraction(20), 10)
     assert not is_power(Fraction(0), 2)
     assert decades(Fraction(10) ** 400) == pytest.approx(400)
+
+
+def test_only_what_makes_a_value_is_a_knob() -> None:
+    """The shift and the label of a case that choose a branch are no constants to correct."""
+    code = raw()
+    chosen = choose(HOST, (code >> const("11")).node, (code * const("3")).node, code.node, PLACE)
+    assert [knob.leaf.text for knob in knobs(chosen)] == ["3"]
+
+
+@pytest.mark.parametrize(("mask", "masks"), [("0x3FF", True), ("0x3F0", False), ("1023", True)])
+def test_masks_of_the_reading_are_known(mask: str, masks: bool) -> None:
+    """A constant that keeps the lowest bits of the reading is a mask; another is not."""
+    (knob,) = knobs((raw() & const(mask)).node)
+    assert knob.masks is masks

@@ -107,3 +107,22 @@ def test_coarse_end_is_not_blamed_for_a_wrong_constant() -> None:
     c = C()
     scaled = c.op(c.op(c.code(), "*", "4"), "/", "1024")
     assert _loss(scaled, facts.channel(count="1 V", allowed="100 mV")) is None
+
+
+def test_a_shift_that_only_decides_loses_nothing() -> None:
+    """The shift under a case selects a branch; no operator of its own is to blame."""
+    c = C()
+    code = c.code()
+    scaled = c.op(c.op(code, "*", "5000"), "/", "1024")
+    high = c.op(c.op(c.op(code, "*", "5000"), "+", "20480"), "/", "1024")
+    assert _loss(c.choose(c.op(code, ">>", "9"), high, scaled)) is None
+
+
+def test_truncation_that_does_not_fit_is_told_once() -> None:
+    """A shift that leaves too many bits for the type it is put in is a matter of the store."""
+    c = C()
+    held = c.store("uint8_t", c.op(c.code(), ">>", "1"))
+    judgement = facts.case(c.op(c.op(held, "*", "5000"), "/", "512")).judgement
+    assert judgement is not None
+    assert judgement.operations
+    assert judgement.loss is None

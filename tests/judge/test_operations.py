@@ -1,5 +1,7 @@
 """The operators that go wrong for some code, each cause once."""
 
+from dataclasses import replace
+
 import pytest
 
 import facts
@@ -143,3 +145,24 @@ def test_negative_code_becomes_unsigned() -> None:
     )
     (wrong,) = _found(c.op(c.op(c.code("int16_t"), "*", "5000u"), "/", "2048"), facts.INT32, tank)
     assert (wrong.kind, wrong.exact) == (FaultKind.SIGN, -2048)
+
+
+def test_a_wrap_that_comes_right_is_not_blamed_for_the_store() -> None:
+    """A difference that wraps and is cast back is right; only the store of the result fails."""
+    c = C(facts.AVR)
+    signed = c.cast("int16_t", c.op(c.code("uint16_t"), "-", "512u"))
+    scaled = c.op(c.op(c.cast("int32_t", signed), "*", "5000L"), "/", "64")
+    found = _found(c.store("int16_t", scaled))
+    assert found
+    assert all(one.at_end for one in found)
+
+
+def test_the_additions_of_a_loop_are_one() -> None:
+    """A sum that wraps after some readings is one fault, from the first code at which any does."""
+    c = C()
+    total: Expression = c.code("uint16_t")
+    for _ in range(79):
+        stored = c.store("uint16_t", c.op(total, "+", c.code("uint16_t")))
+        total = replace(stored, place=facts.at(60))
+    (wrong,) = _found(c.op(c.op(total, "/", "80"), "*", "5"))
+    assert (wrong.index, wrong.high) == (820, 80 * 1023)

@@ -34,6 +34,8 @@ def _wrong(text: str, folder: Path, *, sources_given: bool = False) -> list[tupl
     [
         ('[board]\nfirmware = "no"\n', 7, "firmware: no such file or folder: 'no'"),
         ('[board]\ninclude = ["no"]\n', 7, "include: no such file or folder: 'no'"),
+        (f'[board]\ninclude = "{"x" * 5000}"\n', 7, "include: no such file or folder: 'xxx"),
+        ('[board]\ninclude = "a\\u0000b"\n', 7, "include: no such file or folder: 'a"),
         ('[board]\ninclude = "file"\n', 7, "include: expected a folder, found the file 'file'"),
         ('[board]\nbuild = "no.json"\n', 7, "build: no such file or folder: 'no.json'"),
         ('[target]\nfamilies = ["no"]\n', 7, "families: no such file or folder: 'no'"),

@@ -94,6 +94,19 @@ def by_resistors(top: str, bottom: str) -> Operand:
     return scaled("5000UL", "1024") * (upper + lower) / lower
 
 
+def by_sides(top: Operand, bottom: Operand) -> Operand:
+    """raw * 5.0 / 1024 * (top + bottom) / bottom."""
+    return raw().cast("float") * const("5.0f") / const("1024.0f") * (top + bottom) / bottom
+
+
+def of_ten(divisor: str) -> Operand:
+    """The sum of ten readings, divided."""
+    total = raw("uint32_t")
+    for _ in range(9):
+        total = total + raw("uint32_t")
+    return total / const(divisor)
+
+
 RIGHT = {
     "integer": (TEN_BITS, scaled("5000UL", "1024"), MILLI),
     "rounded to nearest": (
@@ -277,13 +290,12 @@ WRONG = {
     ),
     "resistors swapped, named by their side": (
         DIVIDED,
-        raw().cast("float")
-        * const("5.0f")
-        / const("1024.0f")
-        * (const("10000.0f", "R_TOP") + const("100e3f", "R_BOT"))
-        / const("100e3f", "R_BOT"),
+        by_sides(const("10000.0f", "R_TOP"), const("100e3f", "R_BOT")),
         Fraction(1),
-        [("divider-ratio", "10000.0 ohm", "100000.0 ohm"), ("divider-ratio", "100e3 ohm", "10e3 ohm")],
+        [
+            ("divider-ratio", "10000.0 ohm", "100000.0 ohm"),
+            ("divider-ratio", "100e3 ohm", "10e3 ohm"),
+        ],
     ),
     "left read as right": (
         LEFT,
@@ -575,6 +587,6 @@ def test_a_constant_that_is_a_fact_is_not_blamed(code: Operand) -> None:
 
 def test_nameless_constant_alone_is_no_resistance() -> None:
     """A divisor of samples is no resistor of 8 kohm, unless its neighbour is one."""
-    code = scaled("5000UL", "1024") * const("11") * const("10") / const("8", line=8)
+    code = of_ten("8") * const("5000UL") * const("11") / const("1024", line=8)
     rules = {wrong.rule for wrong in explain(question(DIVIDED, code, MILLI)).wrong}
     assert "divider-ratio" not in rules

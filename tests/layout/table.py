@@ -19,6 +19,7 @@ ORDER = (
     "errors",
     "units",
     "quantities",
+    "toml_texts",
     "documents",
     "requests",
     "arithmetic",

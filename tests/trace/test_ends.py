@@ -3,13 +3,22 @@
 import pytest
 
 from bitweight.firmware.parsing import Parser, snippet
-from bitweight.trace.ends import consumed, event_ends, flow_ends, object_ends, wanted_ends
+from bitweight.trace.ends import (
+    consumed,
+    event_ends,
+    flow_ends,
+    object_ends,
+    path_of,
+    wanted_ends,
+)
+from bitweight.trace.execution import Execution
 from bitweight.trace.runs import Runner
 from tracing_cases import HEAD, context_of
 
 TEXT = (
     HEAD
-    + """struct dev { int level; int raw[2]; } dev, *pdev;
+    + """enum { SECOND = 1 };
+struct dev { int level; int raw[2]; } dev, *pdev;
 int inner(int x) { return x + 1; }
 int outer(void) { return inner(3); }
 void f(int *out) { int local = 4; dev.level = 1; dev.raw[1] = 2; *out = 5; pdev->level = 6;
@@ -51,6 +60,7 @@ def test_arguments_and_results_that_leave() -> None:
         ("level", {"dev.level", "pdev->level"}),
         ("dev", {"dev.level", "dev.raw[1]"}),
         ("dev.raw[1]", {"dev.raw[1]"}),
+        ("dev.raw[SECOND]", {"dev.raw[1]"}),
         ("dev.raw[0]", set()),
         ("pdev->level", {"pdev->level"}),
         ("*out", {"out"}),
@@ -66,10 +76,11 @@ def test_ends_that_a_value_names(value: str, results: set[str]) -> None:
 
     A pointer may lead to the object: its member of the same name counts.
     """
-    _, runs = setting(("local",))
     tree = Parser(snippet(value), is_type=lambda name: False).expression()
     assert tree is not None
-    assert {end.result for end in wanted_ends(runs, tree)} == results
+    context, runs = setting(("local",))
+    path = path_of(tree, Execution(context, context.program.units["main.c"]).plain_constant)
+    assert {end.result for end in wanted_ends(runs, tree, path)} == results
 
 
 def test_an_object_that_goes_on_is_consumed() -> None:

@@ -4,7 +4,7 @@ Lowering makes these nodes from C text, with every implicit conversion written o
 evaluation runs them for every code. Trees share sub-trees: walk them with a memo by identity.
 """
 
-from collections.abc import Iterator
+from collections.abc import Container, Iterator
 from dataclasses import dataclass
 from enum import Enum
 
@@ -141,8 +141,11 @@ def children(node: Expression) -> tuple[Expression, ...]:
             return (node.condition, node.then, node.other)
 
 
-def walk(root: Expression) -> Iterator[Expression]:
-    """Every distinct node below `root`, operands before operators, without recursion."""
+def walk(root: Expression, known: Container[int] = ()) -> Iterator[Expression]:
+    """Every distinct node below `root`, operands before operators, without recursion.
+
+    Nodes whose identity is among the `known` are left out with all that is below them.
+    """
     seen: set[int] = set()
     pending: list[tuple[Expression, bool]] = [(root, False)]
     while pending:
@@ -150,7 +153,7 @@ def walk(root: Expression) -> Iterator[Expression]:
         if ready:
             yield node
             continue
-        if id(node) in seen:
+        if id(node) in seen or id(node) in known:
             continue
         seen.add(id(node))
         pending.append((node, True))

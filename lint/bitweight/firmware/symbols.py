@@ -32,6 +32,8 @@ class Program:
     limits: Limits
     marks: frozenset[str] = frozenset()
     units: dict[str, Unit] = field(default_factory=dict)
+    too_large: set[str] = field(default_factory=set)
+    """Paths of units that are not parsed because of their size."""
     plain_trees: dict[str, Expr | None] = field(default_factory=dict)
     """Expressions from outside that mean the same in every unit."""
     _loaded: set[str] = field(default_factory=set)
@@ -42,7 +44,7 @@ class Program:
             return
         self._loaded.add(name)
         for file in self._units_for(name):
-            self._unit(file)
+            self._read(file)
 
     def defining(self, name: str) -> tuple[Function, ...]:
         """Every function of that name with external linkage, each once, strong ones first."""
@@ -92,11 +94,17 @@ class Program:
                     found.setdefault(one.identity, one)
         return tuple(found[key] for key in sorted(found))
 
-    def _unit(self, file: SourceFile) -> Unit:
-        if file.path not in self.units:
+    def _read(self, file: SourceFile) -> None:
+        """Parse a unit, unless it is too large."""
+        if file.path in self.units or file.path in self.too_large:
+            return
+        most = self.limits.parsed_bytes
+        if len(file.text) <= most:
             translation = translate(self.tree, file, self.defines, self.limits)
-            self.units[file.path] = Unit(translation, self.model, self.marks, self.plain_trees)
-        return self.units[file.path]
+            if len(translation.text) <= most:
+                self.units[file.path] = Unit(translation, self.model, self.marks, self.plain_trees)
+                return
+        self.too_large.add(file.path)
 
     def _units_for(self, name: str) -> list[SourceFile]:
         found: dict[str, SourceFile] = {}

@@ -188,9 +188,16 @@ def nearest(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:
         powers = _nearest_powers(knob, term, ratio)
         for exponent, doublings in powers:
             exact = term.value * Fraction(10) ** exponent * Fraction(2) ** doublings
-            far = _FAR_WITH_UNIT if term.scaling is Scaling.COUNT and knob.is_count else farthest
+            far = _FAR_WITH_UNIT if _may_be_far(knob, term) else farthest
             if abs(decades(knob.value / exact)) < far:
                 yield Meaning(term=term, exact=exact, exponent=exponent, doublings=doublings)
+
+
+def _may_be_far(knob: Knob, term: Term) -> bool:
+    """Whether a form or a name speaks for a term however far the constant is: R_TOP for 100k."""
+    if term.scaling is Scaling.COUNT:
+        return knob.is_count
+    return term.role is Role.RESISTANCE and Role.RESISTANCE in knob.hints
 
 
 def snaps(knob: Knob, all_terms: Sequence[Term]) -> Iterator[Meaning]:

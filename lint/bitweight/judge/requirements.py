@@ -1,5 +1,6 @@
 """Whether what the board file names outside itself exists: paths, families, rules."""
 
+import os
 from collections.abc import Iterable, Iterator, Mapping
 from pathlib import Path
 
@@ -55,17 +56,10 @@ def _wrong_paths(board: Board, folder: Path, *, sources_given: bool) -> Iterator
     for key, names in wanted.items():
         for name in names:
             place, path = board.paths.get(key, board.place), folder / name
-            if not _exists(path):
+            if not os.path.exists(path):
                 yield place, f"{key}: no such file or folder: '{shortened(name)}'"
-            elif key == "include" and not path.is_dir():
+            elif key == "include" and not os.path.isdir(path):
                 yield place, f"{key}: expected a folder, found the file '{shortened(name)}'"
-
-
-def _exists(path: Path) -> bool:
-    try:
-        return path.exists()
-    except (OSError, ValueError):
-        return False
 
 
 def _wrong_families(board: Board, families: Mapping[str, Family]) -> Iterator[tuple[Place, str]]:

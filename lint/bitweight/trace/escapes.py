@@ -17,6 +17,7 @@ from bitweight.firmware.syntax import (
     Cast,
     Conditional,
     Declarator,
+    Entry,
     Evaluate,
     FunctionOf,
     If,
@@ -201,7 +202,7 @@ def _below(node: Node) -> Iterator[Node]:
             yield inner
         elif isinstance(inner, tuple):
             pending.extend(inner)
-        elif hasattr(inner, "designators"):
+        elif isinstance(inner, Entry):
             pending.extend((inner.value, inner.designators))
 
 

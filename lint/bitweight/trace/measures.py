@@ -18,13 +18,18 @@ from bitweight.arithmetic.expressions import (
 _DECISIONS = building.COMPARISONS | building.LOGICAL
 
 
-def measures(root: Expression, tainted: Mapping[int, frozenset[str]]) -> frozenset[str]:
+def measures(
+    root: Expression,
+    tainted: Mapping[int, frozenset[str]],
+    known: dict[int, frozenset[str]] | None = None,
+) -> frozenset[str]:
     """The channels whose code the value is made from; what only decides does not count.
 
-    `tainted` says which unknowns were made from which codes, by identity.
+    `tainted` says which unknowns were made from which codes, by identity. `known` is what earlier
+    calls found, by identity; what this one finds is added.
     """
-    found: dict[int, frozenset[str]] = {}
-    for node in walk(root):
+    found = {} if known is None else known
+    for node in walk(root, found):
         match node:
             case Code():
                 here = frozenset(node.channels) | tainted.get(id(node), frozenset())

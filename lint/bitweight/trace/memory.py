@@ -56,10 +56,10 @@ def value_type(value: Value) -> ObjectType:
             return Pointer(to=value.type)
         case Routine():
             return Pointer(to=Strange(name=""))
-        case _ if is_number(value):
-            return Arithmetic(type=value.type)
-        case _:
+        case Copy():
             return value.type
+        case _:
+            return Arithmetic(type=value.type)
 
 
 @dataclass(slots=True)

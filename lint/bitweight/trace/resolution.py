@@ -30,7 +30,7 @@ from bitweight.trace.execution import Execution
 from bitweight.trace.measures import measures
 from bitweight.trace.memory import Input, is_number
 from bitweight.trace.runs import Runner
-from bitweight.trace.structures import structure
+from bitweight.trace.structures import Structures
 from bitweight.trace.writings import Writings
 
 _MOST_WAYS = 12
@@ -57,6 +57,8 @@ class Resolver:
     """The outermost object of the stack that one being resolved came back to."""
     _earlier: set[int] = field(default_factory=set)
     """Unknowns that are an object's own earlier value, by identity."""
+    _structures: Structures = field(default_factory=Structures)
+    _measured: dict[int, frozenset[str]] = field(default_factory=dict)
     _kept: list[object] = field(default_factory=list)
     """Expressions known by identity live as long as the resolver."""
 
@@ -65,7 +67,9 @@ class Resolver:
 
     def measures(self, expression: Expression) -> frozenset[str]:
         """The channels a closed expression is made from."""
-        return measures(expression, self.tainted)
+        if id(expression) not in self._measured:
+            self._kept.append(expression)
+        return measures(expression, self.tainted, self._measured)
 
     def alternatives(self, root: Expression) -> Ways:
         """Every closed expression that the value may be."""
@@ -165,9 +169,9 @@ class Resolver:
         return self._distinct(carrying or others, node)
 
     def _distinct(self, ways: Iterable[Expression], node: Expression) -> Ways:
-        found: dict[str, Expression] = {}
+        found: dict[int, Expression] = {}
         for one in ways:
-            found.setdefault(structure(one), one)
+            found.setdefault(self._structures.number(one), one)
             if len(found) > _MOST_WAYS:
                 made = Unknown(
                     reason="the value depends on too many things that are decided at run time",

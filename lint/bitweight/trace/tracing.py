@@ -14,6 +14,7 @@ from bitweight.arithmetic.expressions import (
 )
 from bitweight.errors import LimitReached
 from bitweight.limits import Deadline
+from bitweight.trace.absences import nowhere
 from bitweight.trace.contexts import Context
 from bitweight.trace.conversions import Conversion, Step, Trace
 from bitweight.trace.declared import declared_place
@@ -92,6 +93,9 @@ class Tracer:
             ways = self._ways(end)
             own = [way for way in ways if aim.channel in self.resolver.measures(way)]
             if len(own) > 1 and not any(isinstance(way, Unknown) for way in own):
+                # Two readings of one channel (the halves of a buffer) are one way.
+                own = [*{structure(way, aim.channel): way for way in reversed(own)}.values()][::-1]
+            if len(own) > 1 and not any(isinstance(way, Unknown) for way in own):
                 reason = _several(end, own)
                 return Trace(channel=aim.channel, reason=reason, place=end.place)
             carrying.extend((end, way) for way in own)
@@ -161,8 +165,8 @@ class Tracer:
         seen = self.context.seen.get(aim.channel)
         limit = next((run.reason for run in self.runs if run.reason), None)
         if seen is None:
-            reason = limit or f"the reading {texts} is nowhere in the code that was followed"
-            return Trace(channel=aim.channel, reason=reason)
+            reason, place = nowhere(self.context, aim.readings, self.runs)
+            return Trace(channel=aim.channel, reason=reason, place=place)
         for end in ends if aim.values else ():
             for way in self.resolver.alternatives(end.value):
                 unknown = _unknown_in(way)

@@ -1,5 +1,7 @@
 """Channels: copies, units, limits, firmware."""
 
+from fractions import Fraction
+
 from bitweight.board.decoding.boards import board_from_text
 from bitweight.board.hardware import LimitMeasure
 from board.mistaken import BOARD, mistakes_of
@@ -77,6 +79,24 @@ def test_a_limit_stands_for_counts_unless_it_says_value() -> None:
     first, second = made.limits
     assert (first.measure, first.name, first.bits) == (LimitMeasure.COUNTS, "A", None)
     assert (second.measure, second.name, second.bits) == (LimitMeasure.VALUE, "high", None)
+
+
+def test_an_allowed_error_in_steps_is_put_in_the_channels_unit() -> None:
+    """Two LSB of 2.5 V / 4096 behind a divider by two, and what is added to them."""
+    made = board_from_text(
+        BOARD + "unit = 'mV'\nallowed_error = '2 LSB + 1 mV'\n"
+        "chain = [{ kind = 'divider', top = '1k', bottom = '1k' }]\n",
+        file="b",
+    ).channels[0]
+    assert made.allowed_error is not None
+    assert made.allowed_error.absolute == Fraction(2 * 2 * 2500, 4096) + 1
+
+
+def test_a_wrong_stage_says_nothing_of_the_unit() -> None:
+    """A chain that cannot be read gives no unit, so the range is not measured against one."""
+    text = BOARD + "range = ['0 degC', '1 degC']\nchain = [{ kind = 'linear' }]\n"
+    (mistake,) = mistakes_of(text)
+    assert "missing key 'sensitivity'" in mistake.message
 
 
 def test_the_only_converter_may_be_left_out_and_two_may_not() -> None:

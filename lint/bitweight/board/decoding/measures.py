@@ -80,6 +80,10 @@ class Ends:
         low, high = each(value, Measure("16 V", self.kinds))
         if not low.unit.fits(high.unit):
             raise wrong(value.place, f"the low end is in {low.unit}, the high end in {high.unit}")
+        for end in (low, high):
+            if end.tolerance is not None:
+                found = shortened(end.text)
+                raise wrong(value.place, f'an end takes no tolerance, found "{found}"')
         if low.value >= high.value:
             message = f'expected the low end first, found "{low.text}" before "{high.text}"'
             raise wrong(value.place, message)
