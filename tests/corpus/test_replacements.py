@@ -24,6 +24,7 @@ WITHOUT_REPLACEMENT = {
     },
     "seeded/clamp-inside-the-range": {"narrowing": "what the clamp is for, only its author knows"},
     "seeded/conflicting-constant": {"conflicting-constant": "which value is meant is not known"},
+    "seeded/count-of-1023-shifted": {"full-scale": "no shift divides by 1023"},
     "seeded/curve-where-the-chain-is-straight": {
         "transfer-curve": "no constant makes a straight line of it"
     },

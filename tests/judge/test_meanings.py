@@ -1,12 +1,13 @@
 """What a constant may stand for."""
 
+from dataclasses import replace
 from fractions import Fraction
 
 import pytest
 
 from bitweight.board.facts import Role
 from bitweight.judge.knobs import Knob, knobs
-from bitweight.judge.meanings import composites, matches, nearest, snaps, terms
+from bitweight.judge.meanings import composites, matches, nearest, resistances, snaps, terms
 from operands import Board, const, fact, number, raw
 
 FACTS = (
@@ -17,6 +18,7 @@ FACTS = (
     fact(Role.SENSITIVITY, "sensitivity", "10 mV/degC", "chain-constant"),
     fact(Role.OFFSET, "offset", "0 V", "chain-constant"),
 )
+RESISTOR = terms((fact(Role.RESISTANCE, "resistance R2", "10 kohm", "divider-ratio"),), Fraction(0))
 TERMS = terms(FACTS, Fraction(4096), (Fraction(4096), Fraction(4095)))
 
 
@@ -96,3 +98,20 @@ def test_products_of_facts_are_recognised(text: str, exact: Fraction) -> None:
 def test_coarse_constants_are_no_products() -> None:
     """A 5 is within ten per cent of too many products to say anything."""
     assert composites(knob("5"), TERMS) == ()
+
+
+@pytest.mark.parametrize(
+    ("text", "exact"), [("12", 10), ("12000", 10000), ("0.012", Fraction(1, 100)), ("120", None)]
+)
+def test_resistances_are_written_in_everyday_units(text: str, exact: Fraction | None) -> None:
+    """A resistance of 10 kohm is 10000, 10 or 0.01, but never 100."""
+    found = [one.exact for one in nearest(knob(text), RESISTOR)]
+    assert found == ([] if exact is None else [exact])
+
+
+def test_a_lone_constant_is_no_resistance() -> None:
+    """Without a name or a neighbour that speaks for it, a number is no resistor."""
+    assert not list(matches(replace(knob("8"), lone=True), Fraction(10), RESISTOR))
+    assert list(matches(knob("8"), Fraction(10), RESISTOR))
+    assert resistances(knob("10"), RESISTOR) == {"resistance R2"}
+    assert not resistances(knob("100"), RESISTOR)

@@ -1,5 +1,6 @@
 """One correction: its rule, and its rank among others."""
 
+from dataclasses import replace
 from fractions import Fraction
 
 import pytest
@@ -12,6 +13,7 @@ from bitweight.judge.repairs import (
     Repair,
     divisor_repair,
     fact_repair,
+    mask_repair,
     power_repair,
     rank,
     shift_repairs,
@@ -93,3 +95,34 @@ def test_names_go_before_the_order_of_rules_and_that_before_nearness() -> None:
     doubtful = repair("1000", 1024, name="SHUNT_X")
     assert rank([count]) < rank([volts]) < rank([doubtful])
     assert rank([against]) < rank([doubtful])
+
+
+@pytest.mark.parametrize(
+    ("text", "wanted", "summed", "told"),
+    [("1024", 2048, False, False), ("1024", 2048, True, True), ("2047", 2048, False, True)],
+)
+def test_a_count_of_sums_needs_a_sum(text: str, wanted: int, summed: bool, told: bool) -> None:
+    """The count of one result is not taken for that of two, unless readings are added."""
+    layout = replace(RIGHT, summed=summed)
+    one = knob(text)
+    found = [fact_repair(one, meaning, layout) for meaning in matches(one, Fraction(wanted), TERMS)]
+    assert any(found) is told
+
+
+def test_a_mask_keeps_all_bits() -> None:
+    """A narrower mask of the reading is widened; a whole one, or one of a moved code, is not."""
+    (narrow,) = knobs((raw() & const("0xFF")).node)
+    found = mask_repair(narrow, RIGHT)
+    assert found is not None
+    assert (found.rule, found.exact) == ("resolution", 1023)
+    assert mask_repair(narrow, LEFT) is None
+    (whole,) = knobs((raw() & const("0x3FF")).node)
+    assert mask_repair(whole, RIGHT) is None
+
+
+def test_a_bare_power_of_ten_is_no_scaled_ratio() -> None:
+    """A gain of 10 in tenths is 100: a nameless constant is not taken for it."""
+    ten = terms((number(Role.GAIN, "gain", 10, "chain-constant"),), Fraction(1024))
+    one = knob("95")
+    found = [fact_repair(one, meaning, RIGHT) for meaning in matches(one, Fraction(100), ten)]
+    assert not any(found)

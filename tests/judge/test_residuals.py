@@ -56,3 +56,16 @@ def test_the_only_unknown_constant_is_the_culprit() -> None:
     assert found.exact == Fraction(5, 1024)
     two = question(Board(), raw() * const("5381") / const("917"))
     assert culprit(next(views(two))) is None
+
+
+@pytest.mark.parametrize(
+    "code",
+    [
+        (raw() & const("0x1FF", line=7)) * const("5000UL") / const("1024"),
+        (raw() & const("0x2FF", line=7)) * const("5000UL") / const("1024"),
+    ],
+)
+def test_a_sawtooth_bends(code: Operand) -> None:
+    """Code that starts again from 0 leaves its own line, even by one and the same jump."""
+    asked = question(Board(), code)
+    assert bends(asked, next(views(asked)))

@@ -1,11 +1,13 @@
 """Conversions with other constants in their places."""
 
+from fractions import Fraction
+
 import numpy as np
 
 from bitweight.arithmetic.evaluation import evaluate
 from bitweight.arithmetic.expressions import Code, Literal, walk
 from bitweight.judge.knobs import knobs, leaf_key
-from bitweight.judge.substitutions import grouped, replaced, steadied
+from bitweight.judge.substitutions import corrected, grouped, replaced, steadied
 from bitweight.places import Place
 from operands import HOST, Operand, const, ctype, raw
 
@@ -55,3 +57,13 @@ def test_other_channels_readings_become_constants() -> None:
     assert value(changed) == 700
     assert len([node for node in walk(changed) if isinstance(node, Code)]) == 1
     assert steadied(raw().node, "tank", {"supply": 7}) is not None
+
+
+def test_corrected_constants_keep_their_type() -> None:
+    """A corrected constant is rounded to its type; what its type cannot hold gives nothing."""
+    code = raw() * const("3", "K")
+    key = leaf_key(knobs(code.node)[0].leaf)
+    changed = corrected(code.node, {key: Fraction(51, 10)})
+    assert changed is not None
+    assert value(changed) == 500
+    assert corrected(code.node, {key: Fraction(1 << 40)}) is None

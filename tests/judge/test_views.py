@@ -51,3 +51,28 @@ def test_no_line_no_view() -> None:
     """Code that is no straight line cannot be read this way."""
     assert not list(views(question(Board(), raw() * raw())))
     assert smallest_answer(()) is None
+
+
+def test_a_mask_that_drops_bits_is_widened_as_one_fault() -> None:
+    """A view takes the whole mask for granted; a mask that keeps all bits gives none."""
+    for mask, given in (("0xFF", [Fraction(1023)]), ("0x3FF", []), ("0xFFFF", [])):
+        code = (raw() & const(mask)) * const("5000UL") / const("1024")
+        found = [view.given for view in views(question(Board(), code)) if view.given]
+        assert [one.exact for repairs in found for one in repairs] == given
+
+
+def test_a_shift_of_a_quantity_is_also_a_divisor() -> None:
+    """A product shifted right is read as divided by a count; a shift of the bare word is not."""
+    product = (raw() * const("5000UL")) >> const("10")
+    (plain, divided) = views(question(Board(), product))
+    assert [knob.value for knob in plain.search.knobs] == [5000, 10]
+    assert [knob.value for knob in divided.search.knobs] == [5000, 1024]
+    word = (raw() >> const("2")) * const("5000UL") / const("256")
+    assert len(list(views(question(Board(), word)))) == 1
+
+
+def test_a_power_of_ten_goes_with_no_other_correction() -> None:
+    """A free power of ten beside a wrong constant would fit too much by chance."""
+    code = raw() * const("4900UL", "VREF_MV") / const("1024")
+    answer = smallest_answer(tuple(views(question(Board(), code, Fraction(1)))))
+    assert answer is None or len(answer.repairs) != 2

@@ -29,6 +29,7 @@ _MOST_OPTIONS = 3
 _NEAR = 0.2
 OFFSETS = (Role.OFFSET, Role.ZERO_CODE, Role.AT)
 """What a constant may be that moves the offset and nothing else."""
+_EVERYWHERE = frozenset({Role.FULL_SCALE, Role.REFERENCE})
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -74,21 +75,24 @@ def is_settled(search: Search, knob: Knob) -> bool:
 
 
 def is_fact_already(search: Search, repair: Repair) -> bool:
-    """Whether a constant is exactly another fact, and its name says nothing for the new meaning.
+    """Whether a constant is exactly what every conversion has: the full scale or the reference.
 
-    The middle of a reference and the like are no facts here: they move an offset, no gain. A wrong
-    count is none either, if it happens to be a reference in millivolts.
+    Its name then says nothing for another meaning. The voltage of a pin that takes half of the
+    reference may yet stand where the span belongs, and a wrong count may happen to be a
+    reference in millivolts; a small whole number may be a resistor in kohm by chance.
     """
     knob, meaning = repair.knob, repair.meaning
     moves = repair.rule in ("unit-prefix", "justification")
     if knob is None or meaning is None or is_likely(repair) or moves:
         return False
-    counts = meaning.term.role is Role.FULL_SCALE
-    return any(
-        one.is_natural and one.exact == knob.value and one.term.role not in OFFSETS
+    roles = {
+        one.term.role
         for one in snaps(knob, search.terms)
-        if not counts or one.term.role is Role.FULL_SCALE
-    )
+        if one.is_natural and one.exact == knob.value
+    }
+    if meaning.term.role is Role.FULL_SCALE:
+        return Role.FULL_SCALE in roles
+    return bool(roles & _EVERYWHERE) and meaning.term.role not in roles
 
 
 def _exact_values(search: Search, knob: Knob) -> tuple[Fraction, ...]:

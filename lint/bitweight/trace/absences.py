@@ -12,7 +12,7 @@ from bitweight.trace.contexts import Context, Reading
 from bitweight.trace.patterns import parsed
 from bitweight.trace.runs import Run
 
-_WORD = re.compile(r"[A-Za-z_]\w{2,}")
+_WORD = re.compile(r"[A-Za-z_]\w+")
 _SEARCHED = 4 * 1024 * 1024
 """Characters of the sources in which a similar name is looked for."""
 _MOST_WORDS = 20_000
@@ -40,9 +40,17 @@ def nowhere(
 def _given_up(reading: Reading, runs: tuple[Run, ...]) -> tuple[str, Place | None] | None:
     """The reason of a function that was not followed to its end and names the reading."""
     for run in runs:
-        if run.reason and _subject(reading, run.function.unit) in run.function.mentions.names:
+        if run.reason and _names(run.function, _subject(reading, run.function.unit)):
             return run.reason, run.function.key
     return None
+
+
+def _names(function: Function, name: str) -> bool:
+    """Whether the text of a function names something, where it nests too deeply for a tree too."""
+    text = function.unit.translation.text
+    word = re.compile(rf"(?<![\w$]){re.escape(name)}(?![\w$])")
+    found = word.search(text, function.syntax.body_start, function.syntax.end)
+    return bool(name) and found is not None
 
 
 def _too_large(context: Context, reading: Reading) -> tuple[str, Place | None] | None:
@@ -104,8 +112,8 @@ def _uses(context: Context, name: str) -> Iterator[tuple[Call | Index, Function]
 
 def _otherwise(name: str, use: Call | Index, function: Function) -> tuple[str, Place]:
     place = function.unit.place(use.start)
-    how = "is called" if isinstance(use, Call) else "is read"
-    return f"{name} {how}, but otherwise: {_shown(use, function)} ({place})", place
+    how = "() is called" if isinstance(use, Call) else " is used"
+    return f"{name}{how}, but otherwise, as {_shown(use, function)} ({place})", place
 
 
 def _shown(use: Call | Index, function: Function) -> str:

@@ -8,12 +8,13 @@ from bitweight.firmware.syntax import (
     Expr,
     FunctionOf,
     Name,
+    Opaque,
     Operation,
 )
 from bitweight.firmware.units import Function
+from bitweight.trace.blocks import BLOCKS, Blocks
 from bitweight.trace.contexts import Reading, shown
 from bitweight.trace.escapes import points_to_const
-from bitweight.trace.functions import Functions
 from bitweight.trace.memory import Address, Copy, Routine, Value, is_number
 
 _TABLE_READS = frozenset(
@@ -25,7 +26,7 @@ _TABLE_READS = frozenset(
 _SAME_AS_FIRST = frozenset({"__builtin_expect", "__builtin_assume_aligned"})
 
 
-class Calls(Functions):
+class Calls(Blocks):
     """Follows calls."""
 
     def call(self, node: Call) -> Value:
@@ -34,6 +35,8 @@ class Calls(Functions):
         arguments = node.arguments
         if routine is None:
             reason = "a call through a pointer that is not constant"
+            if isinstance(node.function, Opaque):
+                reason = f"a call of a {node.function.kind} is not followed"
             self._hand_out(reason, node, [self.value(one) for one in arguments], ())
             return self.unknown(reason, node)
         if routine.name in _TABLE_READS and len(arguments) == 1:
@@ -41,6 +44,9 @@ class Calls(Functions):
             if found is not None:
                 return self.read(*found, node)
         values = [self.value(one) for one in arguments]
+        if routine.name in BLOCKS and not self.context.program.defining(routine.name):
+            done = self.block(routine.name, node, values)
+            return done if done is not None else self._lost_block(routine.name, node, values)
         known = self._library(routine.name, node, values)
         if known is not None:
             return known
@@ -109,6 +115,12 @@ class Calls(Functions):
         negative = building.binary(self.model, "<", operand, Literal(value=0, type=type_), place)
         opposite = building.unary(self.model, "-", operand, place)
         return building.choose(self.model, negative, opposite, operand, place)
+
+    def _lost_block(self, name: str, node: Call, values: list[Value]) -> Value:
+        """memcpy() and the like where types or size are not those of known objects."""
+        reason = f"{name}() with this size and these types is not followed"
+        self._hand_out(reason, node, values, (False, True, True))
+        return values[0] if values else self.unknown(reason, node)
 
     # --- out of the sources ---------------------------------------------------------------------
 

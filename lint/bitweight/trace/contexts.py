@@ -88,6 +88,8 @@ class Context:
     """Members of records with their types, in order."""
     sharing: dict[Location, tuple[Location, ...]] = field(default_factory=dict)
     """For members of unions, the members that share their storage."""
+    lost: dict[Root, str] = field(default_factory=dict)
+    """What stands for objects that something not followed has changed, with the reason."""
     seen: dict[str, Place] = field(default_factory=dict)
     """Where each channel's code was read first."""
     initialisers: dict[int, tuple[Expr, Parts | None]] = field(default_factory=dict)

@@ -6,7 +6,7 @@ becomes a placeholder with its reason, so that the structure around it is kept.
 
 import re
 
-from bitweight.firmware.objects import Location, ObjectType
+from bitweight.firmware.objects import ANYWHERE, Location, ObjectType
 from bitweight.firmware.syntax import (
     Assign,
     Braces,
@@ -28,7 +28,7 @@ from bitweight.firmware.syntax import (
     Text,
 )
 from bitweight.trace.memory import Address, Value, is_number
-from bitweight.trace.operators import Operators
+from bitweight.trace.tables import Tables
 
 _HARMLESS = frozenset({"offsetof expression", "alignof expression", "generic expression"})
 """What is not followed but changes no object."""
@@ -36,7 +36,7 @@ _STRING = re.compile(r'"(?:[^"\\\n]|\\.)*"')
 _WORD = re.compile(r"[A-Za-z_]\w*")
 
 
-class Lowering(Operators):
+class Lowering(Tables):
     """Evaluates C expressions. Calls and statements are added by the classes built on this one."""
 
     def value(self, node: Expr) -> Value:
@@ -109,6 +109,8 @@ class Lowering(Operators):
         if found is None:
             return self.unknown("an expression of this form is not followed", node)
         code = self.located(found[0], node)
+        if code is None and ANYWHERE in found[0].path:
+            code = self.entry(found, node)
         return code if code is not None else self.read(*found, node)
 
     def _compound(self, node: Braces) -> Value:

@@ -23,7 +23,7 @@ from bitweight.firmware.units import Unit
 from bitweight.trace.contexts import Given, Reading, Wanted
 from bitweight.trace.lvalues import Lvalues
 from bitweight.trace.memory import is_number
-from bitweight.trace.patterns import delivered, head, is_object, matches
+from bitweight.trace.patterns import delivered, head, is_object, matches, object_name
 
 _UNARY = ("-", "+", "~", "!")
 
@@ -150,7 +150,9 @@ class Matching(Lvalues):
             return unspelled(source.value, self.model)
         target = delivered(wanted.tree, node)
         if target is None:
-            return self._code(source, self.declared_type(node), node)
+            code = self._code(source, self.declared_type(node), node)
+            clash = self.clash(object_name(wanted.tree)) if is_object(wanted.tree) else None
+            return code if clash is None else self.unknown(clash, node, code.type)
         if isinstance(target, Operation) and target.operator == "&":
             found = self.lvalue(target.operand)
         else:

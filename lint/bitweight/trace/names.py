@@ -30,6 +30,9 @@ class Names(Joins):
             return self._enumerated(enumerator, node)
         variable = self.context.program.variable(node.text, self.unit)
         if variable is not None:
+            clash = self.clash(node.text)
+            if clash is not None:
+                return self.unknown(clash, node)
             return self.read(variable.location, self.object_type(variable), node)
         functions = self.context.program.function(node.text, self.unit)
         if functions:

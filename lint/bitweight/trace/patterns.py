@@ -211,13 +211,18 @@ def substituted(tree: Expr, name: str, by: Expr) -> Expr:
 
 def is_object(tree: Expr) -> bool:
     """Whether a pattern names an object: names, members, subscripts and `*` alone."""
+    return bool(object_name(tree))
+
+
+def object_name(tree: Expr) -> str:
+    """The object that a pattern starts from; empty where it is no object."""
     while True:
         match tree:
             case Name():
-                return tree.text not in (ANY, CODE)
+                return "" if tree.text in (ANY, CODE) else tree.text
             case Member() | Index():
                 tree = tree.base
             case Operation(operator="*") | Marked():
                 tree = tree.operand
             case _:
-                return False
+                return ""

@@ -24,7 +24,7 @@ from bitweight.arithmetic.expressions import (
     children,
     walk,
 )
-from bitweight.firmware.objects import Arithmetic, Location
+from bitweight.firmware.objects import Arithmetic, Location, Record
 from bitweight.trace.contexts import Context, shown
 from bitweight.trace.execution import Execution
 from bitweight.trace.measures import measures
@@ -230,6 +230,8 @@ class Resolver:
         return found
 
     def _held(self, location: Location, node: Code) -> Ways:
+        if location.root in self.context.lost:
+            return (self._unknown(self.context.lost[location.root], node),)
         other = self.writings.sharing(location)
         if other is not None:
             reason = f"{shown(location)} is read as {shown(other)} was written"
@@ -259,7 +261,7 @@ class Resolver:
             value = self.context.constant(initial) if initial is not None else None
             if value is None or value in values or value == 0:
                 return (written[0],)
-        if initial is not None and not written:
+        if initial is not None and not written and not self._may_be_written(location):
             return (initial,)
         if initial is not None:
             name = shown(location)
@@ -267,6 +269,13 @@ class Resolver:
         if written and None not in values:
             return self._distinct(written, node)
         return (self._unknown(self._why_unknown(location, written), node),)
+
+    def _may_be_written(self, location: Location) -> bool:
+        """Whether the address of a struct goes where its members may be written unseen."""
+        declared = self.context.declared(location, None)
+        if declared is None or declared.function is not None or not location.path:
+            return False
+        return isinstance(declared.type, Record) and not self.context.is_fixed(location, declared)
 
     def _why_unknown(self, location: Location, written: list[Expression]) -> str:
         declared = self.context.declared(location, None)

@@ -3,6 +3,7 @@
 from collections.abc import Callable, Iterator
 from dataclasses import replace
 
+from bitweight.arithmetic.types import CType
 from bitweight.firmware.objects import (
     Arithmetic,
     Array,
@@ -29,6 +30,19 @@ class Shapes(Machine):
         """The type of an object with its array sizes filled in."""
         type_ = self.sized(variable.type, variable.syntax.type, variable.unit)
         return self.counted(type_, variable.value, variable.unit)
+
+    def clash(self, name: str) -> str | None:
+        """Why an object has no type to rely on: units declare it with different ones."""
+        own = self.unit.variables.get(name)
+        if own is None or own.location.root.scope:
+            return None
+        for unit in self.context.program.units.values():
+            other = unit.variables.get(name)
+            if other is not None and not other.location.root.scope:
+                first, second = _number_in(own.type), _number_in(other.type)
+                if first is not None and second is not None and first != second:
+                    return f"{name} is declared as {first.name} and, in another file, {second.name}"
+        return None
 
     def whole_type(self, declared: Declared) -> ObjectType:
         """The type of an object with static storage, its array sizes filled in."""
@@ -162,3 +176,10 @@ class Shapes(Machine):
 
 def _result(type_: ObjectType) -> ObjectType | None:
     return type_.returns if isinstance(type_, FunctionType) else None
+
+
+def _number_in(type_: ObjectType) -> CType | None:
+    """The type of a number, or of the numbers of an array."""
+    while isinstance(type_, Array):
+        type_ = type_.of
+    return type_.type if isinstance(type_, Arithmetic) else None

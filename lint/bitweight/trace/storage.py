@@ -172,7 +172,8 @@ class Storage(Shapes):
             made = self.context.unknown(reason, self.used(node), type_.type, shown(location))
             self.put(location, type_, made, node)
         elif location.root.kind == "local":
-            outside = Location(Root("pointee", shown(location)))
+            outside = Location(Root("pointee", shown(location), f"lost at {self.used(node)}"))
+            self.context.lost[outside.root] = reason
             self.state.values[location] = Copy(parts=(), source=outside, type=type_)
 
     def doubt(self, before: State, reason: str, node: Node) -> None:
