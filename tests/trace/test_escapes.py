@@ -2,7 +2,8 @@
 
 import pytest
 
-from tracing_cases import Expected, check
+from bitweight.arithmetic.expressions import Default, walk
+from tracing_cases import Expected, check, traced
 
 HEAD = (
     "uint16_t adc(void);\nvoid unseen(void *p);\nvoid reads(const struct dev *p);\nint mv;\n"
@@ -48,10 +49,8 @@ def test_a_member_that_nothing_writes_is_constant(code: str, expected: Expected)
 )  # fmt: skip
 def test_a_member_that_may_be_written_is_a_default_at_best(use: str) -> None:
     """As soon as a write is possible, the initialiser is no constant of the program."""
-    from bitweight.arithmetic.expressions import Default, walk
-    from tracing_cases import traced
-
     found = traced(f"{HEAD}{CONV}{USED}{use}\n", value="mv")
+    assert found.reason or found.conversions
     for one in found.conversions:
         assert any(isinstance(node, Default) for node in walk(one.expression))
 

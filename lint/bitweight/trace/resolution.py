@@ -231,7 +231,8 @@ class Resolver:
 
     def _held(self, location: Location, node: Code) -> Ways:
         if location.root in self.context.lost:
-            return (self._unknown(self.context.lost[location.root], node),)
+            reason = f"{self.context.lost[location.root]} ({shown(location)})"
+            return (self._unknown(reason, node),)
         other = self.writings.sharing(location)
         if other is not None:
             reason = f"{shown(location)} is read as {shown(other)} was written"

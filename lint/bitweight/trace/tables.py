@@ -43,7 +43,8 @@ class Tables(Operators):
             return None
         place = self.used(node)
         made: Expression = self.unknown(
-            f"{shown(whole)} has {array.length} entries, and the subscript may be another",
+            f"{shown(whole)} is a table of {array.length} entries, "
+            "read at a subscript that depends on the code",
             node,
             type_.type,
         )
