@@ -34,6 +34,8 @@ UNTESTED = {
     "bitweight.errors": "texts; tested where they are raised and where the command shows them",
     "bitweight.requests": "one record without behaviour",
     "bitweight.judge.outcomes": "one record without behaviour",
+    "bitweight.trace.conversions": "records without behaviour",
+    "bitweight.trace.exits": "one record without behaviour",
     "bitweight.firmware.syntax": "records without behaviour: the kinds of C that are followed",
 }
 """Modules without a test file of their own, and why."""
@@ -46,6 +48,8 @@ CROSS_TESTS = {
     "judge/test_roles_properties.py",
     "test_distribution.py",
     "test_readme.py",
+    "trace/test_identities.py",
+    "trace/test_types_of_expressions.py",
 }
 """Further test files that look at more than one module."""
 
