@@ -40,7 +40,8 @@ def test_a_member_that_nothing_writes_is_constant(code: str, expected: Expected)
         "void t(void) { unseen(&d0); }",
         "struct dev *now;\nvoid t(void) { now = &d0; }",
         "void t(struct dev o) { d0 = o; }",
-        "static void set(struct dev *d, struct dev o) { *d = o; }\nvoid t(struct dev o) { set(&d0, o); }",
+        "static void set(struct dev *d, struct dev o) { *d = o; }\n"
+        "void t(struct dev o) { set(&d0, o); }",
         "struct dev *t(void) { return &d0; }",
         "void t(int *o) { int *g = &d0.gain; *g = *o; }",
         "static struct dev *const list[1] = { &d0 };\nvoid t(int g) { list[0]->gain = g; }",

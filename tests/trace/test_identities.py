@@ -87,3 +87,11 @@ def test_an_object_with_two_types_has_none() -> None:
     }
     reason = traced(sources, "raw", "mv").reason
     assert reason == "raw is declared as unsigned char and, in another file, unsigned short"
+
+
+def test_a_result_that_another_function_changes_again_is_not_the_first_one() -> None:
+    """What a second function makes of the result is not passed over."""
+    code = entry("mv = adc() * 3;") + "void again(void) { mv = mv * 102 / 100; }\n"
+    found = outcome(code)
+    assert isinstance(found, str)
+    assert "mv is computed from its own earlier value" in found

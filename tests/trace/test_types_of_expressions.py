@@ -4,7 +4,10 @@ import pytest
 
 from tracing_cases import Expected, check, entry
 
-MIN = "#define min(a, b) ({ typeof(a) _a = (a); typeof(b) _b = (b); (void)(&_a == &_b); _a < _b ? _a : _b; })"
+MIN = (
+    "#define min(a, b) ({ typeof(a) _a = (a); typeof(b) _b = (b); (void)(&_a == &_b);"
+    " _a < _b ? _a : _b; })"
+)
 MAX = "#define max(a, b) ({ __typeof__(a) _a = (a); __typeof__(b) _b = (b); _a > _b ? _a : _b; })"
 CLAMP = f"{MIN}\n{MAX}\n#define clamp(v, lo, hi) min((typeof(v))max(v, lo), hi)"
 CLOSEST = (

@@ -5,6 +5,7 @@ from dataclasses import replace
 
 from bitweight.arithmetic import building
 from bitweight.arithmetic.expressions import Expression
+from bitweight.errors import LimitReached
 from bitweight.firmware.syntax import Block, Case, Expr, If, Label, Node, Stmt, Switch
 from bitweight.trace.calls import Calls
 from bitweight.trace.exits import Exit, Flow
@@ -94,6 +95,10 @@ class Branches(Calls):
         subject = self.number(node.subject)
         items = node.body.items if isinstance(node.body, Block) else (node.body,)
         cases = [(index, one) for index, one in enumerate(items) if isinstance(one, Case)]
+        most = self.context.limits.forks
+        if len(cases) > most:
+            line = self.used(node).line
+            raise LimitReached(f"the switch at line {line} has more than {most} cases")
         known = self.context.constant(subject)
         if known is None or not self._all_constant(cases):
             return self._either(subject, cases, items, node)

@@ -94,6 +94,13 @@ class Resolver:
             if self._lowest >= len(self._stack):
                 self._lowest = _NONE_YET
 
+    def feeds_back(self, location: Location, value: Expression) -> Unknown | None:
+        """Why a value written to an object cannot be told, if it is made from the object's own."""
+        for way in self.written_to(location, value):
+            if isinstance(way, Unknown) and way.reason.endswith(_FED_BACK):
+                return way
+        return None
+
     # --- one node -----------------------------------------------------------------------------
 
     def _ways(self, node: Expression, memo: Mapping[int, Ways]) -> Ways:

@@ -106,6 +106,9 @@ class Tracer:
             if sum(isinstance(node, Choose) for node in walk(way)) > forks:
                 reason = f"{end.result} depends on more than {forks} conditions"
                 return Trace(channel=aim.channel, reason=reason, place=end.place)
+        changed = self._changed_again(carrying, ends)
+        if changed is not None:
+            return Trace(channel=aim.channel, reason=changed.reason, place=changed.place)
         last = carrying if aim.values else self._last(carrying)
         for end, way in last:
             if isinstance(way, Unknown):
@@ -121,6 +124,16 @@ class Tracer:
         for end, way in last:
             made.setdefault(structure(way), self._conversion(aim, end, way))
         return Trace(channel=aim.channel, conversions=tuple(made.values()))
+
+    def _changed_again(self, carrying: Sequence[_Found], ends: Iterable[End]) -> Unknown | None:
+        """Why a result is not what was found: another function changes what the object holds."""
+        results = {end.location for end, _ in carrying if end.location is not None}
+        for end in ends:
+            if end.location in results and end.location is not None:
+                found = self.resolver.feeds_back(end.location, end.value)
+                if found is not None:
+                    return found
+        return None
 
     def _last(self, carrying: Sequence[_Found]) -> Sequence[_Found]:
         """Without a stated value: ends whose flow goes no further, bare copies left out."""

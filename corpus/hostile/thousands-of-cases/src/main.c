@@ -21,8 +21,6 @@ void many(void)
     switch (code) {
     THOUSAND(0)
     THOUSAND(1000)
-    THOUSAND(2000)
-    THOUSAND(3000)
     default:
         many_mv = 0;
     }
