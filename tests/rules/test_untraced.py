@@ -50,7 +50,7 @@ def test_limit_without_a_value() -> None:
 
 
 def test_a_default_is_a_note() -> None:
-    """What was judged at a declared value that the program may overwrite is told where it is used."""
+    """A declared value that the program may overwrite is told where it is used."""
     c = C()
     scaled = c.op(c.op(c.code(), "*", "5000"), "/", "1024")
     used = Step(place=at(21, 9), message="cal is judged at its declared value")

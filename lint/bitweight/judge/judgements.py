@@ -253,7 +253,12 @@ def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _F
     wanted = (allowed.quantity - result.zero) / result.scale
     limit = allowed.at_step(result.step) / counts
     tolerance = (allowed.lsb + result.step) / counts * _ROUNDING
-    loss = truncation_loss(computed, wrong, tolerance) or coarse_end(computed, wrong, wanted, limit)
+    with np.errstate(invalid="ignore"):
+        # Terms that round half up offset what is lost: what ends right has lost nothing.
+        right = np.abs(computed.held - wanted) <= tolerance
+    loss = truncation_loss(computed, wrong | right, tolerance) or coarse_end(
+        computed, wrong, wanted, limit
+    )
     return _Faults(
         operations=operations,
         loss=None if loss is None or _is_stored_wrong(loss, operations) else loss,

@@ -297,7 +297,7 @@ class Context:
             place=origin.place,
             end_column=origin.place.column + len(text),
             use=origin.use,
-            names=origin.names,
+            names=self._speaking(unit, start, origin.names),
             comment=self._comment(origin.place),
         )
         return Literal(value=value, type=type_, leaf=leaf)
@@ -312,6 +312,16 @@ class Context:
             return None
         body = [token.text for token in definition.body if token.text not in ("(", ")", "-", "+")]
         return macro if body == [text] else None
+
+    @staticmethod
+    def _speaking(unit: Unit, start: int, names: tuple[str, ...]) -> tuple[str, ...]:
+        """The macros that stand for a value: one with parameters says nothing of its constants."""
+        definitions = unit.translation.macros.at(start)
+        return tuple(
+            name
+            for name in names
+            if (macro := definitions.get(name)) is None or macro.parameters is None
+        )
 
     def _comment(self, place: Place) -> str:
         key = (place.file, place.line)
