@@ -163,8 +163,6 @@ def _converter_facts(channel: Channel) -> Iterator[BoardFact]:
     yield _fact(Role.REFERENCE, name, reference.voltage.value, unit, reference.place)
     if converter.reference_gain != 1:
         yield _fact(Role.REFERENCE, f"{name} span", converter.span, unit, reference.place)
-    half = converter.span / 2
-    yield _fact(Role.REFERENCE, f"half of {name} span", half, unit, reference.place)
     bits = Fraction(converter.width)
     name = f"resolution {converter.name}"
     yield _fact(Role.RESOLUTION, name, bits, _PLAIN, converter.bits_place)

@@ -24,6 +24,7 @@ from bitweight.judge.evaluations import (
     Codes,
     Evaluation,
     Frame,
+    Mask,
     code_grid,
     evaluated,
     presented,
@@ -172,7 +173,8 @@ def _judged(
     meant = computed.real * result.scale + result.zero - allowed.quantity
     found = _Faults() if coding else _faults(computed, result, allowed)
     if explanation.mended is not None:
-        found = _lasting(found, frame, computed, explanation)
+        again = _mended(frame, computed, explanation)
+        found = _lasting(found, again, _right(again, result, allowed))
     known = computed.in_range & ~_unjudged(found.operations, meant)
     meant_ill = outside and _worst_ratio(meant, limit, known) > _ROUNDING
     worst = _worst_index(error, computed.in_range)
@@ -230,18 +232,40 @@ class _Faults:
         return inside or self.loss is not None or bool(self.clamps)
 
 
-def _lasting(
-    found: _Faults, frame: Frame, computed: Evaluation, explanation: Explanation
-) -> _Faults:
-    """The faults without the operators that come right when the wrong constants are mended."""
-    mended = explanation.mended
-    if mended is None or not found.operations:
+def _mended(frame: Frame, computed: Evaluation, explanation: Explanation) -> Evaluation | None:
+    """The conversion with its wrong constants mended; None where that is not known."""
+    if explanation.mended is None:
+        return None
+    conversion = replace(frame.conversion, expression=explanation.mended)
+    words = computed.words >> explanation.moved
+    return evaluated(replace(frame, conversion=conversion), computed.codes, words)
+
+
+def _lasting(found: _Faults, again: Evaluation | None, right: Mask) -> _Faults:
+    """The faults without those that come right when the wrong constants are mended (`again`).
+
+    `right` are the codes at which nothing is lost then.
+    """
+    if again is None or not (found.operations or found.loss):
         return found
-    conversion = replace(frame.conversion, expression=mended)
-    again = evaluated(
-        replace(frame, conversion=conversion), computed.codes, computed.words >> explanation.moved
-    )
-    return replace(found, operations=lasting(found.operations, wrong_operations(again)))
+    loss = found.loss
+    kept = loss is None or loss.at_end or bool((~right & (loss.lost != 0))[again.in_range].any())
+    operations = lasting(found.operations, wrong_operations(again))
+    return replace(found, operations=operations, loss=loss if kept else None)
+
+
+def _right(again: Evaluation | None, result: ResultScale, allowed: Allowance) -> Mask:
+    """The codes whose value is off by no more than one LSB and one step."""
+    if again is None:
+        return np.zeros(0, dtype=np.bool_)
+    wanted = (allowed.quantity - result.zero) / result.scale
+    with np.errstate(invalid="ignore"):
+        return np.asarray(np.abs(again.held - wanted) <= _tolerance(result, allowed))
+
+
+def _tolerance(result: ResultScale, allowed: Allowance) -> float:
+    """One LSB and one step, in counts of the result."""
+    return (allowed.lsb + result.step) / abs(result.scale) * _ROUNDING
 
 
 def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
@@ -252,10 +276,9 @@ def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _F
     wrong = wrong_mask(operations)
     wanted = (allowed.quantity - result.zero) / result.scale
     limit = allowed.at_step(result.step) / counts
-    tolerance = (allowed.lsb + result.step) / counts * _ROUNDING
-    with np.errstate(invalid="ignore"):
-        # Terms that round half up offset what is lost: what ends right has lost nothing.
-        right = np.abs(computed.held - wanted) <= tolerance
+    tolerance = _tolerance(result, allowed)
+    # Terms that round half up offset what is lost: what ends right has lost nothing.
+    right = _right(computed, result, allowed)
     loss = truncation_loss(computed, wrong | right, tolerance) or coarse_end(
         computed, wrong, wanted, limit
     )

@@ -142,9 +142,8 @@ def _term(fact: BoardFact, value: Fraction) -> Term:
     unit = coherent(fact.unit.dimension)
     prefixed = takes_prefix(unit)
     plain = not fact.unit.dimension
-    middle = fact.role is Role.REFERENCE and fact.name.startswith("half of ")
     return Term(
-        role=Role.OFFSET if middle else fact.role,
+        role=fact.role,
         rule=fact.rule,
         name=fact.name,
         value=value,
