@@ -8,8 +8,6 @@ import re
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
-import quantiphy
-
 from bitweight.units import PREFIXES, Unit, UnitError, known, named, parse_unit, takes_prefix
 
 _LONGEST = 200
@@ -161,6 +159,9 @@ def engineering(value: Fraction | float, unit: Unit, digits: int = 4) -> str:
     """The number (in `unit`) for people, with a prefix where the unit takes one: "4.095 mV"."""
     number = float(value)
     if takes_prefix(unit):
+        # Only messages need it, and it is a fifth of the start-up time.
+        import quantiphy
+
         shown = quantiphy.Quantity(number, unit.text)
         return str(shown.render(prec=digits - 1, show_units=True))
     text = f"{number:.{digits}g}" if abs(number) < 10**digits else f"{number:.0f}"
