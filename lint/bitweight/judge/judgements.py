@@ -171,10 +171,8 @@ def _judged(
     outside = _worst_ratio(error, limit, computed.in_range) > 1
     coding = other_coding(computed, frame, result) if outside else None
     meant = computed.real * result.scale + result.zero - allowed.quantity
-    found = _Faults() if coding else _faults(computed, result, allowed)
-    if explanation.mended is not None:
-        again = _mended(frame, computed, explanation)
-        found = _lasting(found, again, _right(again, result, allowed))
+    again = _mended(frame, computed, explanation)
+    found = _Faults() if coding else _faults(computed, again, result, allowed)
     known = computed.in_range & ~_unjudged(found.operations, meant)
     meant_ill = outside and _worst_ratio(meant, limit, known) > _ROUNDING
     worst = _worst_index(error, computed.in_range)
@@ -241,26 +239,22 @@ def _mended(frame: Frame, computed: Evaluation, explanation: Explanation) -> Eva
     return evaluated(replace(frame, conversion=conversion), computed.codes, words)
 
 
-def _lasting(found: _Faults, again: Evaluation | None, right: Mask) -> _Faults:
+def _lasting(found: _Faults, again: Evaluation, right: Mask) -> _Faults:
     """The faults without those that come right when the wrong constants are mended (`again`).
 
     `right` are the codes at which nothing is lost then.
     """
-    if again is None or not (found.operations or found.loss):
-        return found
     loss = found.loss
     kept = loss is None or loss.at_end or bool((~right & (loss.lost != 0))[again.in_range].any())
     operations = lasting(found.operations, wrong_operations(again))
     return replace(found, operations=operations, loss=loss if kept else None)
 
 
-def _right(again: Evaluation | None, result: ResultScale, allowed: Allowance) -> Mask:
+def _right(computed: Evaluation, result: ResultScale, allowed: Allowance) -> Mask:
     """The codes whose value is off by no more than one LSB and one step."""
-    if again is None:
-        return np.zeros(0, dtype=np.bool_)
     wanted = (allowed.quantity - result.zero) / result.scale
     with np.errstate(invalid="ignore"):
-        return np.asarray(np.abs(again.held - wanted) <= _tolerance(result, allowed))
+        return np.asarray(np.abs(computed.held - wanted) <= _tolerance(result, allowed))
 
 
 def _tolerance(result: ResultScale, allowed: Allowance) -> float:
@@ -268,7 +262,10 @@ def _tolerance(result: ResultScale, allowed: Allowance) -> float:
     return (allowed.lsb + result.step) / abs(result.scale) * _ROUNDING
 
 
-def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _Faults:
+def _faults(
+    computed: Evaluation, again: Evaluation | None, result: ResultScale, allowed: Allowance
+) -> _Faults:
+    """What goes wrong, and does so `again` with the wrong constants mended."""
     counts = abs(result.scale)
     operations = tuple(
         replace(one, suffix=suffix_for(computed, one)) for one in wrong_operations(computed)
@@ -282,11 +279,12 @@ def _faults(computed: Evaluation, result: ResultScale, allowed: Allowance) -> _F
     loss = truncation_loss(computed, wrong | right, tolerance) or coarse_end(
         computed, wrong, wanted, limit
     )
-    return _Faults(
+    found = _Faults(
         operations=operations,
         loss=None if loss is None or _is_stored_wrong(loss, operations) else loss,
         clamps=clamps_in_range(computed, wanted, limit),
     )
+    return found if again is None else _lasting(found, again, _right(again, result, allowed))
 
 
 def _is_stored_wrong(loss: Loss, operations: Iterable[WrongOperation]) -> bool:
