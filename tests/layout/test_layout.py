@@ -316,3 +316,16 @@ def _walked() -> Iterator[str]:
 
 def _lines(path: Path) -> list[str]:
     return path.read_bytes().decode("utf-8", "replace").splitlines()
+
+
+def test_no_group_is_possessive() -> None:
+    """Patterns that never give back a group match wrongly on Python 3.11 before 3.11.5."""
+    group = re.compile(r"\)[*+?]\+|\(\?>")
+    found = [
+        f"{path.relative_to(ROOT)}:{number}"
+        for source in ("lint", "rules")
+        for path in sorted((ROOT / source).rglob("*.py"))
+        for number, line in enumerate(path.read_text("utf-8").splitlines(), start=1)
+        if group.search(line) and re.search(r"""\b[rf]{1,2}["']""", line)
+    ]
+    assert found == []

@@ -14,7 +14,7 @@ from bitweight.firmware.macros import Macro, macro_defined
 from bitweight.firmware.outlines import Outline
 from bitweight.firmware.tokens import NAME, WORDS, Token, tokens_of
 
-_KEYWORD = re.compile(rf"\#\s*({NAME})?+\s*({NAME})?+")
+_KEYWORD = re.compile(rf"\#\s*({NAME})?\s*({NAME})?")
 
 
 class Keyword(Enum):

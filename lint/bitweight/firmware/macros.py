@@ -13,8 +13,8 @@ from bitweight.firmware.tokens import NAME, Token, tokens_of
 from bitweight.places import Place
 
 VARIABLE_ARGUMENTS = "__VA_ARGS__"
-_DEFINE = re.compile(rf"\#\s*define\s+({NAME})(\()?+")
-_PARAMETERS = re.compile(rf"\s*(?:(?:{NAME}\s*,\s*)*+(?:{NAME}\s*(?:\.\.\.)?|\.\.\.))?\s*\)")
+_DEFINE = re.compile(rf"\#\s*define\s+({NAME})(\()?")
+_PARAMETERS = re.compile(rf"\s*(?:(?:{NAME}\s*,\s*)*(?:{NAME}\s*(?:\.\.\.)?|\.\.\.))?\s*\)")
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)

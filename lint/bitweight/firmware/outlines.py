@@ -13,8 +13,8 @@ from functools import cached_property
 from bitweight.firmware.files import SourceFile
 
 _SPLICE = re.compile(r"\\[ \t\f\v]*(?:\n|\Z)")
-_COMMENT = r"/\*[^*]*+(?:\*(?!/)[^*]*+)*+(?:\*/)?+|//[^\n]*+"
-_QUOTED = r'"[^"\\\n]*+(?:\\.[^"\\\n]*+)*+"?+|' + r"'[^'\\\n]*+(?:\\.[^'\\\n]*+)*+'?+"
+_COMMENT = r"/\*[^*]*+(?:\*(?!/)[^*]*+)*(?:\*/)?|//[^\n]*+"
+_QUOTED = r'"[^"\\\n]*+(?:\\.[^"\\\n]*+)*"?|' + r"'[^'\\\n]*+(?:\\.[^'\\\n]*+)*'?"
 _HEADER = r"\#[ \t]*include[ \t]*<[^>\n]*+>"
 _MARKS = re.compile(rf"{_COMMENT}|{_QUOTED}|{_HEADER}|\#")
 _MARKS_AND_DIGRAPHS = re.compile(rf"{_COMMENT}|{_QUOTED}|{_HEADER}|\#|%:%:|%:|<:|:>|<%|%>")

@@ -29,9 +29,9 @@ class Kind(Enum):
 
 MARKS = frozenset((Kind.OPEN, Kind.CLOSE, Kind.LEAVE))
 NAME = r"(?:[^\W\d]|\$)[\w$]*+"
-NUMBER = r"\.?[0-9](?:[eEpP][+-]|[\w.])*+"
-STRING = r'"[^"\\\n]*+(?:\\.[^"\\\n]*+)*+"?+'
-CHARACTER = r"'[^'\\\n]*+(?:\\.[^'\\\n]*+)*+'?+"
+NUMBER = r"\.?[0-9](?:[eEpP][+-]|[\w.])*"
+STRING = r'"[^"\\\n]*+(?:\\.[^"\\\n]*+)*"?'
+CHARACTER = r"'[^'\\\n]*+(?:\\.[^'\\\n]*+)*'?"
 WORDS = re.compile(rf"({NAME})|{NUMBER}|{STRING}|{CHARACTER}")
 """Identifiers (the group), and what else is spelled with letters."""
 _PUNCTUATOR = (
