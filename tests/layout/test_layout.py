@@ -322,9 +322,9 @@ def test_no_group_is_possessive() -> None:
     """Patterns that never give back a group match wrongly on Python 3.11 before 3.11.5."""
     group = re.compile(r"\)[*+?]\+|\(\?>")
     found = [
-        f"{path.relative_to(ROOT)}:{number}"
+        f"{path.relative_to(REPOSITORY)}:{number}"
         for source in ("lint", "rules")
-        for path in sorted((ROOT / source).rglob("*.py"))
+        for path in sorted((REPOSITORY / source).rglob("*.py"))
         for number, line in enumerate(path.read_text("utf-8").splitlines(), start=1)
         if group.search(line) and re.search(r"""\b[rf]{1,2}["']""", line)
     ]
