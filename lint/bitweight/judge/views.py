@@ -217,8 +217,8 @@ def _scales(question: Question, line: RealLine) -> Iterator[tuple[int, Fraction]
     if abs(exact) > _FARTHEST_DECADE:
         return
     nearest = round(exact)
-    other = nearest + (1 if exact > nearest else -1)
-    for decade in (nearest, other):
+    # A count of other bits may be more than a decade off: 65536 for 4096.
+    for decade in (nearest, nearest + 1, nearest - 1):
         yield decade, Fraction(10) ** decade
 
 
